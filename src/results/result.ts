@@ -1,0 +1,132 @@
+import type { TubeLaw } from '../engine/tubes/tube.ts';
+
+/** The result file's shape. Keys carry their units; numbers are base SI units unless the key says otherwise. */
+export interface Result {
+  readonly format: 'presolder-result/1';
+  /** Absent in a result without a clip. */
+  readonly clip?: ClipSummary;
+  /** Volts at the output that stand at digital full scale, before each variant's gain; absent without a clip. */
+  readonly fullScaleVolts?: number;
+  readonly variants: readonly VariantResult[];
+}
+
+export interface ClipSummary {
+  readonly file: string;
+  readonly seconds: number;
+  readonly sampleRateHertz: number;
+  readonly limitedSamples: number;
+}
+
+export interface VariantResult {
+  readonly name: string;
+  /** Dotted key of the parts list to the value as written. */
+  readonly changes: Readonly<Record<string, string>>;
+  readonly circuit: CircuitRecord;
+  readonly rest: RestRecord;
+  readonly response: readonly ResponseRow[];
+  readonly lowCornerHertz: number | null;
+  readonly highCornerHertz: number | null;
+  readonly distortion: readonly DistortionRow[];
+  readonly sensitivity: readonly SensitivityRow[];
+  readonly sound?: SoundRecord;
+  readonly cautions: readonly string[];
+}
+
+/** The values the equations used, strays folded in, so that the circuit can be solved again from this file alone. */
+export interface CircuitRecord {
+  readonly station: { readonly carrierHertz: number; readonly levelVoltsRms: number; readonly modulation: number };
+  readonly tunedCircuit: {
+    readonly loadedQ: number;
+    readonly detuneHertz: number;
+    readonly unloadedQ: number | null;
+    readonly coilHenries: number | null;
+    readonly tap: number;
+    readonly retuned: boolean | null;
+  };
+  readonly detector: {
+    readonly kind: string;
+    readonly law: string;
+    readonly gridCapacitorFarads: number;
+    readonly leakOhms: number;
+    readonly leakPosition: string;
+    readonly leakReturnVolts: number;
+    readonly capacitorLeakageOhms: number | null;
+    readonly chargeOhms: number | null;
+  };
+  readonly tube: {
+    readonly type: string;
+    readonly law: TubeLaw;
+    readonly gridPlateFarads: number;
+    readonly gridCathodeFarads: number;
+    readonly plateCathodeFarads: number;
+  };
+  readonly plate: {
+    readonly supplyVolts: number;
+    readonly bypassFarads: number;
+    readonly load: { readonly kind: 'resistor'; readonly ohms: number };
+  };
+  readonly output: { readonly couplingFarads: number; readonly loadOhms: number; readonly loadFarads: number };
+}
+
+export interface RestRecord {
+  readonly gridVolts: number;
+  readonly gridAmps: number;
+  readonly gridResistanceOhms: number;
+  readonly plateVolts: number;
+  readonly plateAmps: number;
+  readonly amplificationFactor: number;
+  readonly plateResistanceOhms: number;
+  readonly transconductanceSiemens: number;
+  /** Grid to plate at 400 Hz, magnitude. */
+  readonly stageGain: number;
+  readonly plateWatts: number;
+  readonly loadWatts: number;
+  readonly supplyAmps: number;
+  readonly inputCapacitanceFaradsAtAudio: number;
+  readonly inputCapacitanceFaradsAtCarrier: number;
+  readonly inputResistanceOhms: number;
+  readonly carrierAtGridVoltsRms: number;
+  readonly carrierOnPlateVoltsRms: number;
+  readonly leakCornerHertz: number;
+  readonly gridCornerHertz: number;
+}
+
+export interface ResponseRow {
+  readonly hertz: number;
+  /** dB re 400 Hz. */
+  readonly decibels: number;
+  /** Output against the station's envelope. */
+  readonly phaseDegrees: number;
+  readonly voltsRmsAt30Percent: number;
+  readonly cost: CostRow;
+}
+
+/** dB that would come back at this frequency if the part's audio admittance alone were ideal. */
+export interface CostRow {
+  readonly tunedCircuit: number;
+  readonly gridCapacitor: number;
+  readonly plateBypass: number;
+  /** The plate load with what it feeds: coupling capacitor and load capacitance together. */
+  readonly load: number;
+}
+
+export interface DistortionRow {
+  readonly hertz: number;
+  readonly modulationPercent: number;
+  readonly secondPercent: number;
+  readonly thirdPercent: number;
+  readonly totalPercent: number;
+}
+
+export interface SensitivityRow {
+  readonly levelVoltsRms: number;
+  readonly audioVoltsRmsAt30Percent: number;
+  readonly secondPercent: number;
+}
+
+export interface SoundRecord {
+  readonly file: string;
+  readonly gainDecibels: number;
+  readonly loudnessLufs: number | null;
+  readonly peakVolts: number;
+}
