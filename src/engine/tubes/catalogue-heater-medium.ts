@@ -1,0 +1,182 @@
+import { manualPage, picofarads, publishedRow, type TubeType } from './tube-type.ts';
+
+const TUBE_NOTES = 'https://tubeofile.com/api/tubes/76';
+const RUSSIAN_NOTES = "maker's sheet as quoted at https://wikirussya.com/6SN7 and https://perceptioro.com/6SN7";
+const ECC82_NOTES = 'http://bee.mif.pg.gda.pl/Oktoda/index.php/ECC82';
+
+/** Heater triodes of low and medium amplification factor. */
+export const MEDIUM_MU_TUBES: readonly TubeType[] = [
+  {
+    name: '27',
+    otherNames: ['227', 'UY-227'],
+    cathode: 'heater oxide',
+    heater: {
+      volts: 2.5,
+      amps: 1.75,
+      source: 'https://radiomann.sakura.ne.jp/HomePageVT/Radio_tube_1_227.html',
+      recall: 'seen',
+    },
+    rows: [
+      publishedRow(90, -6, 2.7, 9, 820, 11000, manualPage('27'), 'from memory'),
+      publishedRow(135, -9, 4.5, 9, 1000, 9000, manualPage('27'), 'from memory, cross-checked'),
+      publishedRow(180, -13.5, 5, 9, 1000, 9000, manualPage('27'), 'from memory, cross-checked'),
+      publishedRow(250, -21, 5.2, 9, 975, 9250, manualPage('27'), 'from memory, cross-checked'),
+    ],
+    ratings: {
+      maxPlateVolts: 275,
+      maxPlateWatts: null,
+      source: `${manualPage('27')}; some editions give 250 V`,
+      recall: 'from memory',
+    },
+    capacitances: picofarads(
+      3.3,
+      3.1,
+      2.3,
+      `${manualPage('27')}; some editions give 3.5 pF grid to cathode`,
+      'from memory',
+    ),
+  },
+  {
+    name: '56',
+    otherNames: ['156'],
+    cathode: 'heater oxide',
+    heater: { volts: 2.5, amps: 1, source: TUBE_NOTES, recall: 'seen' },
+    rows: [publishedRow(250, -13.5, 5, 13.8, 1450, 9500, manualPage('56'), 'from memory, cross-checked')],
+    ratings: { maxPlateVolts: 250, maxPlateWatts: 1.4, source: manualPage('56'), recall: 'from memory' },
+    capacitances: picofarads(3.2, 3.2, 2.2, manualPage('56'), 'from memory'),
+  },
+  {
+    name: '76',
+    otherNames: [],
+    cathode: 'heater oxide',
+    heater: { volts: 6.3, amps: 0.3, source: TUBE_NOTES, recall: 'seen' },
+    rows: [
+      publishedRow(100, -5, 2.5, 13.8, 1150, 12000, manualPage('76'), 'from memory, cross-checked'),
+      publishedRow(250, -13.5, 5, 13.8, 1450, 9500, manualPage('76'), 'from memory, cross-checked'),
+    ],
+    ratings: { maxPlateVolts: 250, maxPlateWatts: 1.4, source: manualPage('76'), recall: 'from memory' },
+    capacitances: picofarads(2.8, 3.5, 2.5, manualPage('76'), 'from memory'),
+  },
+  {
+    name: '6SN7-GT',
+    otherNames: ['6SN7', '12SN7-GT', '5692'],
+    cathode: 'heater oxide',
+    heater: {
+      volts: 6.3,
+      amps: 0.6,
+      source: RUSSIAN_NOTES,
+      recall: 'seen',
+      note: 'both units; the 12SN7-GT takes 12.6 V, 0.3 A',
+    },
+    rows: [
+      publishedRow(90, 0, 10, 20, 3000, 6700, manualPage('6SN7-GT'), 'from memory, cross-checked'),
+      publishedRow(250, -8, 9, 20, 2600, 7700, RUSSIAN_NOTES, 'seen'),
+    ],
+    ratings: {
+      maxPlateVolts: 300,
+      maxPlateWatts: 2.5,
+      source: `${manualPage('6SN7-GT')}; the GTB is rated 450 V and 5 W`,
+      recall: 'from memory',
+    },
+    capacitances: picofarads(
+      3.8,
+      2.8,
+      0.8,
+      `${manualPage('6SN7-GT')}, unit 1; the GTB is printed 4.0, 2.2 and 0.7 pF`,
+      'from memory',
+    ),
+    note: 'one unit of a double triode',
+  },
+  {
+    name: '12AU7',
+    otherNames: ['ECC82', '12AU7-A', '5814-A', '6189'],
+    cathode: 'heater oxide',
+    heater: {
+      volts: 12.6,
+      amps: 0.15,
+      source: ECC82_NOTES,
+      recall: 'seen',
+      note: 'both units; 6.3 V, 0.3 A with the halves in parallel',
+    },
+    rows: [
+      publishedRow(
+        100,
+        0,
+        11.8,
+        19.5,
+        3100,
+        6250,
+        `${manualPage('12AU7')}; some printings give mu 20 and 6500 ohms`,
+        'from memory, cross-checked',
+      ),
+      publishedRow(
+        250,
+        -8.5,
+        10.5,
+        17,
+        2200,
+        7700,
+        `${manualPage('12AU7')}; mu and transconductance seen at ${ECC82_NOTES}`,
+        'from memory, cross-checked',
+      ),
+    ],
+    ratings: { maxPlateVolts: 300, maxPlateWatts: 2.75, source: ECC82_NOTES, recall: 'seen' },
+    capacitances: picofarads(
+      1.5,
+      1.6,
+      0.5,
+      `${manualPage('12AU7')}, unit 1; 1.5 pF grid to plate seen at https://www.htg2.net/index.php/topic,93294.msg604089060.html`,
+      'from memory',
+    ),
+    note: 'one unit of a double triode',
+  },
+  {
+    name: '6J7 triode-connected',
+    otherNames: [
+      '6J7',
+      '6J7-G',
+      '6J7-GT',
+      '6J7 triode',
+      '6C6',
+      '6C6 triode-connected',
+      '6C6 triode',
+      '57',
+      '57 triode-connected',
+      '57 triode',
+    ],
+    cathode: 'heater oxide',
+    heater: {
+      volts: 6.3,
+      amps: 0.3,
+      source: manualPage('6J7'),
+      recall: 'from memory, cross-checked',
+      note: 'the 57 takes 2.5 V, 1 A',
+    },
+    rows: [
+      publishedRow(180, -5.3, 5.3, 20, 1800, 11000, manualPage('6J7'), 'from memory, cross-checked'),
+      publishedRow(250, -8, 6.5, 20, 1900, 10500, manualPage('6J7'), 'from memory, cross-checked'),
+    ],
+    ratings: { maxPlateVolts: 250, maxPlateWatts: 1.75, source: manualPage('6J7'), recall: 'from memory' },
+    capacitances: picofarads(2, 5, 14, manualPage('6J7'), 'from memory, doubtful'),
+    note: 'screen and suppressor tied to the plate',
+  },
+  {
+    name: '6SJ7 triode-connected',
+    otherNames: ['6SJ7', '6SJ7-GT', '6SJ7 triode', '12SJ7', '12SJ7 triode-connected'],
+    cathode: 'heater oxide',
+    heater: {
+      volts: 6.3,
+      amps: 0.3,
+      source: manualPage('6SJ7'),
+      recall: 'from memory, cross-checked',
+      note: 'the 12SJ7 takes 12.6 V, 0.15 A',
+    },
+    rows: [
+      publishedRow(180, -6, 6, 19, 2300, 8250, manualPage('6SJ7'), 'from memory, cross-checked'),
+      publishedRow(250, -8.5, 9.2, 19, 2500, 7600, manualPage('6SJ7'), 'from memory, cross-checked'),
+    ],
+    ratings: { maxPlateVolts: 250, maxPlateWatts: 2.5, source: manualPage('6SJ7'), recall: 'from memory' },
+    capacitances: picofarads(2.8, 3.4, 11, manualPage('6SJ7'), 'from memory'),
+    note: 'screen and suppressor tied to the plate',
+  },
+];
