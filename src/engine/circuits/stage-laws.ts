@@ -1,0 +1,60 @@
+import { directAverage, linearRectifierCycleLaw, squareCycleLaw, straightCycleLaw } from '../tubes/cycle-average.ts';
+import { type SmoothLaw, softKneeLaw } from '../tubes/smooth-law.ts';
+import type { TubeLaw } from '../tubes/tube.ts';
+import type { DetectorCircuit } from './circuit.ts';
+import type { StageLaws } from './stage-currents.ts';
+
+/** Grid and cathode laws of a tube as smooth laws of one voltage each. */
+export function smoothLaws(law: TubeLaw): { grid: SmoothLaw; cathode: SmoothLaw } {
+  return { grid: softKneeLaw(law.Gg, law.Cg, law.xi), cathode: softKneeLaw(law.G, law.C, law.gamma) };
+}
+
+/** The tube's own laws, averaged by direct quadrature. */
+export function tubeStageLaws(law: TubeLaw): StageLaws {
+  const { grid, cathode } = smoothLaws(law);
+  return {
+    grid: directAverage(grid),
+    cathode: directAverage(cathode),
+    mu: law.mu,
+    phi: law.phi,
+    knee: true,
+    extraPlateSiemens: 0,
+    restPlateVolts: 0,
+  };
+}
+
+/** A rest point without modulation, as the textbook laws take it from the tube. */
+export interface LinearisedPlate {
+  readonly gridVolts: number;
+  readonly plateVolts: number;
+  /** Cathode current times knee, A, and its slope in u, S. */
+  readonly cathodeAmps: number;
+  readonly cathodeSiemens: number;
+  /** Conductance the knee adds at low plate volts, S. */
+  readonly kneeSiemens: number;
+}
+
+/** A plate stage made straight about a rest point of the tube. */
+export function straightPlate(law: TubeLaw, at: LinearisedPlate): Omit<StageLaws, 'grid'> {
+  const u = at.gridVolts + at.plateVolts / law.mu + law.phi;
+  return {
+    cathode: straightCycleLaw(u, at.cathodeAmps, at.cathodeSiemens),
+    mu: law.mu,
+    phi: law.phi,
+    knee: false,
+    extraPlateSiemens: at.kneeSiemens,
+    restPlateVolts: at.plateVolts,
+  };
+}
+
+/** Textbook square law about the tube's no-signal grid point: k is a quarter of the grid current's curvature there. */
+export function squareGrid(law: TubeLaw, gridVolts: number): StageLaws['grid'] {
+  const out = new Float64Array(4);
+  smoothLaws(law).grid.evaluate(gridVolts, out);
+  return squareCycleLaw(gridVolts, out[0] as number, out[1] as number, 0.25 * (out[2] as number));
+}
+
+/** Textbook linear rectifier; the charge resistance is leak / 1000 unless given. */
+export function linearGrid(circuit: DetectorCircuit): StageLaws['grid'] {
+  return linearRectifierCycleLaw(circuit.detector.chargeOhms ?? circuit.detector.leakOhms / 1000);
+}

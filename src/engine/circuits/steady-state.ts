@@ -1,0 +1,268 @@
+import { InputError } from '../errors.ts';
+import { complex, over, plus } from './complex.ts';
+import { solveComplex, solveReal } from './dense-solve.ts';
+import { LinearResponse } from './response.ts';
+import type { RestPoint } from './rest-point.ts';
+import { emptyCurrents, Stage } from './stage-currents.ts';
+
+/** A steady tone through the detector, all its harmonics. */
+export interface SteadyTone {
+  /** Peak volts of harmonics 1, 2, … at the output, the grid and the plate; index 0 holds the mean (rest included). */
+  readonly output: Float64Array;
+  readonly grid: Float64Array;
+  readonly plate: Float64Array;
+  /** Largest error of the port equations left, V. */
+  readonly residualVolts: number;
+}
+
+/** Harmonics whose magnitudes are given. */
+const HARMONICS = 10;
+
+/** The network's answer to port currents at the harmonics of one tone. */
+interface HarmonicPaths {
+  /** Impedances from current k to row r (grid, plate, output) at harmonic h: [h][6] pairs of re, im. */
+  readonly ohms: readonly Float64Array[];
+  /** Port and output volts with no port current. */
+  readonly open: readonly [number, number, number];
+}
+
+function harmonicPaths(rest: RestPoint, hertz: number, highest: number): HarmonicPaths {
+  const { system, gridNode, plateNode, output } = rest.audio;
+  const n = system.size;
+  const open = system.drive.slice();
+  solveReal(system.conductance.slice(), n, open, 1);
+  const rows = [gridNode, plateNode, output.index];
+  const ohms: Float64Array[] = [];
+  for (let h = 0; h <= highest; h++) {
+    const im = system.storage.map((farads) => farads * 2 * Math.PI * hertz * h);
+    const at = new Float64Array(12);
+    [gridNode, plateNode].forEach((node, k) => {
+      const x = new Float64Array(2 * n);
+      x[node] = 1;
+      solveComplex(system.conductance, im, n, x);
+      rows.forEach((row, r) => {
+        at[4 * r + 2 * k] = x[row] as number;
+        at[4 * r + 2 * k + 1] = x[n + row] as number;
+      });
+    });
+    ohms.push(at);
+  }
+  return { ohms, open: [open[gridNode] as number, open[plateNode] as number, open[output.index] as number] };
+}
+
+/**
+ * The full nonlinear steady state for a tone: the averaged laws by quadrature at equally spaced instants of one audio
+ * period, the network at each harmonic, Newton on both. No time stepping, no tables: a second way to the renderer's
+ * answer. The depth is raised from nothing when a direct solution fails.
+ *
+ * @param hertz    audio frequency, above 0
+ * @param depth    modulation at the station, 0 to 1
+ * @param samples  instants a period, a power of two, 32 to 512; kinks such as clipping want more
+ * Raises InputError `no-steady-state`.
+ */
+export function steadyTone(rest: RestPoint, hertz: number, depth: number, samples = 64): SteadyTone {
+  const highest = samples / 2 - 1;
+  const paths = harmonicPaths(rest, hertz, highest);
+  const impulse = impulseOhms(paths, samples);
+  const w = startFromLinear(rest, hertz, depth, samples);
+  let found = solveAt(rest, paths, impulse, envelopeOf(rest, hertz, depth, samples), w);
+  if (!(found.residual < 1e-9)) {
+    w.fill(0);
+    for (let k = 0; k < samples; k++) {
+      w[2 * k] = rest.gridVolts;
+      w[2 * k + 1] = rest.plateVolts;
+    }
+    for (let part = 1; part <= 16; part++) {
+      found = solveAt(rest, paths, impulse, envelopeOf(rest, hertz, (depth * part) / 16, samples), w);
+    }
+  }
+  if (!(found.residual < 1e-5)) {
+    throw new InputError({
+      code: 'no-steady-state',
+      where: `tone ${hertz} Hz, ${Math.round(depth * 100)} % modulation`,
+      got: 'no settled solution',
+      expected: 'values for which the detector settles',
+    });
+  }
+  return { ...readHarmonics(paths, w, found.currents, samples), residualVolts: found.residual };
+}
+
+/** Peak carrier at the tuned circuit over one period for a tone of the given depth, V. */
+function envelopeOf(rest: RestPoint, hertz: number, depth: number, samples: number): Float64Array {
+  const { tuned, circuit } = rest;
+  const f0 = circuit.station.carrierHertz;
+  const pole = (offset: number): { re: number; im: number } => complex(1, (2 * tuned.loadedQ * offset) / f0);
+  const carrier = pole(tuned.detuneHertz);
+  const upper = over(carrier, pole(tuned.detuneHertz + hertz));
+  const lower = over(carrier, pole(tuned.detuneHertz - hertz));
+  return Float64Array.from({ length: samples }, (_, k) => {
+    const angle = (2 * Math.PI * k) / samples;
+    const c = Math.cos(angle);
+    const s = Math.sin(angle);
+    const sum = plus(
+      complex(1),
+      complex(
+        (depth / 2) * (upper.re * c - upper.im * s + lower.re * c + lower.im * s),
+        (depth / 2) * (upper.re * s + upper.im * c + lower.im * c - lower.re * s),
+      ),
+    );
+    return tuned.carrierPeakVolts * Math.hypot(sum.re, sum.im);
+  });
+}
+
+/** Port volts in time from the linearised response: where Newton starts. */
+function startFromLinear(rest: RestPoint, hertz: number, depth: number, samples: number): Float64Array {
+  const linear = new LinearResponse(rest).at(hertz);
+  const w = new Float64Array(2 * samples);
+  for (let k = 0; k < samples; k++) {
+    const angle = (2 * Math.PI * k) / samples;
+    const c = Math.cos(angle);
+    const s = Math.sin(angle);
+    w[2 * k] = rest.gridVolts + depth * (linear.grid.re * c - linear.grid.im * s);
+    w[2 * k + 1] = rest.plateVolts + depth * (linear.plate.re * c - linear.plate.im * s);
+  }
+  return w;
+}
+
+/** The network as a periodic impulse response: volts at lag d for one ampere at one instant, [lag][4]. */
+function impulseOhms(paths: HarmonicPaths, samples: number): Float64Array {
+  const out = new Float64Array(4 * samples);
+  for (let lag = 0; lag < samples; lag++) {
+    for (let q = 0; q < 4; q++) {
+      const at = 2 * q;
+      let sum = (paths.ohms[0] as Float64Array)[at] as number;
+      for (let h = 1; h < paths.ohms.length; h++) {
+        const angle = (2 * Math.PI * h * lag) / samples;
+        const z = paths.ohms[h] as Float64Array;
+        sum += 2 * ((z[at] as number) * Math.cos(angle) - (z[at + 1] as number) * Math.sin(angle));
+      }
+      out[4 * lag + q] = sum / samples;
+    }
+  }
+  return out;
+}
+
+interface Found {
+  residual: number;
+  currents: Float64Array;
+}
+
+/** Newton on the port volts of one period; `w` moves to the solution. */
+function solveAt(
+  rest: RestPoint,
+  paths: HarmonicPaths,
+  impulse: Float64Array,
+  envelope: Float64Array,
+  w: Float64Array,
+): Found {
+  const samples = envelope.length;
+  const size = 2 * samples;
+  const stage = new Stage(rest.laws, rest.path);
+  const out = emptyCurrents();
+  const currents = new Float64Array(size);
+  const slopes = new Float64Array(2 * size);
+  const error = new Float64Array(size);
+  const evaluate = (trial: Float64Array): number => {
+    for (let k = 0; k < samples; k++) {
+      stage.evaluate(trial[2 * k] as number, trial[2 * k + 1] as number, envelope[k] as number, out);
+      currents[2 * k] = out.gridAmps;
+      currents[2 * k + 1] = out.plateAmps;
+      slopes[4 * k] = out.gridByGrid;
+      slopes[4 * k + 1] = out.gridByPlate;
+      slopes[4 * k + 2] = out.plateByGrid;
+      slopes[4 * k + 3] = out.plateByPlate;
+    }
+    let largest = 0;
+    for (let k = 0; k < samples; k++) {
+      for (let r = 0; r < 2; r++) {
+        let sum = (trial[2 * k + r] as number) - (paths.open[r] as number);
+        for (let j = 0; j < samples; j++) {
+          const o = 4 * ((k - j + samples) % samples) + 2 * r;
+          sum +=
+            (impulse[o] as number) * (currents[2 * j] as number) +
+            (impulse[o + 1] as number) * (currents[2 * j + 1] as number);
+        }
+        error[2 * k + r] = sum;
+        largest = Math.max(largest, Math.abs(sum));
+      }
+    }
+    return largest;
+  };
+  let residual = evaluate(w);
+  const matrix = new Float64Array(size * size);
+  const move = new Float64Array(size);
+  const trial = new Float64Array(size);
+  for (let pass = 0; pass < 40 && residual > 1e-11; pass++) {
+    for (let k = 0; k < samples; k++) {
+      for (let j = 0; j < samples; j++) {
+        for (let r = 0; r < 2; r++) {
+          const o = 4 * ((k - j + samples) % samples) + 2 * r;
+          const z0 = impulse[o] as number;
+          const z1 = impulse[o + 1] as number;
+          for (let c = 0; c < 2; c++) {
+            const value = z0 * (slopes[4 * j + c] as number) + z1 * (slopes[4 * j + 2 + c] as number);
+            matrix[(2 * k + r) * size + 2 * j + c] = value + (k === j && r === c ? 1 : 0);
+          }
+        }
+      }
+    }
+    move.set(error);
+    if (!solveReal(matrix, size, move, 1)) break;
+    let share = 1;
+    let next = Number.POSITIVE_INFINITY;
+    for (let halving = 0; halving < 12; halving++) {
+      for (let k = 0; k < size; k++) trial[k] = (w[k] as number) - share * (move[k] as number);
+      next = evaluate(trial);
+      if (next < residual) break;
+      share *= 0.5;
+    }
+    if (!(next < residual)) {
+      evaluate(w);
+      break;
+    }
+    w.set(trial);
+    residual = next;
+  }
+  return { residual, currents };
+}
+
+/** Magnitudes of the harmonics of output (through the network) and ports. */
+function readHarmonics(
+  paths: HarmonicPaths,
+  w: Float64Array,
+  currents: Float64Array,
+  samples: number,
+): Omit<SteadyTone, 'residualVolts'> {
+  const output = new Float64Array(HARMONICS + 1);
+  const grid = new Float64Array(HARMONICS + 1);
+  const plate = new Float64Array(HARMONICS + 1);
+  for (let h = 0; h <= HARMONICS; h++) {
+    const sums = new Float64Array(8);
+    for (let k = 0; k < samples; k++) {
+      const angle = (2 * Math.PI * h * k) / samples;
+      const c = Math.cos(angle) / samples;
+      const s = -Math.sin(angle) / samples;
+      const row = [currents[2 * k], currents[2 * k + 1], w[2 * k], w[2 * k + 1]] as number[];
+      row.forEach((value, q) => {
+        sums[2 * q] = (sums[2 * q] as number) + value * c;
+        sums[2 * q + 1] = (sums[2 * q + 1] as number) + value * s;
+      });
+    }
+    const z = paths.ohms[h] as Float64Array;
+    const re =
+      (z[8] as number) * (sums[0] as number) -
+      (z[9] as number) * (sums[1] as number) +
+      (z[10] as number) * (sums[2] as number) -
+      (z[11] as number) * (sums[3] as number);
+    const im =
+      (z[8] as number) * (sums[1] as number) +
+      (z[9] as number) * (sums[0] as number) +
+      (z[10] as number) * (sums[3] as number) +
+      (z[11] as number) * (sums[2] as number);
+    const peak = h === 0 ? 1 : 2;
+    output[h] = h === 0 ? paths.open[2] - re : peak * Math.hypot(re, im);
+    grid[h] = h === 0 ? (sums[4] as number) : peak * Math.hypot(sums[4] as number, sums[5] as number);
+    plate[h] = h === 0 ? (sums[6] as number) : peak * Math.hypot(sums[6] as number, sums[7] as number);
+  }
+  return { output, grid, plate };
+}

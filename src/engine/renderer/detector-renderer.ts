@@ -1,0 +1,89 @@
+import type { RestPoint } from '../circuits/rest-point.ts';
+import type { StageLaws } from '../circuits/stage-currents.ts';
+import { TunedEnvelope } from '../station/tuned-envelope.ts';
+import { STAGE_TIMES } from './implicit-rule.ts';
+import { Decimator, filterDelay, Interpolator } from './resampling.ts';
+import { StageStepper } from './stage-stepper.ts';
+
+/** Circuit solutions a second at least, Hz: 4 × a 48 kHz clip. Two stages a step. */
+export const LEAST_SOLUTIONS_HERTZ = 176_000;
+
+/** `normal` solves the circuit at least 176,000 times a second, `fine` twice that. */
+export type Quality = 'normal' | 'fine';
+
+/** Steps to a clip sample at a quality. */
+export function stepsPerSample(clipRateHertz: number, quality: Quality): number {
+  const stages = STAGE_TIMES.length;
+  const base = Math.max(1, Math.ceil(LEAST_SOLUTIONS_HERTZ / (stages * clipRateHertz)));
+  return quality === 'fine' ? 2 * base : base;
+}
+
+/**
+ * A detector as a block processor: modulation in, output volts (rest volts included) out, at the clip's rate.
+ * Everything is allocated in the constructor; any split into blocks gives the same samples. The output trails the
+ * input by `delaySamples`.
+ */
+export class DetectorRenderer {
+  readonly delaySamples: number;
+  readonly stepper: StageStepper;
+  private readonly rest: RestPoint;
+  private readonly steps: number;
+  private readonly interpolator: Interpolator;
+  private readonly decimator: Decimator;
+  private readonly envelope: TunedEnvelope;
+  private readonly drives: Float64Array;
+  private readonly restVolts: number;
+
+  /**
+   * @param rest    the circuit at rest
+   * @param laws    its averaged laws, as tables for speed
+   * @param clipRateHertz  8 kHz to 192 kHz
+   */
+  constructor(rest: RestPoint, laws: StageLaws, clipRateHertz: number, quality: Quality = 'normal') {
+    this.rest = rest;
+    this.steps = stepsPerSample(clipRateHertz, quality);
+    const stepSeconds = 1 / (clipRateHertz * this.steps);
+    const fractions: number[] = [];
+    for (let k = 0; k < this.steps; k++) for (const t of STAGE_TIMES) fractions.push((k + t) / this.steps);
+    this.interpolator = new Interpolator(clipRateHertz, fractions);
+    this.decimator = new Decimator(clipRateHertz, this.steps);
+    const { station } = rest.circuit;
+    this.envelope = new TunedEnvelope(station.carrierHertz, rest.tuned.loadedQ, rest.tuned.detuneHertz, stepSeconds);
+    this.stepper = new StageStepper(rest, laws, stepSeconds);
+    this.drives = new Float64Array(fractions.length);
+    this.delaySamples = 2 * filterDelay(clipRateHertz) - 1;
+    this.restVolts = (rest.unknowns[rest.audio.output.index] as number) * rest.audio.output.weight;
+    this.reset();
+  }
+
+  /** Rest volts at the output, V. */
+  get outputRestVolts(): number {
+    return this.restVolts;
+  }
+
+  reset(): void {
+    this.interpolator.reset();
+    this.decimator.reset();
+    this.envelope.reset();
+    this.stepper.reset();
+  }
+
+  /**
+   * @param input   modulation m·p, `frames` long at least
+   * @param output  output volts less the rest volts, V
+   */
+  process(input: Float64Array | Float32Array, output: Float64Array | Float32Array, frames: number): void {
+    const { interpolator, decimator, envelope, stepper, drives, steps, restVolts } = this;
+    const peak = this.rest.tuned.carrierPeakVolts;
+    const { magnitudes } = envelope;
+    for (let n = 0; n < frames; n++) {
+      interpolator.process(input[n] as number, drives);
+      for (let k = 0; k < steps; k++) {
+        envelope.step(1 + (drives[2 * k] as number), 1 + (drives[2 * k + 1] as number));
+        stepper.step(peak * (magnitudes[0] as number), peak * (magnitudes[1] as number));
+        decimator.push(stepper.outputVolts() - restVolts);
+      }
+      output[n] = decimator.read();
+    }
+  }
+}

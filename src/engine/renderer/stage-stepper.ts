@@ -1,0 +1,306 @@
+import type { RestPoint } from '../circuits/rest-point.ts';
+import type { StageLaws } from '../circuits/stage-currents.ts';
+import { CHORD, CHORD_BY_A, CHORD_BY_X, MEAN, MEAN_BY_A, MEAN_BY_X } from '../tubes/cycle-average.ts';
+import { PLATE_KNEE_VOLTS } from '../tubes/tube.ts';
+import { forecastWeights, planStep, type StepPlan } from './implicit-rule.ts';
+
+/** Past this plate voltage the knee factor is 1 to the last bit. */
+const KNEE_DONE_VOLTS = 19 * PLATE_KNEE_VOLTS;
+/** A Newton move this small leaves a quadratic remainder below a microvolt on grid laws of 60 mV and more, V. */
+const GRID_MOVE_VOLTS = 2e-4;
+/** The same for the plate, where currents bend over volts, V. */
+const PLATE_MOVE_VOLTS = 2e-2;
+/** The same for the carrier's peaks, V. */
+const PEAK_MOVE_VOLTS = 1e-3;
+/** A grid move is never taken longer than this in one pass, V: the law is exponential over tens of millivolts. */
+const LONGEST_GRID_MOVE_VOLTS = 2;
+const MOST_PASSES = 60;
+
+/**
+ * The grid-leak stage at audio rate: one implicit step a call, no memory taken.
+ *
+ * Unknowns at each of the two stages of a step are grid and plate volts and the carrier's peaks at grid and tube;
+ * the peaks are eliminated stage by stage, then four equations give the volts. A forecast from the last two steps
+ * makes one pass enough for most programme.
+ */
+export class StageStepper {
+  private readonly laws: StageLaws;
+  private readonly rest: RestPoint;
+  private readonly plan: StepPlan;
+  private readonly weights = forecastWeights();
+  /** Network unknowns now. */
+  private readonly z: Float64Array;
+  private readonly zNext: Float64Array;
+  /** Last four stage points, newest first: grid volts, plate volts, grid ratio, tube ratio, 4 of each. */
+  private readonly past = new Float64Array(16);
+  private readonly w = new Float64Array(4);
+  private readonly ag = new Float64Array(2);
+  private readonly au = new Float64Array(2);
+  private readonly open = new Float64Array(4);
+  private readonly i0 = new Float64Array(4);
+  /** Slopes of grid and plate current by grid and plate volts, a stage: 8. */
+  private readonly slope = new Float64Array(8);
+  /** Peaks' own moves: constant part and slopes by grid and plate volts, a stage: 2 × 6. */
+  private readonly peak = new Float64Array(12);
+  private readonly m = new Float64Array(20);
+  private readonly g = new Float64Array(6);
+  private readonly k = new Float64Array(6);
+  private readonly t = new Float64Array(6);
+  private readonly outputIndex: number;
+  private readonly outputWeight: number;
+  /** Newton passes taken and steps that did not settle, since reset. */
+  passes = 0;
+  unsettled = 0;
+
+  /**
+   * @param rest  the circuit at rest; stepping starts there
+   * @param laws  its averaged laws, as tables for speed
+   */
+  constructor(rest: RestPoint, laws: StageLaws, stepSeconds: number) {
+    this.rest = rest;
+    this.laws = laws;
+    this.plan = planStep(rest.audio.system, [rest.audio.gridNode, rest.audio.plateNode], stepSeconds);
+    this.z = new Float64Array(this.plan.size);
+    this.zNext = new Float64Array(this.plan.size);
+    this.outputIndex = rest.audio.output.index;
+    this.outputWeight = rest.audio.output.weight;
+    this.reset();
+  }
+
+  /** Back to the rest point: carrier on, no modulation. */
+  reset(): void {
+    const { rest, past } = this;
+    this.z.set(rest.unknowns);
+    const peak = rest.tuned.carrierPeakVolts;
+    const ratio = rest.path;
+    ratio.ratios(rest.currents.gridChord, rest.currents.tubeChord, this.t);
+    for (let j = 0; j < 4; j++) {
+      past[j] = rest.gridVolts;
+      past[4 + j] = rest.plateVolts;
+      past[8 + j] = peak > 0 ? rest.currents.gridCarrierPeak / peak : (this.t[0] as number);
+      past[12 + j] = peak > 0 ? rest.currents.tubeCarrierPeak / peak : (this.t[1] as number);
+    }
+    this.passes = 0;
+    this.unsettled = 0;
+  }
+
+  /** Output volts at the end of the last step. */
+  outputVolts(): number {
+    return (this.z[this.outputIndex] as number) * this.outputWeight;
+  }
+
+  gridVolts(): number {
+    return this.z[this.rest.audio.gridNode] as number;
+  }
+
+  plateVolts(): number {
+    return this.z[this.rest.audio.plateNode] as number;
+  }
+
+  /**
+   * One step.
+   *
+   * @param e0  carrier's peak at the tuned circuit a third into the step, V, 0 or more
+   * @param e1  the same at its end
+   */
+  step(e0: number, e1: number): void {
+    const { plan, z, past, weights, w, ag, au, open, i0 } = this;
+    const n = plan.size;
+    for (let r = 0; r < 4; r++) {
+      let sum = plan.portConstant[r] as number;
+      for (let c = 0; c < n; c++) sum += (plan.portFromState[r * n + c] as number) * (z[c] as number);
+      open[r] = sum;
+    }
+    for (let s = 0; s < 2; s++) {
+      const w0 = weights[4 * s] as number;
+      const w1 = weights[4 * s + 1] as number;
+      const w2 = weights[4 * s + 2] as number;
+      const w3 = weights[4 * s + 3] as number;
+      const e = s === 0 ? e0 : e1;
+      w[2 * s] =
+        w0 * (past[0] as number) + w1 * (past[1] as number) + w2 * (past[2] as number) + w3 * (past[3] as number);
+      w[2 * s + 1] =
+        w0 * (past[4] as number) + w1 * (past[5] as number) + w2 * (past[6] as number) + w3 * (past[7] as number);
+      const tg =
+        w0 * (past[8] as number) + w1 * (past[9] as number) + w2 * (past[10] as number) + w3 * (past[11] as number);
+      const tu =
+        w0 * (past[12] as number) + w1 * (past[13] as number) + w2 * (past[14] as number) + w3 * (past[15] as number);
+      ag[s] = tg > 0 ? tg * e : (past[8] as number) * e;
+      au[s] = tu > 0 ? tu * e : (past[12] as number) * e;
+    }
+    let settled = false;
+    for (let pass = 0; pass < MOST_PASSES && !settled; pass++) {
+      this.passes++;
+      this.linearise(0, e0);
+      this.linearise(1, e1);
+      settled = this.solvePorts(pass);
+    }
+    if (!settled) this.unsettled++;
+    const zNext = this.zNext;
+    for (let r = 0; r < n; r++) {
+      let sum = plan.stateConstant[r] as number;
+      for (let c = 0; c < n; c++) sum += (plan.stateFromState[r * n + c] as number) * (z[c] as number);
+      for (let c = 0; c < 4; c++) sum -= (plan.stateFromCurrent[4 * r + c] as number) * (i0[c] as number);
+      zNext[r] = sum;
+    }
+    z.set(zNext);
+    past[3] = past[1] as number;
+    past[7] = past[5] as number;
+    past[11] = past[9] as number;
+    past[15] = past[13] as number;
+    past[2] = past[0] as number;
+    past[6] = past[4] as number;
+    past[10] = past[8] as number;
+    past[14] = past[12] as number;
+    past[1] = w[0] as number;
+    past[5] = w[1] as number;
+    past[0] = w[2] as number;
+    past[4] = w[3] as number;
+    if (e0 > 0) {
+      past[9] = (ag[0] as number) / e0;
+      past[13] = (au[0] as number) / e0;
+    }
+    if (e1 > 0) {
+      past[8] = (ag[1] as number) / e1;
+      past[12] = (au[1] as number) / e1;
+    }
+  }
+
+  /** Currents and their slopes at one stage about the present estimate, the peaks eliminated. */
+  private linearise(s: number, e: number): void {
+    const { laws, g, k, t, w, ag, au, i0, slope, peak } = this;
+    const v = w[2 * s] as number;
+    const p = w[2 * s + 1] as number;
+    const mu = laws.mu;
+    let knee = 1;
+    let kneeSlope = 0;
+    if (laws.knee && p < KNEE_DONE_VOLTS) {
+      knee = p > 0 ? Math.tanh(p / PLATE_KNEE_VOLTS) : 0;
+      kneeSlope = p > 0 ? (1 - knee * knee) / PLATE_KNEE_VOLTS : 0;
+    }
+    const gridPeak = ag[s] as number;
+    const tubePeak = au[s] as number;
+    laws.grid.average(v, gridPeak, g);
+    laws.cathode.average(v + p / mu + laws.phi, tubePeak, k);
+    const chordK = k[CHORD] as number;
+    this.rest.path.ratios(g[CHORD] as number, knee * chordK, t);
+    const rg = (t[0] as number) * e;
+    const ru = (t[1] as number) * e;
+    const cga = g[CHORD_BY_A] as number;
+    const cka = knee * (k[CHORD_BY_A] as number);
+    const cgx = g[CHORD_BY_X] as number;
+    const ckx = knee * (k[CHORD_BY_X] as number);
+    const ckp = ckx / mu + kneeSlope * chordK;
+    const tgg = rg * (t[2] as number);
+    const tgk = rg * (t[3] as number);
+    const tug = ru * (t[4] as number);
+    const tuk = ru * (t[5] as number);
+    const m11 = 1 - tgg * cga;
+    const m12 = -tgk * cka;
+    const m21 = -tug * cga;
+    const m22 = 1 - tuk * cka;
+    const inverse = 1 / (m11 * m22 - m12 * m21);
+    const fg = rg - gridPeak;
+    const fu = ru - tubePeak;
+    const bgv = tgg * cgx + tgk * ckx;
+    const buv = tug * cgx + tuk * ckx;
+    const bgp = tgk * ckp;
+    const bup = tuk * ckp;
+    const o = 6 * s;
+    const g0 = (m22 * fg - m12 * fu) * inverse;
+    const u0 = (m11 * fu - m21 * fg) * inverse;
+    const gv = (m22 * bgv - m12 * buv) * inverse;
+    const uv = (m11 * buv - m21 * bgv) * inverse;
+    const gp = (m22 * bgp - m12 * bup) * inverse;
+    const up = (m11 * bup - m21 * bgp) * inverse;
+    peak[o] = g0;
+    peak[o + 1] = gv;
+    peak[o + 2] = gp;
+    peak[o + 3] = u0;
+    peak[o + 4] = uv;
+    peak[o + 5] = up;
+    const ga = g[MEAN_BY_A] as number;
+    const ka = knee * (k[MEAN_BY_A] as number);
+    const kx = knee * (k[MEAN_BY_X] as number);
+    const mean = k[MEAN] as number;
+    const grid = (g[MEAN] as number) + ga * g0;
+    const gridByV = (g[MEAN_BY_X] as number) + ga * gv;
+    const gridByP = ga * gp;
+    const extra = laws.extraPlateSiemens;
+    i0[2 * s] = grid;
+    i0[2 * s + 1] = knee * mean + ka * u0 - grid + extra * (p - laws.restPlateVolts);
+    slope[4 * s] = gridByV;
+    slope[4 * s + 1] = gridByP;
+    slope[4 * s + 2] = kx + ka * uv - gridByV;
+    slope[4 * s + 3] = kx / mu + kneeSlope * mean + ka * up - gridByP + extra;
+  }
+
+  /** Solves the four port volts with the stage currents taken as straight; moves the estimates. True when settled. */
+  private solvePorts(pass: number): boolean {
+    const { plan, w, ag, au, open, i0, slope, peak, m } = this;
+    const zz = plan.portFromCurrent;
+    // (1 + Z·J)·d = open − Z·i0 − w, 4 × 5 augmented in m
+    for (let r = 0; r < 4; r++) {
+      const z0 = zz[4 * r] as number;
+      const z1 = zz[4 * r + 1] as number;
+      const z2 = zz[4 * r + 2] as number;
+      const z3 = zz[4 * r + 3] as number;
+      const o = 5 * r;
+      m[o] = z0 * (slope[0] as number) + z1 * (slope[2] as number);
+      m[o + 1] = z0 * (slope[1] as number) + z1 * (slope[3] as number);
+      m[o + 2] = z2 * (slope[4] as number) + z3 * (slope[6] as number);
+      m[o + 3] = z2 * (slope[5] as number) + z3 * (slope[7] as number);
+      m[o + r] = (m[o + r] as number) + 1;
+      m[o + 4] =
+        (open[r] as number) -
+        (w[r] as number) -
+        z0 * (i0[0] as number) -
+        z1 * (i0[1] as number) -
+        z2 * (i0[2] as number) -
+        z3 * (i0[3] as number);
+    }
+    // conductances are positive and the diagonal leads, so elimination needs no pivoting
+    for (let c = 0; c < 3; c++) {
+      const inverse = 1 / (m[6 * c] as number);
+      for (let r = c + 1; r < 4; r++) {
+        const f = (m[5 * r + c] as number) * inverse;
+        for (let q = c + 1; q < 5; q++) m[5 * r + q] = (m[5 * r + q] as number) - f * (m[5 * c + q] as number);
+      }
+    }
+    const d3 = (m[19] as number) / (m[18] as number);
+    const d2 = ((m[14] as number) - (m[13] as number) * d3) / (m[12] as number);
+    const d1 = ((m[9] as number) - (m[8] as number) * d3 - (m[7] as number) * d2) / (m[6] as number);
+    const d0 =
+      ((m[4] as number) - (m[3] as number) * d3 - (m[2] as number) * d2 - (m[1] as number) * d1) / (m[0] as number);
+    const grid = Math.max(Math.abs(d0), Math.abs(d2));
+    const plate = Math.max(Math.abs(d1), Math.abs(d3));
+    if (!(grid < 1e6) || !(plate < 1e9)) {
+      // lost: start this step again from the rest point's neighbourhood
+      w[0] = this.rest.gridVolts;
+      w[1] = this.rest.plateVolts;
+      w[2] = this.rest.gridVolts;
+      w[3] = this.rest.plateVolts;
+      return false;
+    }
+    let share = grid > LONGEST_GRID_MOVE_VOLTS ? LONGEST_GRID_MOVE_VOLTS / grid : 1;
+    if (pass > 12) share *= 0.5;
+    let largest = 0;
+    for (let s = 0; s < 2; s++) {
+      const dv = s === 0 ? d0 : d2;
+      const dp = s === 0 ? d1 : d3;
+      const o = 6 * s;
+      const dg = (peak[o] as number) + (peak[o + 1] as number) * dv + (peak[o + 2] as number) * dp;
+      const du = (peak[o + 3] as number) + (peak[o + 4] as number) * dv + (peak[o + 5] as number) * dp;
+      const a = ag[s] as number;
+      const b = au[s] as number;
+      w[2 * s] = (w[2 * s] as number) + share * dv;
+      w[2 * s + 1] = (w[2 * s + 1] as number) + share * dp;
+      ag[s] = Math.max(a + share * dg, 0.2 * a);
+      au[s] = Math.max(b + share * du, 0.2 * b);
+      i0[2 * s] = (i0[2 * s] as number) + (slope[4 * s] as number) * dv + (slope[4 * s + 1] as number) * dp;
+      i0[2 * s + 1] = (i0[2 * s + 1] as number) + (slope[4 * s + 2] as number) * dv + (slope[4 * s + 3] as number) * dp;
+      largest = Math.max(largest, Math.abs(dg), Math.abs(du));
+    }
+    return share === 1 && grid < GRID_MOVE_VOLTS && plate < PLATE_MOVE_VOLTS && largest < PEAK_MOVE_VOLTS;
+  }
+}

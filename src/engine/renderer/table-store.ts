@@ -1,0 +1,44 @@
+import type { RestPoint } from '../circuits/rest-point.ts';
+import type { StageLaws } from '../circuits/stage-currents.ts';
+import { smoothLaws } from '../circuits/stage-laws.ts';
+import type { CycleLaw } from '../tubes/cycle-average.ts';
+import { cycleTable } from '../tubes/cycle-table.ts';
+import type { SmoothLaw } from '../tubes/smooth-law.ts';
+
+/** Kept tables of one run, so that variants of one tube share them. */
+export class TableStore {
+  private readonly kept = new Map<string, CycleLaw>();
+
+  /**
+   * The averaged laws of a circuit as tables, wide enough for its carrier at full modulation.
+   *
+   * @param rest        the circuit at rest
+   * @param modulation  largest modulation depth it will see, 0 and up
+   */
+  lawsFor(rest: RestPoint, modulation: number): StageLaws {
+    if (rest.circuit.detector.law !== 'tube') return rest.laws;
+    const law = rest.circuit.tube.law;
+    const { grid, cathode } = smoothLaws(law);
+    const carrier = widen(1.1 * rest.tuned.carrierPeakVolts * (1 + modulation));
+    const cathodeTop = Math.max(2, law.phi) + rest.circuit.plate.supplyVolts / law.mu + 2 * carrier + 2;
+    return {
+      ...rest.laws,
+      grid: this.table(`grid ${law.Gg} ${law.Cg} ${law.xi}`, grid, 3 + 0.5 * carrier, carrier),
+      cathode: this.table(`cathode ${law.G} ${law.C} ${law.gamma}`, cathode, widen(cathodeTop), carrier),
+    };
+  }
+
+  private table(name: string, law: SmoothLaw, topVolts: number, topCarrier: number): CycleLaw {
+    const key = `${name} ${topVolts} ${topCarrier}`;
+    const found = this.kept.get(key);
+    if (found) return found;
+    const made = cycleTable(law, topVolts, topCarrier);
+    this.kept.set(key, made);
+    return made;
+  }
+}
+
+/** Rounds a voltage up to a step of a third of an octave, so that near variants share a table. */
+function widen(volts: number): number {
+  return 2 ** (Math.ceil(3 * Math.log2(Math.max(volts, 0.02))) / 3);
+}
