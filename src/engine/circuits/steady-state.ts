@@ -50,24 +50,39 @@ function harmonicPaths(rest: RestPoint, hertz: number, highest: number): Harmoni
   return { ohms, open: [open[gridNode] as number, open[plateNode] as number, open[output.index] as number] };
 }
 
+/** Largest harmonic in the upper half of the sampled band, re the fundamental, at which the sampling is fine enough. */
+const TAIL_SHARE = 2e-6;
+const MOST_SAMPLES = 128;
+
 /**
  * The full nonlinear steady state for a tone: the averaged laws by quadrature at equally spaced instants of one audio
  * period, the network at each harmonic, Newton on both. No time stepping, no tables: a second way to the renderer's
- * answer. The depth is raised from nothing when a direct solution fails.
+ * answer. The depth is raised from nothing when a direct solution fails, and the instants are doubled when the port
+ * volts still have something in the upper half of the sampled band (kinks such as clipping).
  *
- * @param hertz    audio frequency, above 0
- * @param depth    modulation at the station, 0 to 1
- * @param samples  instants a period, a power of two, 32 to 512; kinks such as clipping want more
+ * @param hertz  audio frequency, above 0
+ * @param depth  modulation at the station, 0 to 1
  * Raises InputError `no-steady-state`.
  */
-export function steadyTone(rest: RestPoint, hertz: number, depth: number, samples = 64): SteadyTone {
+export function steadyTone(rest: RestPoint, hertz: number, depth: number): SteadyTone {
+  for (let samples = 64; ; samples *= 2) {
+    const { tone, tail } = steadyToneAt(rest, hertz, depth, samples);
+    if (tail < TAIL_SHARE || samples >= MOST_SAMPLES) return tone;
+  }
+}
+
+function steadyToneAt(
+  rest: RestPoint,
+  hertz: number,
+  depth: number,
+  samples: number,
+): { tone: SteadyTone; tail: number } {
   const highest = samples / 2 - 1;
   const paths = harmonicPaths(rest, hertz, highest);
   const impulse = impulseOhms(paths, samples);
   const w = startFromLinear(rest, hertz, depth, samples);
   let found = solveAt(rest, paths, impulse, envelopeOf(rest, hertz, depth, samples), w);
   if (!(found.residual < 1e-9)) {
-    w.fill(0);
     for (let k = 0; k < samples; k++) {
       w[2 * k] = rest.gridVolts;
       w[2 * k + 1] = rest.plateVolts;
@@ -84,7 +99,27 @@ export function steadyTone(rest: RestPoint, hertz: number, depth: number, sample
       expected: 'values for which the detector settles',
     });
   }
-  return { ...readHarmonics(paths, w, found.currents, samples), residualVolts: found.residual };
+  const tone = { ...readHarmonics(paths, w, found.currents, samples), residualVolts: found.residual };
+  return { tone, tail: Math.max(tailShare(w, 0, samples), tailShare(w, 1, samples)) };
+}
+
+/** Largest of three harmonics in the upper half of the sampled band, re the fundamental, at one port. */
+function tailShare(w: Float64Array, port: number, samples: number): number {
+  let largest = 0;
+  let fundamental = 0;
+  for (const h of [1, samples / 4, samples / 4 + 1, (3 * samples) / 8]) {
+    let re = 0;
+    let im = 0;
+    for (let k = 0; k < samples; k++) {
+      const angle = (2 * Math.PI * h * k) / samples;
+      re += (w[2 * k + port] as number) * Math.cos(angle);
+      im += (w[2 * k + port] as number) * Math.sin(angle);
+    }
+    const size = Math.hypot(re, im);
+    if (h === 1) fundamental = size;
+    else largest = Math.max(largest, size);
+  }
+  return fundamental > 0 ? largest / fundamental : 0;
 }
 
 /** Peak carrier at the tuned circuit over one period for a tone of the given depth, V. */

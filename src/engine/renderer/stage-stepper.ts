@@ -48,9 +48,10 @@ export class StageStepper {
   private readonly t = new Float64Array(6);
   private readonly outputIndex: number;
   private readonly outputWeight: number;
-  /** Newton passes taken and steps that did not settle, since reset. */
+  /** Newton passes taken, steps that did not settle, and steps, since reset. */
   passes = 0;
   unsettled = 0;
+  steps = 0;
 
   /**
    * @param rest  the circuit at rest; stepping starts there
@@ -82,6 +83,7 @@ export class StageStepper {
     }
     this.passes = 0;
     this.unsettled = 0;
+    this.steps = 0;
   }
 
   /** Output volts at the end of the last step. */
@@ -106,6 +108,7 @@ export class StageStepper {
   step(e0: number, e1: number): void {
     const { plan, z, past, weights, w, ag, au, open, i0 } = this;
     const n = plan.size;
+    this.steps++;
     for (let r = 0; r < 4; r++) {
       let sum = plan.portConstant[r] as number;
       for (let c = 0; c < n; c++) sum += (plan.portFromState[r * n + c] as number) * (z[c] as number);

@@ -1,0 +1,60 @@
+import type { RestPoint } from '../circuits/rest-point.ts';
+import type { StageLaws } from '../circuits/stage-currents.ts';
+import { DetectorRenderer, type Quality } from './detector-renderer.ts';
+
+/** A clip through one detector. */
+export interface RenderedClip {
+  /** Output volts less the rest volts, same length as the clip and in time with it. */
+  readonly volts: Float64Array;
+  readonly peakVolts: number;
+  /** Steps whose equations did not settle within the passes allowed: 0 in a sound render. */
+  readonly unsettledSteps: number;
+  /** Mean Newton passes a step. */
+  readonly passesPerStep: number;
+}
+
+const BLOCK = 4096;
+
+/**
+ * Renders a whole clip: the detector starts at rest, the filters' delay is taken out.
+ *
+ * @param modulation  m·p, any length
+ * @param onBlock     told the frames done after each block; may throw to stop
+ */
+export function renderClip(
+  rest: RestPoint,
+  laws: StageLaws,
+  modulation: Float64Array,
+  clipRateHertz: number,
+  quality: Quality = 'normal',
+  onBlock: (framesDone: number) => void = () => {},
+): RenderedClip {
+  const renderer = new DetectorRenderer(rest, laws, clipRateHertz, quality);
+  const delay = renderer.delaySamples;
+  const volts = new Float64Array(modulation.length);
+  const input = new Float64Array(BLOCK);
+  const output = new Float64Array(BLOCK);
+  let peakVolts = 0;
+  const total = modulation.length + delay;
+  for (let from = 0; from < total; from += BLOCK) {
+    const frames = Math.min(BLOCK, total - from);
+    for (let n = 0; n < frames; n++) input[n] = from + n < modulation.length ? (modulation[from + n] as number) : 0;
+    renderer.process(input, output, frames);
+    for (let n = 0; n < frames; n++) {
+      const at = from + n - delay;
+      if (at < 0) continue;
+      const value = output[n] as number;
+      volts[at] = value;
+      const size = Math.abs(value);
+      if (size > peakVolts) peakVolts = size;
+    }
+    onBlock(Math.min(from + frames, modulation.length));
+  }
+  const steps = renderer.stepper.steps;
+  return {
+    volts,
+    peakVolts,
+    unsettledSteps: renderer.stepper.unsettled,
+    passesPerStep: steps > 0 ? renderer.stepper.passes / steps : 0,
+  };
+}
