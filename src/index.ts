@@ -1,0 +1,11 @@
+export { analyse, type Analysis } from './engine/circuits/analysis.ts';
+export type { DetectorCircuit } from './engine/circuits/circuit.ts';
+export { LinearResponse } from './engine/circuits/response.ts';
+export { type RestPoint, restPoint } from './engine/circuits/rest-point.ts';
+export { steadyTone } from './engine/circuits/steady-state.ts';
+export { type Fault, InputError } from './engine/errors.ts';
+export { DetectorRenderer } from './engine/renderer/detector-renderer.ts';
+export { renderClip } from './engine/renderer/render-clip.ts';
+export { TableStore } from './engine/renderer/table-store.ts';
+export { programmeFrom, toMono } from './engine/station/programme.ts';
+export type { Result } from './results/result.ts';

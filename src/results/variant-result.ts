@@ -1,0 +1,48 @@
+import type { Analysis } from '../engine/circuits/analysis.ts';
+import type { RestPoint } from '../engine/circuits/rest-point.ts';
+import { cautionText } from './caution-text.ts';
+import type { CircuitRecord, SoundRecord, VariantResult } from './result.ts';
+
+/** The circuit as the equations used it: loaded Q and detuning are those with the detector connected. */
+export function circuitRecord(rest: RestPoint): CircuitRecord {
+  const { circuit, tuned } = rest;
+  const { station, tunedCircuit, detector, tube, plate, output } = circuit;
+  const coil = tunedCircuit.kind === 'coil' ? tunedCircuit : null;
+  return {
+    station,
+    tunedCircuit: {
+      loadedQ: tuned.loadedQ,
+      detuneHertz: tuned.detuneHertz,
+      unloadedQ: coil ? coil.unloadedQ : null,
+      coilHenries: coil ? coil.coilHenries : null,
+      tap: coil ? coil.tap : 1,
+      retuned: coil ? coil.retuned : null,
+    },
+    detector,
+    tube,
+    plate,
+    output,
+  };
+}
+
+/** One variant of a result from its analysis; `sound` only where a clip was rendered. */
+export function variantResult(
+  name: string,
+  changes: Readonly<Record<string, string>>,
+  analysis: Analysis,
+  sound?: SoundRecord,
+): VariantResult {
+  return {
+    name,
+    changes,
+    circuit: circuitRecord(analysis.rest),
+    rest: analysis.figures,
+    response: analysis.response,
+    lowCornerHertz: analysis.lowCornerHertz,
+    highCornerHertz: analysis.highCornerHertz,
+    distortion: analysis.distortion,
+    sensitivity: analysis.sensitivity,
+    ...(sound ? { sound } : {}),
+    cautions: analysis.cautions.map(cautionText),
+  };
+}

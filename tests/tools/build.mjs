@@ -1,0 +1,45 @@
+// Builds what ships: the command as one file, and the audio-thread processor for browsers.
+import { rm } from 'node:fs/promises';
+import { fileURLToPath } from 'node:url';
+import { join } from 'node:path';
+import { build } from 'esbuild';
+
+const root = fileURLToPath(new URL('../../', import.meta.url));
+const out = join(root, 'out', 'build');
+
+// web-audio-api brings a sound-card addon and decoders under other licences; the command carries neither
+const noCodec = join(root, 'src', 'cli', 'stubs', 'no-codec.ts');
+const stubs = { '@audio/speaker': join(root, 'src', 'cli', 'stubs', 'no-speaker.ts') };
+for (const codec of ['aac', 'ac3', 'amr', 'avi', 'dsd', 'dts', 'eac3', 'mod', 'mp4', 'mpc', 'tta', 'wavpack', 'webm', 'wma']) {
+  stubs[`@audio/decode-${codec}`] = noCodec;
+}
+
+await rm(out, { recursive: true, force: true });
+await build({
+  entryPoints: { presolder: join(root, 'src', 'cli', 'main.ts') },
+  outdir: out,
+  outExtension: { '.js': '.mjs' },
+  bundle: true,
+  platform: 'node',
+  format: 'esm',
+  target: 'node20',
+  minify: true,
+  keepNames: false,
+  legalComments: 'linked',
+  alias: stubs,
+  logLevel: 'warning',
+  banner: {
+    js: '#!/usr/bin/env node\nimport { createRequire as presolderRequire } from "node:module"; const require = presolderRequire(import.meta.url);',
+  },
+});
+await build({
+  entryPoints: { 'detector-worklet': join(root, 'src', 'worklet', 'entry.ts') },
+  outdir: out,
+  bundle: true,
+  platform: 'browser',
+  format: 'iife',
+  target: 'es2022',
+  minify: true,
+  legalComments: 'none',
+  logLevel: 'warning',
+});
