@@ -3,7 +3,7 @@ import { cathodeAmps, controlVolts, gridAmps } from '../../src/engine/tubes/laws
 import type { TubeLaw } from '../../src/engine/tubes/tube.ts';
 
 // K. Dempwolf and U. Zölzer, "A physically-motivated triode model for circuit simulations", Proc. DAFx-11, Paris, 2011,
-// parameter sets RSD-1 (seen in a transcription) and RSD-2 (from memory). Their constant Ig0 is no part of our law: it never turns off.
+// parameter sets RSD-1 (seen in a public copy) and RSD-2 (from memory). Their constant Ig0 is no part of our law: it never turns off.
 const RSD_1: TubeLaw = { G: 2.242e-3, mu: 103.2, gamma: 1.26, C: 3.4, phi: 0, Gg: 6.177e-4, xi: 1.314, Cg: 9.901 };
 const RSD_1_CONSTANT = 8.025e-8;
 const RSD_2: TubeLaw = { G: 2.173e-3, mu: 100.2, gamma: 1.28, C: 3.19, phi: 0, Gg: 5.911e-4, xi: 1.358, Cg: 11.76 };

@@ -64,7 +64,7 @@ describe('K weighting, ITU-R BS.1770-4', () => {
   });
 });
 
-describe('loudness, the signals of EBU Tech 3341 (V4, 2023; cases seen in a public transcription), ±0.1 LU as printed', () => {
+describe('loudness, the signals of EBU Tech 3341 (V4, 2023; cases seen in a public copy), ±0.1 LU as printed', () => {
   const cases: readonly [number, number, readonly [number, number][]][] = [
     [1, -23, [[-23, 20]]],
     [2, -33, [[-33, 20]]],

@@ -1,7 +1,7 @@
 /** A second-order section as the Recommendation prints it: b0, b1, b2, then a1, a2 (a0 is 1). */
 type Section = readonly [number, number, number, number, number];
 
-/** ITU-R BS.1770-4, Annex 1, tables 1 and 2, at 48 kHz (from memory, identical in public transcriptions that were seen). */
+/** ITU-R BS.1770-4, Annex 1, tables 1 and 2, at 48 kHz (from memory, identical in public copies that were seen). */
 const TABLE_RATE_HERTZ = 48000;
 const SHELF: Section = [1.53512485958697, -2.69169618940638, 1.19839281085285, -1.69065929318241, 0.73248077421585];
 const HIGH_PASS: Section = [1, -2, 1, -1.99004745483398, 0.99007225036621];
