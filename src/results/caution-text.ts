@@ -52,8 +52,6 @@ export function cautionText({ code, figure, limit }: Caution): string {
         'overload does not show.'
       );
     case 'limited':
-      return (
-        `The transmitter's limiter held ${figure} samples at −100 % modulation: modulation is set above 100 %.`
-      );
+      return `The transmitter's limiter held ${figure} samples at −100 % modulation: modulation is set above 100 %.`;
   }
 }

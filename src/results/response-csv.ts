@@ -1,0 +1,52 @@
+import { onePlainLine } from './plain-line.ts';
+import type { ResponseRow, Result } from './result.ts';
+
+/** The column group of one variant: its heading with the unit, and the number of a row. */
+const COLUMNS: readonly { readonly heading: string; readonly value: (row: ResponseRow) => number }[] = [
+  { heading: 'response (dB re 400 Hz)', value: (row) => row.decibels },
+  { heading: 'phase (degrees)', value: (row) => row.phaseDegrees },
+  { heading: 'output at 30 % modulation (V rms)', value: (row) => row.voltsRmsAt30Percent },
+  { heading: 'cost of tuned circuit (dB)', value: (row) => row.cost.tunedCircuit },
+  { heading: 'cost of grid capacitor (dB)', value: (row) => row.cost.gridCapacitor },
+  { heading: 'cost of plate bypass (dB)', value: (row) => row.cost.plateBypass },
+  { heading: 'cost of load and coupling (dB)', value: (row) => row.cost.load },
+];
+
+/**
+ * The response as comma-separated values: one row a frequency, one group of seven columns a variant, units in the
+ * heading, decimal points, numbers unrounded, rows ended by CR LF (RFC 4180, from memory). A frequency that a variant
+ * lacks leaves its cells empty. A byte order mark stands in front only when a name has letters beyond ASCII, since some
+ * spreadsheets take such a file for another encoding without it.
+ *
+ * A cell never starts with a variant's name, so none can be taken for a formula; semicolons in names become commas,
+ * since a spreadsheet that separates by semicolons would start a cell after one.
+ */
+export function responseCsv(result: Result): string {
+  const rowsByHertz = result.variants.map((variant) => new Map(variant.response.map((row) => [row.hertz, row])));
+  const allHertz = [...new Set(rowsByHertz.flatMap((rows) => [...rows.keys()]))].sort((a, b) => a - b);
+  const heading = [
+    'frequency (Hz)',
+    ...result.variants.flatMap((variant) => {
+      const name = onePlainLine(variant.name).replaceAll(';', ',');
+      return COLUMNS.map((column) => `${column.heading}: ${name}`);
+    }),
+  ];
+  const lines = allHertz.map((hertz) => [
+    numberCell(hertz),
+    ...rowsByHertz.flatMap((rows) => {
+      const row = rows.get(hertz);
+      return COLUMNS.map((column) => (row === undefined ? '' : numberCell(column.value(row))));
+    }),
+  ]);
+  const text = [heading.map(textCell), ...lines].map((cells) => `${cells.join(',')}\r\n`).join('');
+  return /[^\r\n -~]/.test(text) ? `\ufeff${text}` : text;
+}
+
+function numberCell(value: number): string {
+  if (!Number.isFinite(value)) throw new Error(`internal: ${value} in the response table`);
+  return String(value);
+}
+
+function textCell(text: string): string {
+  return /[",]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text;
+}
