@@ -4,7 +4,7 @@ import type { DetectorCircuit } from './circuit.ts';
 import { magnitude } from './complex.ts';
 import { type CostPart, costByPart } from './cost-by-part.ts';
 import { leakOhmsAtAudio } from './grid-leak.ts';
-import { amplifierGain, corners, LinearResponse, ratioDecibels, REFERENCE_HERTZ } from './response.ts';
+import { amplifierGain, corners, LinearResponse, REFERENCE_HERTZ, ratioDecibels } from './response.ts';
 import { type RestPoint, restPoint } from './rest-point.ts';
 import { type SteadyTone, steadyTone } from './steady-state.ts';
 

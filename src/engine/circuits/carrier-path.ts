@@ -46,6 +46,13 @@ export class CarrierPath {
    * ∂ln|V_g/E|/∂g, ∂ln|V_g/E|/∂k, ∂ln|U1/E|/∂g, ∂ln|U1/E|/∂k (1/S).
    */
   ratios(g: number, k: number, out: Float64Array): void {
+    this.ratiosAt(Float64Array.of(g, k), out);
+  }
+
+  /** The same for g = `chords[0]`, k = `chords[1]`, taking no memory. */
+  ratiosAt(chords: Float64Array, out: Float64Array): void {
+    const g = chords[0] as number;
+    const k = chords[1] as number;
     const c = this.c;
     const perMu = c[0] as number;
     const gpRe = c[3] as number;
@@ -72,6 +79,28 @@ export class CarrierPath {
     out[GRID_BY_TUBE] = (betaRe * perMu) / beta2 - byK;
     out[TUBE_BY_GRID] = (etaRe * perMu) / eta2 - byG;
     out[TUBE_BY_TUBE] = -byK;
+  }
+
+  /** Only |V_g/E| and |U1/E|, into `out[0..1]`, for g = `chords[0]`, k = `chords[1]`. */
+  levelsAt(chords: Float64Array, out: Float64Array): void {
+    const g = chords[0] as number;
+    const k = chords[1] as number;
+    const c = this.c;
+    const perMu = c[0] as number;
+    const gpRe = c[3] as number;
+    const gpIm = c[4] as number;
+    const alphaRe = (c[1] as number) + g;
+    const alphaIm = c[2] as number;
+    const betaRe = (c[5] as number) + k * perMu;
+    const betaIm = c[6] as number;
+    const etaRe = (c[7] as number) + g * perMu;
+    const etaIm = c[8] as number;
+    const gammaRe = k - g - gpRe;
+    const detRe = alphaRe * betaRe - alphaIm * betaIm + gpRe * gammaRe + gpIm * gpIm;
+    const detIm = alphaRe * betaIm + alphaIm * betaRe - gpRe * gpIm + gpIm * gammaRe;
+    const scale = (c[9] as number) / Math.sqrt(detRe * detRe + detIm * detIm);
+    out[GRID_RATIO] = scale * Math.sqrt(betaRe * betaRe + betaIm * betaIm);
+    out[TUBE_RATIO] = scale * Math.sqrt(etaRe * etaRe + etaIm * etaIm);
   }
 
   /** Complex ratios V_g/E and V_p/E, and the admittance the stage shows to the tuned circuit, S. */

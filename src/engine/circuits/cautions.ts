@@ -1,9 +1,9 @@
+import { nodesFor } from '../tubes/cycle-average.ts';
+import { magnitude } from './complex.ts';
 import { leakOhmsAtAudio } from './grid-leak.ts';
 import { impedanceAt } from './plate-network.ts';
-import { magnitude } from './complex.ts';
 import type { RestPoint } from './rest-point.ts';
 import { smoothLaws } from './stage-laws.ts';
-import { nodesFor } from '../tubes/cycle-average.ts';
 
 /** A tube's published limits; null where the sheet prints none. */
 export interface Ratings {
@@ -50,7 +50,8 @@ export function restCautions(rest: RestPoint, ratings: Ratings | null): Caution[
   };
   const supply = circuit.plate.supplyVolts;
   raise(supply >= SHOCK_VOLTS, 'shock', supply, SHOCK_VOLTS);
-  if (ratings?.plateVolts) raise(rest.plateVolts > ratings.plateVolts, 'plate-volts', rest.plateVolts, ratings.plateVolts);
+  if (ratings?.plateVolts)
+    raise(rest.plateVolts > ratings.plateVolts, 'plate-volts', rest.plateVolts, ratings.plateVolts);
   const watts = rest.plateVolts * rest.currents.plateAmps;
   if (ratings?.plateWatts) raise(watts > ratings.plateWatts, 'plate-watts', watts, ratings.plateWatts);
   raise(circuit.detector.law !== 'tube', 'textbook', 0, 0);

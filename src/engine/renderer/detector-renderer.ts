@@ -32,6 +32,7 @@ export class DetectorRenderer {
   private readonly decimator: Decimator;
   private readonly envelope: TunedEnvelope;
   private readonly drives: Float64Array;
+  private readonly volts: Float64Array;
   private readonly restVolts: number;
 
   /**
@@ -51,6 +52,7 @@ export class DetectorRenderer {
     this.envelope = new TunedEnvelope(station.carrierHertz, rest.tuned.loadedQ, rest.tuned.detuneHertz, stepSeconds);
     this.stepper = new StageStepper(rest, laws, stepSeconds);
     this.drives = new Float64Array(fractions.length);
+    this.volts = new Float64Array(this.steps);
     this.delaySamples = 2 * filterDelay(clipRateHertz) - 1;
     this.restVolts = (rest.unknowns[rest.audio.output.index] as number) * rest.audio.output.weight;
     this.reset();
@@ -76,14 +78,19 @@ export class DetectorRenderer {
     const { interpolator, decimator, envelope, stepper, drives, steps, restVolts } = this;
     const peak = this.rest.tuned.carrierPeakVolts;
     const { magnitudes } = envelope;
+    const { drive, state } = stepper;
+    const { index: place, weight } = this.rest.audio.output;
+    const { volts } = this;
     for (let n = 0; n < frames; n++) {
-      interpolator.process(input[n] as number, drives);
+      interpolator.process(input, n, drives);
       for (let k = 0; k < steps; k++) {
-        envelope.step(1 + (drives[2 * k] as number), 1 + (drives[2 * k + 1] as number));
-        stepper.step(peak * (magnitudes[0] as number), peak * (magnitudes[1] as number));
-        decimator.push(stepper.outputVolts() - restVolts);
+        envelope.step(drives, 2 * k);
+        drive[0] = peak * (magnitudes[0] as number);
+        drive[1] = peak * (magnitudes[1] as number);
+        stepper.step();
+        volts[k] = (state[place] as number) * weight - restVolts;
       }
-      output[n] = decimator.read();
+      decimator.process(volts, output, n);
     }
   }
 }

@@ -56,7 +56,8 @@ class SlidingWindow {
     this.values = new Float64Array(2 * length);
   }
 
-  push(value: number): void {
+  push(from: Float64Array | Float32Array, index: number): void {
+    const value = from[index] as number;
     this.values[this.at] = value;
     this.values[this.at + this.length] = value;
     this.at = this.at + 1 === this.length ? 0 : this.at + 1;
@@ -99,10 +100,10 @@ export class Interpolator {
     });
   }
 
-  /** Takes one clip sample; writes one value a fraction. */
-  process(sample: number, out: Float64Array): void {
+  /** Takes clip sample `index` of `input`; writes one value a fraction. */
+  process(input: Float64Array | Float32Array, index: number, out: Float64Array): void {
     const { window, taps, phases, count } = this;
-    window.push(sample);
+    window.push(input, index);
     const { values, at } = window;
     for (let row = 0; row < count; row++) {
       if (row === this.plain) {
@@ -136,7 +137,6 @@ export class Decimator {
   private readonly rows: Float64Array;
   private readonly middle: number;
   private readonly lanes: readonly SlidingWindow[];
-  private lane = 0;
 
   constructor(clipRateHertz: number, factor: number) {
     const shape = design(clipRateHertz);
@@ -161,32 +161,26 @@ export class Decimator {
     );
   }
 
-  /** Takes the values of one clip sample in turn; the last stands on the clip instant. */
-  push(value: number): void {
-    (this.lanes[this.lane] as SlidingWindow).push(value);
-    this.lane = this.lane + 1 === this.factor ? 0 : this.lane + 1;
-  }
-
-  /** The filtered value at the clip instant `half` samples ago. */
-  read(): number {
+  /** Takes the `factor` values of one clip sample, the last on its instant; writes the value of `half` samples ago. */
+  process(values: Float64Array, output: Float64Array | Float32Array, index: number): void {
     const { rows, half, factor, lanes } = this;
+    for (let lane = 0; lane < factor; lane++) (lanes[lane] as SlidingWindow).push(values, lane);
     const taps = 2 * half;
     const instants = lanes[factor - 1] as SlidingWindow;
     let even = this.middle * (instants.values[instants.at] as number);
     let odd = 0;
     for (let row = 0; row < factor - 1; row++) {
-      const { values, at } = lanes[row] as SlidingWindow;
+      const { values: past, at } = lanes[row] as SlidingWindow;
       const o = row * taps;
       for (let k = 0; k < taps; k += 2) {
-        even += (rows[o + k] as number) * (values[at + k] as number);
-        odd += (rows[o + k + 1] as number) * (values[at + k + 1] as number);
+        even += (rows[o + k] as number) * (past[at + k] as number);
+        odd += (rows[o + k + 1] as number) * (past[at + k + 1] as number);
       }
     }
-    return even + odd;
+    output[index] = even + odd;
   }
 
   reset(): void {
     for (const lane of this.lanes) lane.reset();
-    this.lane = 0;
   }
 }

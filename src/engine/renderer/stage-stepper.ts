@@ -1,3 +1,4 @@
+import type { CarrierPath } from '../circuits/carrier-path.ts';
 import type { RestPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
 import { CHORD, CHORD_BY_A, CHORD_BY_X, MEAN, MEAN_BY_A, MEAN_BY_X } from '../tubes/cycle-average.ts';
@@ -15,6 +16,10 @@ const PEAK_MOVE_VOLTS = 1e-3;
 /** A grid move is never taken longer than this in one pass, V: the law is exponential over tens of millivolts. */
 const LONGEST_GRID_MOVE_VOLTS = 2;
 const MOST_PASSES = 60;
+/** Slopes are taken anew when the stage has moved this far, V: a third of the shortest e-fold of a grid law. */
+const STALE_VOLTS = 0.03;
+/** Largest product of a quick pass's move and its staleness, V²: over an e-fold of 60 mV it leaves 2e-7 V. */
+const QUICK_VOLTS_SQUARED = 5e-8;
 
 /**
  * The grid-leak stage at audio rate: one implicit step a call, no memory taken.
@@ -24,8 +29,12 @@ const MOST_PASSES = 60;
  * makes one pass enough for most programme.
  */
 export class StageStepper {
+  /** Carrier's peak at the tuned circuit a third into the coming step and at its end, V, 0 or more: set by the caller. */
+  readonly drive = new Float64Array(2);
   private readonly laws: StageLaws;
   private readonly rest: RestPoint;
+  private readonly path: CarrierPath;
+  private readonly at = new Float64Array(2);
   private readonly plan: StepPlan;
   private readonly weights = forecastWeights();
   /** Network unknowns now. */
@@ -43,15 +52,22 @@ export class StageStepper {
   /** Peaks' own moves: constant part and slopes by grid and plate volts, a stage: 2 × 6. */
   private readonly peak = new Float64Array(12);
   private readonly m = new Float64Array(20);
+  /** For quick passes: inverse of the peaks' 2 × 2 and the means' slopes by peak, 6 a stage; inverse port equations. */
+  private readonly blend = new Float64Array(12);
+  private readonly square = new Float64Array(16);
+  private readonly inverse = new Float64Array(16);
+  private readonly iQuick = new Float64Array(4);
+  /** Where the kept slopes were taken: grid volts, u less phi, peaks. */
+  private readonly kept = new Float64Array(4);
   private readonly g = new Float64Array(6);
   private readonly k = new Float64Array(6);
   private readonly t = new Float64Array(6);
-  private readonly outputIndex: number;
-  private readonly outputWeight: number;
   /** Newton passes taken, steps that did not settle, and steps, since reset. */
   passes = 0;
   unsettled = 0;
   steps = 0;
+  /** Steps that the kept slopes settled. */
+  quick = 0;
 
   /**
    * @param rest  the circuit at rest; stepping starts there
@@ -60,11 +76,10 @@ export class StageStepper {
   constructor(rest: RestPoint, laws: StageLaws, stepSeconds: number) {
     this.rest = rest;
     this.laws = laws;
+    this.path = rest.path;
     this.plan = planStep(rest.audio.system, [rest.audio.gridNode, rest.audio.plateNode], stepSeconds);
     this.z = new Float64Array(this.plan.size);
     this.zNext = new Float64Array(this.plan.size);
-    this.outputIndex = rest.audio.output.index;
-    this.outputWeight = rest.audio.output.weight;
     this.reset();
   }
 
@@ -84,11 +99,13 @@ export class StageStepper {
     this.passes = 0;
     this.unsettled = 0;
     this.steps = 0;
+    this.quick = 0;
+    this.kept.fill(Number.POSITIVE_INFINITY);
   }
 
-  /** Output volts at the end of the last step. */
-  outputVolts(): number {
-    return (this.z[this.outputIndex] as number) * this.outputWeight;
+  /** Network unknowns at the end of the last step: node volts, then branch amperes. Read only. */
+  get state(): Float64Array {
+    return this.z;
   }
 
   gridVolts(): number {
@@ -99,13 +116,10 @@ export class StageStepper {
     return this.z[this.rest.audio.plateNode] as number;
   }
 
-  /**
-   * One step.
-   *
-   * @param e0  carrier's peak at the tuned circuit a third into the step, V, 0 or more
-   * @param e1  the same at its end
-   */
-  step(e0: number, e1: number): void {
+  /** One step under `drive`. */
+  step(): void {
+    const e0 = this.drive[0] as number;
+    const e1 = this.drive[1] as number;
     const { plan, z, past, weights, w, ag, au, open, i0 } = this;
     const n = plan.size;
     this.steps++;
@@ -131,11 +145,12 @@ export class StageStepper {
       ag[s] = tg > 0 ? tg * e : (past[8] as number) * e;
       au[s] = tu > 0 ? tu * e : (past[12] as number) * e;
     }
-    let settled = false;
+    let settled = this.quickPass();
     for (let pass = 0; pass < MOST_PASSES && !settled; pass++) {
       this.passes++;
-      this.linearise(0, e0);
-      this.linearise(1, e1);
+      this.linearise(0);
+      this.linearise(1);
+      this.keepSlopes();
       settled = this.solvePorts(pass);
     }
     if (!settled) this.unsettled++;
@@ -169,9 +184,163 @@ export class StageStepper {
     }
   }
 
+  /**
+   * A pass with the slopes of an earlier step: values only, then the kept inverse. True when the error that the stale
+   * slopes can have left is far below what is heard; else the estimate stays as forecast and the full passes follow.
+   */
+  private quickPass(): boolean {
+    const { laws, g, k, t, w, ag, au, open, i0, iQuick, slope, peak, blend, inverse, kept, at, path } = this;
+    const { grid, cathode, phi, mu } = laws;
+    const perMu = 1 / mu;
+    const e0 = this.drive[0] as number;
+    const e1 = this.drive[1] as number;
+    const u1 = (w[2] as number) + (w[3] as number) * perMu;
+    const stale =
+      Math.abs((w[2] as number) - (kept[0] as number)) +
+      Math.abs(u1 - (kept[1] as number)) +
+      Math.abs((ag[1] as number) - (kept[2] as number)) +
+      Math.abs((au[1] as number) - (kept[3] as number));
+    if (!(stale < STALE_VOLTS)) return false;
+    for (let s = 0; s < 2; s++) {
+      const v = w[2 * s] as number;
+      const p = w[2 * s + 1] as number;
+      const e = s === 0 ? e0 : e1;
+      const knee = laws.knee && p < KNEE_DONE_VOLTS ? (p > 0 ? Math.tanh(p / PLATE_KNEE_VOLTS) : 0) : 1;
+      const gridPeak = ag[s] as number;
+      const tubePeak = au[s] as number;
+      at[0] = v;
+      at[1] = gridPeak;
+      grid.levelsAt(at, g);
+      at[0] = v + p * perMu + phi;
+      at[1] = tubePeak;
+      cathode.levelsAt(at, k);
+      at[0] = g[CHORD] as number;
+      at[1] = knee * (k[CHORD] as number);
+      path.levelsAt(at, t);
+      const fg = (t[0] as number) * e - gridPeak;
+      const fu = (t[1] as number) * e - tubePeak;
+      const b = 6 * s;
+      const g0 = (blend[b] as number) * fg + (blend[b + 1] as number) * fu;
+      const u0 = (blend[b + 2] as number) * fg + (blend[b + 3] as number) * fu;
+      peak[b] = g0;
+      peak[b + 3] = u0;
+      const drawn = (g[MEAN] as number) + (blend[b + 4] as number) * g0;
+      iQuick[2 * s] = drawn;
+      iQuick[2 * s + 1] =
+        knee * (k[MEAN] as number) +
+        (blend[b + 5] as number) * u0 -
+        drawn +
+        laws.extraPlateSiemens * (p - laws.restPlateVolts);
+    }
+    const zz = this.plan.portFromCurrent;
+    const c0 = iQuick[0] as number;
+    const c1 = iQuick[1] as number;
+    const c2 = iQuick[2] as number;
+    const c3 = iQuick[3] as number;
+    const r0 =
+      (open[0] as number) -
+      (w[0] as number) -
+      (zz[0] as number) * c0 -
+      (zz[1] as number) * c1 -
+      (zz[2] as number) * c2 -
+      (zz[3] as number) * c3;
+    const r1 =
+      (open[1] as number) -
+      (w[1] as number) -
+      (zz[4] as number) * c0 -
+      (zz[5] as number) * c1 -
+      (zz[6] as number) * c2 -
+      (zz[7] as number) * c3;
+    const r2 =
+      (open[2] as number) -
+      (w[2] as number) -
+      (zz[8] as number) * c0 -
+      (zz[9] as number) * c1 -
+      (zz[10] as number) * c2 -
+      (zz[11] as number) * c3;
+    const r3 =
+      (open[3] as number) -
+      (w[3] as number) -
+      (zz[12] as number) * c0 -
+      (zz[13] as number) * c1 -
+      (zz[14] as number) * c2 -
+      (zz[15] as number) * c3;
+    const d0 =
+      (inverse[0] as number) * r0 +
+      (inverse[1] as number) * r1 +
+      (inverse[2] as number) * r2 +
+      (inverse[3] as number) * r3;
+    const d1 =
+      (inverse[4] as number) * r0 +
+      (inverse[5] as number) * r1 +
+      (inverse[6] as number) * r2 +
+      (inverse[7] as number) * r3;
+    const d2 =
+      (inverse[8] as number) * r0 +
+      (inverse[9] as number) * r1 +
+      (inverse[10] as number) * r2 +
+      (inverse[11] as number) * r3;
+    const d3 =
+      (inverse[12] as number) * r0 +
+      (inverse[13] as number) * r1 +
+      (inverse[14] as number) * r2 +
+      (inverse[15] as number) * r3;
+    const dg0 = (peak[0] as number) + (peak[1] as number) * d0 + (peak[2] as number) * d1;
+    const du0 = (peak[3] as number) + (peak[4] as number) * d0 + (peak[5] as number) * d1;
+    const dg1 = (peak[6] as number) + (peak[7] as number) * d2 + (peak[8] as number) * d3;
+    const du1 = (peak[9] as number) + (peak[10] as number) * d2 + (peak[11] as number) * d3;
+    const size =
+      Math.abs(d0) +
+      Math.abs(d2) +
+      (Math.abs(d1) + Math.abs(d3)) / mu +
+      Math.abs(dg0) +
+      Math.abs(dg1) +
+      Math.abs(du0) +
+      Math.abs(du1);
+    if (!(size * (stale + size) < QUICK_VOLTS_SQUARED)) return false;
+    w[0] = (w[0] as number) + d0;
+    w[1] = (w[1] as number) + d1;
+    w[2] = (w[2] as number) + d2;
+    w[3] = (w[3] as number) + d3;
+    ag[0] = (ag[0] as number) + dg0;
+    ag[1] = (ag[1] as number) + dg1;
+    au[0] = (au[0] as number) + du0;
+    au[1] = (au[1] as number) + du1;
+    i0[0] = c0 + (slope[0] as number) * d0 + (slope[1] as number) * d1;
+    i0[1] = c1 + (slope[2] as number) * d0 + (slope[3] as number) * d1;
+    i0[2] = c2 + (slope[4] as number) * d2 + (slope[5] as number) * d3;
+    i0[3] = c3 + (slope[6] as number) * d2 + (slope[7] as number) * d3;
+    this.quick++;
+    return true;
+  }
+
+  /** Keeps the slopes of a full pass, and the inverse of its port equations, for the quick passes that follow. */
+  private keepSlopes(): void {
+    const { plan, laws, slope, w, ag, au, kept, inverse, square } = this;
+    const zz = plan.portFromCurrent;
+    for (let r = 0; r < 4; r++) {
+      const o = 4 * r;
+      const z0 = zz[o] as number;
+      const z1 = zz[o + 1] as number;
+      const z2 = zz[o + 2] as number;
+      const z3 = zz[o + 3] as number;
+      square[o] = z0 * (slope[0] as number) + z1 * (slope[2] as number);
+      square[o + 1] = z0 * (slope[1] as number) + z1 * (slope[3] as number);
+      square[o + 2] = z2 * (slope[4] as number) + z3 * (slope[6] as number);
+      square[o + 3] = z2 * (slope[5] as number) + z3 * (slope[7] as number);
+      square[o + r] = (square[o + r] as number) + 1;
+    }
+    invertFour(square, inverse);
+    kept[0] = w[2] as number;
+    kept[1] = (w[2] as number) + (w[3] as number) / laws.mu;
+    kept[2] = ag[1] as number;
+    kept[3] = au[1] as number;
+  }
+
   /** Currents and their slopes at one stage about the present estimate, the peaks eliminated. */
-  private linearise(s: number, e: number): void {
-    const { laws, g, k, t, w, ag, au, i0, slope, peak } = this;
+  private linearise(s: number): void {
+    const e = this.drive[s] as number;
+    const { laws, g, k, t, w, ag, au, i0, slope, peak, blend, at } = this;
     const v = w[2 * s] as number;
     const p = w[2 * s + 1] as number;
     const mu = laws.mu;
@@ -183,10 +352,16 @@ export class StageStepper {
     }
     const gridPeak = ag[s] as number;
     const tubePeak = au[s] as number;
-    laws.grid.average(v, gridPeak, g);
-    laws.cathode.average(v + p / mu + laws.phi, tubePeak, k);
+    at[0] = v;
+    at[1] = gridPeak;
+    laws.grid.averageAt(at, g);
+    at[0] = v + p / mu + laws.phi;
+    at[1] = tubePeak;
+    laws.cathode.averageAt(at, k);
     const chordK = k[CHORD] as number;
-    this.rest.path.ratios(g[CHORD] as number, knee * chordK, t);
+    at[0] = g[CHORD] as number;
+    at[1] = knee * chordK;
+    this.path.ratiosAt(at, t);
     const rg = (t[0] as number) * e;
     const ru = (t[1] as number) * e;
     const cga = g[CHORD_BY_A] as number;
@@ -222,6 +397,12 @@ export class StageStepper {
     peak[o + 3] = u0;
     peak[o + 4] = uv;
     peak[o + 5] = up;
+    blend[o] = m22 * inverse;
+    blend[o + 1] = -m12 * inverse;
+    blend[o + 2] = -m21 * inverse;
+    blend[o + 3] = m11 * inverse;
+    blend[o + 4] = g[MEAN_BY_A] as number;
+    blend[o + 5] = knee * (k[MEAN_BY_A] as number);
     const ga = g[MEAN_BY_A] as number;
     const ka = knee * (k[MEAN_BY_A] as number);
     const kx = knee * (k[MEAN_BY_X] as number);
@@ -305,5 +486,25 @@ export class StageStepper {
       largest = Math.max(largest, Math.abs(dg), Math.abs(du));
     }
     return share === 1 && grid < GRID_MOVE_VOLTS && plate < PLATE_MOVE_VOLTS && largest < PEAK_MOVE_VOLTS;
+  }
+}
+
+/** Inverse of a 4 × 4 matrix with a leading diagonal; `m` is used up. */
+function invertFour(m: Float64Array, out: Float64Array): void {
+  for (let k = 0; k < 16; k++) out[k] = k % 5 === 0 ? 1 : 0;
+  for (let c = 0; c < 4; c++) {
+    const scale = 1 / (m[5 * c] as number);
+    for (let q = 0; q < 4; q++) {
+      m[4 * c + q] = (m[4 * c + q] as number) * scale;
+      out[4 * c + q] = (out[4 * c + q] as number) * scale;
+    }
+    for (let r = 0; r < 4; r++) {
+      if (r === c) continue;
+      const f = m[4 * r + c] as number;
+      for (let q = 0; q < 4; q++) {
+        m[4 * r + q] = (m[4 * r + q] as number) - f * (m[4 * c + q] as number);
+        out[4 * r + q] = (out[4 * r + q] as number) - f * (out[4 * c + q] as number);
+      }
+    }
   }
 }

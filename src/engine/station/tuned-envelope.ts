@@ -7,9 +7,8 @@ export class TunedEnvelope {
   /** Weights of E, s(0), s(1/3), s(1) for the values at 1/3 and 1: real then imaginary, 16. */
   private readonly weights: Float64Array;
   private readonly tuned: boolean;
-  private re = 1;
-  private im = 0;
-  private last = 1;
+  /** E (real, imaginary) and the last envelope. */
+  private readonly state = Float64Array.of(1, 0, 1);
   /** |E| at a third of the last step and at its end. */
   readonly magnitudes = new Float64Array([1, 1]);
 
@@ -34,22 +33,27 @@ export class TunedEnvelope {
   }
 
   reset(): void {
-    this.re = 1;
-    this.im = 0;
-    this.last = 1;
+    this.state[0] = 1;
+    this.state[1] = 0;
+    this.state[2] = 1;
     this.magnitudes.fill(1);
   }
 
-  /** Takes the envelope at a third of the step and at its end, re the carrier; fills `magnitudes`. */
-  step(third: number, end: number): void {
-    const { weights: w, re, im, last } = this;
+  /** Takes the envelope at a third of the step and at its end, re the carrier: 1 + `modulation[from]` and the next. */
+  step(modulation: Float64Array, from: number): void {
+    const third = 1 + (modulation[from] as number);
+    const end = 1 + (modulation[from + 1] as number);
+    const { weights: w, state } = this;
+    const re = state[0] as number;
+    const im = state[1] as number;
+    const last = state[2] as number;
     for (let row = 0; row < 2; row++) {
       const o = 8 * row;
       const drive = (w[o + 1] as number) * last + (w[o + 2] as number) * third + (w[o + 3] as number) * end;
       if (this.tuned) {
         const value = (w[o] as number) * re + drive;
         this.magnitudes[row] = Math.abs(value);
-        if (row === 1) this.re = value;
+        if (row === 1) state[0] = value;
         continue;
       }
       const driveIm = (w[o + 5] as number) * last + (w[o + 6] as number) * third + (w[o + 7] as number) * end;
@@ -57,11 +61,11 @@ export class TunedEnvelope {
       const nextIm = (w[o] as number) * im + (w[o + 4] as number) * re + driveIm;
       this.magnitudes[row] = Math.sqrt(nextRe * nextRe + nextIm * nextIm);
       if (row === 1) {
-        this.re = nextRe;
-        this.im = nextIm;
+        state[0] = nextRe;
+        state[1] = nextIm;
       }
     }
-    this.last = end;
+    state[2] = end;
   }
 }
 

@@ -13,6 +13,10 @@ export interface CycleLaw {
    * @param a  peak of the carrier, V, 0 or more
    */
   average(x: number, a: number, out: Float64Array): void;
+  /** As `average` at x = `at[0]`, a = `at[1]`: numbers handed over in an array are not boxed, so a loop takes no memory. */
+  averageAt(at: Float64Array, out: Float64Array): void;
+  /** Mean and chord only, into `out[0]` and `out[3]`: what a step needs while its slopes are still good. */
+  levelsAt(at: Float64Array, out: Float64Array): void;
 }
 
 export const MEAN = 0;
@@ -99,26 +103,30 @@ export function averageAtNodes(
 export function directAverage(law: SmoothLaw): CycleLaw {
   const work = new Float64Array(4);
   const all = new Float64Array(10);
-  return {
-    average(x, a, out) {
-      averageAtNodes(law, x, a, nodesFor(a, law.scaleVolts), all, work);
-      for (let k = 0; k < 6; k++) out[k] = all[k] as number;
-    },
+  const average = (x: number, a: number, out: Float64Array): void => {
+    averageAtNodes(law, x, a, nodesFor(a, law.scaleVolts), all, work);
+    for (let k = 0; k < 6; k++) out[k] = all[k] as number;
   };
+  return fromAverage(average);
+}
+
+/** The array forms of a law whose cost does not matter. */
+function fromAverage(average: CycleLaw['average']): CycleLaw {
+  const averageAt = (at: Float64Array, out: Float64Array): void => average(at[0] as number, at[1] as number, out);
+  return { average, averageAt, levelsAt: averageAt };
 }
 
 /** A straight law: i = amps + siemens·(x − volts), whatever the carrier; the chord is the slope. */
 export function straightCycleLaw(volts: number, amps: number, siemens: number): CycleLaw {
-  return {
-    average(x, _a, out) {
-      out[MEAN] = amps + siemens * (x - volts);
-      out[MEAN_BY_X] = siemens;
-      out[MEAN_BY_A] = 0;
-      out[CHORD] = siemens;
-      out[CHORD_BY_X] = 0;
-      out[CHORD_BY_A] = 0;
-    },
+  const average = (x: number, _a: number, out: Float64Array): void => {
+    out[MEAN] = amps + siemens * (x - volts);
+    out[MEAN_BY_X] = siemens;
+    out[MEAN_BY_A] = 0;
+    out[CHORD] = siemens;
+    out[CHORD_BY_X] = 0;
+    out[CHORD_BY_A] = 0;
   };
+  return fromAverage(average);
 }
 
 /**
@@ -127,16 +135,15 @@ export function straightCycleLaw(volts: number, amps: number, siemens: number): 
  * @param ampsPerVoltSquared  k, A/V² of carrier peak
  */
 export function squareCycleLaw(volts: number, amps: number, siemens: number, ampsPerVoltSquared: number): CycleLaw {
-  return {
-    average(x, a, out) {
-      out[MEAN] = amps + siemens * (x - volts) + ampsPerVoltSquared * a * a;
-      out[MEAN_BY_X] = siemens;
-      out[MEAN_BY_A] = 2 * ampsPerVoltSquared * a;
-      out[CHORD] = siemens;
-      out[CHORD_BY_X] = 0;
-      out[CHORD_BY_A] = 0;
-    },
+  const average = (x: number, a: number, out: Float64Array): void => {
+    out[MEAN] = amps + siemens * (x - volts) + ampsPerVoltSquared * a * a;
+    out[MEAN_BY_X] = siemens;
+    out[MEAN_BY_A] = 2 * ampsPerVoltSquared * a;
+    out[CHORD] = siemens;
+    out[CHORD_BY_X] = 0;
+    out[CHORD_BY_A] = 0;
   };
+  return fromAverage(average);
 }
 
 /**
@@ -148,29 +155,28 @@ export function squareCycleLaw(volts: number, amps: number, siemens: number, amp
  */
 export function linearRectifierCycleLaw(chargeOhms: number): CycleLaw {
   const g = 1 / chargeOhms;
-  return {
-    average(x, a, out) {
-      if (x <= -a || x >= a) {
-        const conducts = x > 0 ? g : 0;
-        out[MEAN] = conducts * x;
-        out[MEAN_BY_X] = conducts;
-        out[MEAN_BY_A] = 0;
-        out[CHORD] = conducts;
-        out[CHORD_BY_X] = 0;
-        out[CHORD_BY_A] = 0;
-        return;
-      }
-      const cos = -x / a;
-      const sin = Math.sqrt(1 - cos * cos);
-      const phi = Math.acos(cos);
-      const gPi = g / Math.PI;
-      out[MEAN] = a * gPi * (sin - phi * cos);
-      out[MEAN_BY_X] = gPi * phi;
-      out[MEAN_BY_A] = gPi * sin;
-      out[CHORD] = gPi * (phi - sin * cos);
-      // dφ/dx = 1/(a sin φ); d(φ − sin φ cos φ)/dφ = 2 sin² φ
-      out[CHORD_BY_X] = (gPi * 2 * sin) / a;
-      out[CHORD_BY_A] = (-gPi * 2 * sin * cos) / a;
-    },
+  const average = (x: number, a: number, out: Float64Array): void => {
+    if (x <= -a || x >= a) {
+      const conducts = x > 0 ? g : 0;
+      out[MEAN] = conducts * x;
+      out[MEAN_BY_X] = conducts;
+      out[MEAN_BY_A] = 0;
+      out[CHORD] = conducts;
+      out[CHORD_BY_X] = 0;
+      out[CHORD_BY_A] = 0;
+      return;
+    }
+    const cos = -x / a;
+    const sin = Math.sqrt(1 - cos * cos);
+    const phi = Math.acos(cos);
+    const gPi = g / Math.PI;
+    out[MEAN] = a * gPi * (sin - phi * cos);
+    out[MEAN_BY_X] = gPi * phi;
+    out[MEAN_BY_A] = gPi * sin;
+    out[CHORD] = gPi * (phi - sin * cos);
+    // dφ/dx = 1/(a sin φ); d(φ − sin φ cos φ)/dφ = 2 sin² φ
+    out[CHORD_BY_X] = (gPi * 2 * sin) / a;
+    out[CHORD_BY_A] = (-gPi * 2 * sin * cos) / a;
   };
+  return fromAverage(average);
 }

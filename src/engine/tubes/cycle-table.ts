@@ -90,9 +90,64 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
   const widest = peak.knots[peak.knots.length - 1] as number;
   const { knots: ck, inverse: ci, index: cx, perVolt: cv } = crest;
   const { knots: pk, inverse: pi, index: px, perVolt: pv } = peak;
+  const point = new Float64Array(2);
   return {
+    levelsAt(at, out) {
+      const a = at[1] as number;
+      const crestVolts = (at[0] as number) + a;
+      if (!(crestVolts > lowest)) {
+        out[MEAN] = 0;
+        out[CHORD] = 0;
+        return;
+      }
+      // past the last crest the slope is wanted too: leave that rare case to the full lookup
+      if (!(crestVolts < highest)) {
+        this.averageAt(at, out);
+        return;
+      }
+      const ac = a < widest ? a : widest;
+      let i = cx[((crestVolts - lowest) * cv) | 0] as number;
+      if (crestVolts >= (ck[i + 1] as number) && i < ci.length - 1) i++;
+      let j = px[(ac * pv) | 0] as number;
+      if (ac >= (pk[j + 1] as number) && j < peakCells - 1) j++;
+      const s = (crestVolts - (ck[i] as number)) * (ci[i] as number);
+      const t = (ac - (pk[j] as number)) * (pi[j] as number);
+      const o = (i * peakCells + j) * CELL;
+      const m0 =
+        (((cells[o + 3] as number) * t + (cells[o + 2] as number)) * t + (cells[o + 1] as number)) * t +
+        (cells[o] as number);
+      const m1 =
+        (((cells[o + 7] as number) * t + (cells[o + 6] as number)) * t + (cells[o + 5] as number)) * t +
+        (cells[o + 4] as number);
+      const m2 =
+        (((cells[o + 11] as number) * t + (cells[o + 10] as number)) * t + (cells[o + 9] as number)) * t +
+        (cells[o + 8] as number);
+      const m3 =
+        (((cells[o + 15] as number) * t + (cells[o + 14] as number)) * t + (cells[o + 13] as number)) * t +
+        (cells[o + 12] as number);
+      out[MEAN] = ((m3 * s + m2) * s + m1) * s + m0;
+      const n0 =
+        (((cells[o + 19] as number) * t + (cells[o + 18] as number)) * t + (cells[o + 17] as number)) * t +
+        (cells[o + 16] as number);
+      const n1 =
+        (((cells[o + 23] as number) * t + (cells[o + 22] as number)) * t + (cells[o + 21] as number)) * t +
+        (cells[o + 20] as number);
+      const n2 =
+        (((cells[o + 27] as number) * t + (cells[o + 26] as number)) * t + (cells[o + 25] as number)) * t +
+        (cells[o + 24] as number);
+      const n3 =
+        (((cells[o + 31] as number) * t + (cells[o + 30] as number)) * t + (cells[o + 29] as number)) * t +
+        (cells[o + 28] as number);
+      out[CHORD] = ((n3 * s + n2) * s + n1) * s + n0;
+    },
     average(x, a, out) {
-      const crestVolts = x + a;
+      point[0] = x;
+      point[1] = a;
+      this.averageAt(point, out);
+    },
+    averageAt(at, out) {
+      const a = at[1] as number;
+      const crestVolts = (at[0] as number) + a;
       if (!(crestVolts > lowest)) {
         out[MEAN] = 0;
         out[MEAN_BY_X] = 0;
