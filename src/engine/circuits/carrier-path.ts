@@ -41,6 +41,11 @@ export class CarrierPath {
     );
   }
 
+  /** The constants of the path as one run of ten numbers, for the kernel. */
+  get numbers(): Float64Array {
+    return this.c;
+  }
+
   /**
    * Writes into `out[0..5]`: |V_g/E|, |U1/E|, then the slopes of their logarithms:
    * ∂ln|V_g/E|/∂g, ∂ln|V_g/E|/∂k, ∂ln|U1/E|/∂g, ∂ln|U1/E|/∂k (1/S).

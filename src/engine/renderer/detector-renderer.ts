@@ -2,8 +2,11 @@ import type { RestPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
 import { TunedEnvelope } from '../station/tuned-envelope.ts';
 import { STAGE_TIMES } from './implicit-rule.ts';
+import { Kernel } from './kernel/kernel.ts';
+import { MOST_UNKNOWNS } from './kernel/layout.ts';
 import { Decimator, filterDelay, Interpolator } from './resampling.ts';
 import { StageStepper } from './stage-stepper.ts';
+import type { TableLaws } from './table-store.ts';
 
 /** Circuit solutions a second at least, Hz: 4 × a 48 kHz clip. Two stages a step. */
 export const LEAST_SOLUTIONS_HERTZ = 176_000;
@@ -25,7 +28,9 @@ export function stepsPerSample(clipRateHertz: number, quality: Quality): number 
  */
 export class DetectorRenderer {
   readonly delaySamples: number;
-  readonly stepper: StageStepper;
+  private readonly stepper: StageStepper;
+  /** The loop as WebAssembly where the laws are tables; null: the plain stepper does it. */
+  private readonly kernel: Kernel | null;
   private readonly rest: RestPoint;
   private readonly steps: number;
   private readonly interpolator: Interpolator;
@@ -39,8 +44,15 @@ export class DetectorRenderer {
    * @param rest    the circuit at rest
    * @param laws    its averaged laws, as tables for speed
    * @param clipRateHertz  8 kHz to 192 kHz
+   * @param kind    `plain` keeps to the stepper in this language, against which the kernel is tested
    */
-  constructor(rest: RestPoint, laws: StageLaws, clipRateHertz: number, quality: Quality = 'normal') {
+  constructor(
+    rest: RestPoint,
+    laws: StageLaws,
+    clipRateHertz: number,
+    quality: Quality = 'normal',
+    kind: 'fastest' | 'plain' = 'fastest',
+  ) {
     this.rest = rest;
     this.steps = stepsPerSample(clipRateHertz, quality);
     const stepSeconds = 1 / (clipRateHertz * this.steps);
@@ -55,7 +67,33 @@ export class DetectorRenderer {
     this.volts = new Float64Array(this.steps);
     this.delaySamples = 2 * filterDelay(clipRateHertz) - 1;
     this.restVolts = (rest.unknowns[rest.audio.output.index] as number) * rest.audio.output.weight;
+    const { interpolator, decimator, envelope, stepper, restVolts } = this;
+    this.kernel =
+      kind !== 'plain' && isTabulated(laws) && laws.knee && rest.audio.system.size <= MOST_UNKNOWNS
+        ? new Kernel({
+            rest,
+            stepper,
+            grid: laws.grid,
+            cathode: laws.cathode,
+            envelopeWeights: envelope.weights,
+            tuned: envelope.tuned,
+            filters: {
+              steps: this.steps,
+              half: decimator.half,
+              phases: interpolator.phases,
+              rows: decimator.rows,
+              middle: decimator.middle,
+            },
+            restVolts,
+          })
+        : null;
     this.reset();
+  }
+
+  /** Newton passes, steps that did not settle, steps, and steps settled with kept slopes, since reset. */
+  get counts(): { passes: number; unsettled: number; steps: number; quick: number } {
+    const { passes, unsettled, steps, quick } = this.kernel?.counts() ?? this.stepper;
+    return { passes, unsettled, steps, quick };
   }
 
   /** Rest volts at the output, V. */
@@ -68,6 +106,7 @@ export class DetectorRenderer {
     this.decimator.reset();
     this.envelope.reset();
     this.stepper.reset();
+    this.kernel?.reset();
   }
 
   /**
@@ -75,6 +114,10 @@ export class DetectorRenderer {
    * @param output  output volts less the rest volts, V
    */
   process(input: Float64Array | Float32Array, output: Float64Array | Float32Array, frames: number): void {
+    if (this.kernel) {
+      this.kernel.process(input, output, frames);
+      return;
+    }
     const { interpolator, decimator, envelope, stepper, drives, steps, restVolts } = this;
     const peak = this.rest.tuned.carrierPeakVolts;
     const { magnitudes } = envelope;
@@ -93,4 +136,8 @@ export class DetectorRenderer {
       decimator.process(volts, output, n);
     }
   }
+}
+
+function isTabulated(laws: StageLaws): laws is TableLaws {
+  return 'parts' in laws.grid && 'parts' in laws.cathode;
 }

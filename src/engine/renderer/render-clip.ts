@@ -50,11 +50,11 @@ export function renderClip(
     }
     onBlock(Math.min(from + frames, modulation.length));
   }
-  const steps = renderer.stepper.steps;
+  const { steps, passes, quick, unsettled } = renderer.counts;
   return {
     volts,
     peakVolts,
-    unsettledSteps: renderer.stepper.unsettled,
-    passesPerStep: steps > 0 ? renderer.stepper.passes / steps : 0,
+    unsettledSteps: unsettled,
+    passesPerStep: steps > 0 ? (passes + quick) / steps : 0,
   };
 }

@@ -44,6 +44,15 @@ export function filterDelay(clipRateHertz: number): number {
   return design(clipRateHertz).half;
 }
 
+/** The weights of both filters for the kernel. */
+export interface FilterBank {
+  readonly steps: number;
+  readonly half: number;
+  readonly phases: Float64Array;
+  readonly rows: Float64Array;
+  readonly middle: number;
+}
+
 /** A buffer whose newest `length` values always lie side by side. */
 class SlidingWindow {
   readonly values: Float64Array;
@@ -72,7 +81,7 @@ class SlidingWindow {
 /** Raises a clip to chosen instants within each clip sample. */
 export class Interpolator {
   private readonly taps: number;
-  private readonly phases: Float64Array;
+  readonly phases: Float64Array;
   private readonly window: SlidingWindow;
   private readonly count: number;
   /** The fraction that falls on a clip sample, where every other tap is zero; −1 if none. */
@@ -131,11 +140,11 @@ export class Interpolator {
  * Values that stand on clip instants meet the kernel's zeros (all but its middle) and are left out of the sum.
  */
 export class Decimator {
-  private readonly half: number;
+  readonly half: number;
   private readonly factor: number;
   /** Weights of the values between clip instants, one row for each place after an instant. */
-  private readonly rows: Float64Array;
-  private readonly middle: number;
+  readonly rows: Float64Array;
+  readonly middle: number;
   private readonly lanes: readonly SlidingWindow[];
 
   constructor(clipRateHertz: number, factor: number) {

@@ -7,19 +7,33 @@ import { forecastWeights, planStep, type StepPlan } from './implicit-rule.ts';
 
 /** Past this plate voltage the knee factor is 1 to the last bit. */
 const KNEE_DONE_VOLTS = 19 * PLATE_KNEE_VOLTS;
-/** A Newton move this small leaves a quadratic remainder below a microvolt on grid laws of 60 mV and more, V. */
-const GRID_MOVE_VOLTS = 2e-4;
-/** The same for the plate, where currents bend over volts, V. */
-const PLATE_MOVE_VOLTS = 2e-2;
-/** The same for the carrier's peaks, V. */
-const PEAK_MOVE_VOLTS = 1e-3;
+/** Error that an unfinished Newton solution may leave in a voltage, as a share of the carrier's peak. */
+const ERROR_SHARE = 1e-5;
+/** Shortest e-fold of a grid law over which a move's quadratic remainder is reckoned, V. */
+const SHORTEST_EFOLD_VOLTS = 0.06;
+/** The least carrier that the shares are reckoned from, V: below it moves are nanovolts anyway. */
+const LEAST_CARRIER_VOLTS = 0.005;
 /** A grid move is never taken longer than this in one pass, V: the law is exponential over tens of millivolts. */
 const LONGEST_GRID_MOVE_VOLTS = 2;
 const MOST_PASSES = 60;
 /** Slopes are taken anew when the stage has moved this far, V: a third of the shortest e-fold of a grid law. */
 const STALE_VOLTS = 0.03;
-/** Largest product of a quick pass's move and its staleness, V²: over an e-fold of 60 mV it leaves 2e-7 V. */
-const QUICK_VOLTS_SQUARED = 5e-8;
+
+/** Limits of a circuit: largest moves that end a step, and largest product of move and staleness of a quick pass. */
+interface MoveLimits {
+  readonly grid: number;
+  readonly plate: number;
+  readonly peak: number;
+  readonly quick: number;
+}
+
+/** A move d leaves about d²/(2·e-fold) in a full pass, d·staleness/e-fold in a quick one. */
+function moveLimits(rest: RestPoint): MoveLimits {
+  const left = ERROR_SHARE * Math.max(rest.tuned.carrierPeakVolts, LEAST_CARRIER_VOLTS);
+  const grid = Math.sqrt(2 * SHORTEST_EFOLD_VOLTS * left);
+  // plate volts count by 1/mu; half of mu's share keeps a low-mu tube on the safe side
+  return { grid, plate: 0.5 * grid * rest.laws.mu, peak: grid, quick: SHORTEST_EFOLD_VOLTS * left };
+}
 
 /**
  * The grid-leak stage at audio rate: one implicit step a call, no memory taken.
@@ -34,6 +48,7 @@ export class StageStepper {
   private readonly laws: StageLaws;
   private readonly rest: RestPoint;
   private readonly path: CarrierPath;
+  private readonly limits: MoveLimits;
   private readonly at = new Float64Array(2);
   private readonly plan: StepPlan;
   private readonly weights = forecastWeights();
@@ -77,10 +92,24 @@ export class StageStepper {
     this.rest = rest;
     this.laws = laws;
     this.path = rest.path;
+    this.limits = moveLimits(rest);
     this.plan = planStep(rest.audio.system, [rest.audio.gridNode, rest.audio.plateNode], stepSeconds);
     this.z = new Float64Array(this.plan.size);
     this.zNext = new Float64Array(this.plan.size);
     this.reset();
+  }
+
+  /** What the kernel is loaded with: plan, laws, forecast weights, limits (as laid out) and the starting past. */
+  internals(): { plan: StepPlan; laws: StageLaws; weights: Float64Array; limits: Float64Array; past: Float64Array } {
+    const limits = Float64Array.of(
+      STALE_VOLTS,
+      this.limits.quick,
+      this.limits.grid,
+      this.limits.plate,
+      this.limits.peak,
+      LONGEST_GRID_MOVE_VOLTS,
+    );
+    return { plan: this.plan, laws: this.laws, weights: this.weights, limits, past: this.past };
   }
 
   /** Back to the rest point: carrier on, no modulation. */
@@ -297,7 +326,7 @@ export class StageStepper {
       Math.abs(dg1) +
       Math.abs(du0) +
       Math.abs(du1);
-    if (!(size * (stale + size) < QUICK_VOLTS_SQUARED)) return false;
+    if (!(size * (stale + size) < this.limits.quick)) return false;
     w[0] = (w[0] as number) + d0;
     w[1] = (w[1] as number) + d1;
     w[2] = (w[2] as number) + d2;
@@ -485,7 +514,7 @@ export class StageStepper {
       i0[2 * s + 1] = (i0[2 * s + 1] as number) + (slope[4 * s + 2] as number) * dv + (slope[4 * s + 3] as number) * dp;
       largest = Math.max(largest, Math.abs(dg), Math.abs(du));
     }
-    return share === 1 && grid < GRID_MOVE_VOLTS && plate < PLATE_MOVE_VOLTS && largest < PEAK_MOVE_VOLTS;
+    return share === 1 && grid < this.limits.grid && plate < this.limits.plate && largest < this.limits.peak;
   }
 }
 

@@ -1,13 +1,18 @@
 import type { RestPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
 import { smoothLaws } from '../circuits/stage-laws.ts';
-import type { CycleLaw } from '../tubes/cycle-average.ts';
-import { cycleTable } from '../tubes/cycle-table.ts';
+import { type CycleTable, cycleTable } from '../tubes/cycle-table.ts';
 import type { SmoothLaw } from '../tubes/smooth-law.ts';
+
+/** Stage laws whose grid and cathode are tables, which the kernel takes. */
+export interface TableLaws extends StageLaws {
+  readonly grid: CycleTable;
+  readonly cathode: CycleTable;
+}
 
 /** Kept tables of one run, so that variants of one tube share them. */
 export class TableStore {
-  private readonly kept = new Map<string, CycleLaw>();
+  private readonly kept = new Map<string, CycleTable>();
 
   /**
    * The averaged laws of a circuit as tables, wide enough for its carrier at full modulation.
@@ -15,7 +20,7 @@ export class TableStore {
    * @param rest        the circuit at rest
    * @param modulation  largest modulation depth it will see, 0 and up
    */
-  lawsFor(rest: RestPoint, modulation: number): StageLaws {
+  lawsFor(rest: RestPoint, modulation: number): StageLaws | TableLaws {
     if (rest.circuit.detector.law !== 'tube') return rest.laws;
     const law = rest.circuit.tube.law;
     const { grid, cathode } = smoothLaws(law);
@@ -28,7 +33,7 @@ export class TableStore {
     };
   }
 
-  private table(name: string, law: SmoothLaw, topVolts: number, topCarrier: number): CycleLaw {
+  private table(name: string, law: SmoothLaw, topVolts: number, topCarrier: number): CycleTable {
     const key = `${name} ${topVolts} ${topCarrier}`;
     const found = this.kept.get(key);
     if (found) return found;

@@ -5,8 +5,9 @@
  */
 export class TunedEnvelope {
   /** Weights of E, s(0), s(1/3), s(1) for the values at 1/3 and 1: real then imaginary, 16. */
-  private readonly weights: Float64Array;
-  private readonly tuned: boolean;
+  readonly weights: Float64Array;
+  /** Whether station and resonance coincide, so that the envelope stays real. */
+  readonly tuned: boolean;
   /** E (real, imaginary) and the last envelope. */
   private readonly state = Float64Array.of(1, 0, 1);
   /** |E| at a third of the last step and at its end. */

@@ -15,13 +15,13 @@ import {
 } from './cycle-average.ts';
 import type { SmoothLaw } from './smooth-law.ts';
 
-/** Numbers a table cell holds: two bicubics, mean and chord, 16 coefficients each. */
+/** Numbers a table cell holds: two bicubics of 16 coefficients, mean and chord side by side, so that one vector load takes both. */
 const CELL = 32;
 /** Cells of an index that finds the knot interval of a voltage, per shortest interval. */
 const INDEX_PER_CELL = 1;
 
 /** Unevenly spaced knots with a constant-time search. */
-interface Axis {
+export interface Axis {
   readonly knots: Float64Array;
   readonly inverse: Float64Array;
   readonly index: Int32Array;
@@ -44,6 +44,11 @@ function axisFrom(knots: number[], shortest: number): Axis {
     (_, k) => 1 / ((knots[k + 1] as number) - (knots[k] as number)),
   );
   return { knots: Float64Array.from(knots), inverse, index, perVolt };
+}
+
+/** A tabulated law, with its parts for the kernel. */
+export interface CycleTable extends CycleLaw {
+  readonly parts: { readonly crest: Axis; readonly peak: Axis; readonly cells: Float64Array };
 }
 
 /** Knots for the crest voltage x + a: even through the tail and the knee, then widening by 6 % a cell. */
@@ -79,7 +84,7 @@ function amplitudeKnots(scale: number, top: number): Axis {
  * @param topVolts    largest crest to cover, V
  * @param topCarrier  largest carrier peak to cover, V
  */
-export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number): CycleLaw {
+export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number): CycleTable {
   const scale = law.scaleVolts;
   const crest = crestKnots(scale, topVolts);
   const peak = amplitudeKnots(scale, topCarrier);
@@ -92,6 +97,7 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
   const { knots: pk, inverse: pi, index: px, perVolt: pv } = peak;
   const point = new Float64Array(2);
   return {
+    parts: { crest, peak, cells },
     levelsAt(at, out) {
       const a = at[1] as number;
       const crestVolts = (at[0] as number) + a;
@@ -114,30 +120,30 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
       const t = (ac - (pk[j] as number)) * (pi[j] as number);
       const o = (i * peakCells + j) * CELL;
       const m0 =
-        (((cells[o + 3] as number) * t + (cells[o + 2] as number)) * t + (cells[o + 1] as number)) * t +
+        (((cells[o + 6] as number) * t + (cells[o + 4] as number)) * t + (cells[o + 2] as number)) * t +
         (cells[o] as number);
       const m1 =
-        (((cells[o + 7] as number) * t + (cells[o + 6] as number)) * t + (cells[o + 5] as number)) * t +
-        (cells[o + 4] as number);
-      const m2 =
-        (((cells[o + 11] as number) * t + (cells[o + 10] as number)) * t + (cells[o + 9] as number)) * t +
+        (((cells[o + 14] as number) * t + (cells[o + 12] as number)) * t + (cells[o + 10] as number)) * t +
         (cells[o + 8] as number);
+      const m2 =
+        (((cells[o + 22] as number) * t + (cells[o + 20] as number)) * t + (cells[o + 18] as number)) * t +
+        (cells[o + 16] as number);
       const m3 =
-        (((cells[o + 15] as number) * t + (cells[o + 14] as number)) * t + (cells[o + 13] as number)) * t +
-        (cells[o + 12] as number);
+        (((cells[o + 30] as number) * t + (cells[o + 28] as number)) * t + (cells[o + 26] as number)) * t +
+        (cells[o + 24] as number);
       out[MEAN] = ((m3 * s + m2) * s + m1) * s + m0;
       const n0 =
-        (((cells[o + 19] as number) * t + (cells[o + 18] as number)) * t + (cells[o + 17] as number)) * t +
-        (cells[o + 16] as number);
+        (((cells[o + 7] as number) * t + (cells[o + 5] as number)) * t + (cells[o + 3] as number)) * t +
+        (cells[o + 1] as number);
       const n1 =
-        (((cells[o + 23] as number) * t + (cells[o + 22] as number)) * t + (cells[o + 21] as number)) * t +
-        (cells[o + 20] as number);
+        (((cells[o + 15] as number) * t + (cells[o + 13] as number)) * t + (cells[o + 11] as number)) * t +
+        (cells[o + 9] as number);
       const n2 =
-        (((cells[o + 27] as number) * t + (cells[o + 26] as number)) * t + (cells[o + 25] as number)) * t +
-        (cells[o + 24] as number);
+        (((cells[o + 23] as number) * t + (cells[o + 21] as number)) * t + (cells[o + 19] as number)) * t +
+        (cells[o + 17] as number);
       const n3 =
-        (((cells[o + 31] as number) * t + (cells[o + 30] as number)) * t + (cells[o + 29] as number)) * t +
-        (cells[o + 28] as number);
+        (((cells[o + 31] as number) * t + (cells[o + 29] as number)) * t + (cells[o + 27] as number)) * t +
+        (cells[o + 25] as number);
       out[CHORD] = ((n3 * s + n2) * s + n1) * s + n0;
     },
     average(x, a, out) {
@@ -170,22 +176,22 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
       const o = (i * peakCells + j) * CELL;
       const past = crestVolts - pc;
       // mean: four cubics in t with their slopes, then one cubic in s of each
-      const ma3 = cells[o + 3] as number;
-      const ma2 = cells[o + 2] as number;
-      const ma1 = cells[o + 1] as number;
-      const mb3 = cells[o + 7] as number;
-      const mb2 = cells[o + 6] as number;
-      const mb1 = cells[o + 5] as number;
-      const mc3 = cells[o + 11] as number;
-      const mc2 = cells[o + 10] as number;
-      const mc1 = cells[o + 9] as number;
-      const md3 = cells[o + 15] as number;
-      const md2 = cells[o + 14] as number;
-      const md1 = cells[o + 13] as number;
+      const ma3 = cells[o + 6] as number;
+      const ma2 = cells[o + 4] as number;
+      const ma1 = cells[o + 2] as number;
+      const mb3 = cells[o + 14] as number;
+      const mb2 = cells[o + 12] as number;
+      const mb1 = cells[o + 10] as number;
+      const mc3 = cells[o + 22] as number;
+      const mc2 = cells[o + 20] as number;
+      const mc1 = cells[o + 18] as number;
+      const md3 = cells[o + 30] as number;
+      const md2 = cells[o + 28] as number;
+      const md1 = cells[o + 26] as number;
       const mr0 = ((ma3 * t + ma2) * t + ma1) * t + (cells[o] as number);
-      const mr1 = ((mb3 * t + mb2) * t + mb1) * t + (cells[o + 4] as number);
-      const mr2 = ((mc3 * t + mc2) * t + mc1) * t + (cells[o + 8] as number);
-      const mr3 = ((md3 * t + md2) * t + md1) * t + (cells[o + 12] as number);
+      const mr1 = ((mb3 * t + mb2) * t + mb1) * t + (cells[o + 8] as number);
+      const mr2 = ((mc3 * t + mc2) * t + mc1) * t + (cells[o + 16] as number);
+      const mr3 = ((md3 * t + md2) * t + md1) * t + (cells[o + 24] as number);
       const mq0 = (3 * ma3 * t + 2 * ma2) * t + ma1;
       const mq1 = (3 * mb3 * t + 2 * mb2) * t + mb1;
       const mq2 = (3 * mc3 * t + 2 * mc2) * t + mc1;
@@ -195,22 +201,22 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
       out[MEAN_BY_X] = mCrest;
       out[MEAN_BY_A] = mCrest + (((mq3 * s + mq2) * s + mq1) * s + mq0) * sj;
       // chord: four cubics in t with their slopes, then one cubic in s of each
-      const na3 = cells[o + 19] as number;
-      const na2 = cells[o + 18] as number;
-      const na1 = cells[o + 17] as number;
-      const nb3 = cells[o + 23] as number;
-      const nb2 = cells[o + 22] as number;
-      const nb1 = cells[o + 21] as number;
-      const nc3 = cells[o + 27] as number;
-      const nc2 = cells[o + 26] as number;
-      const nc1 = cells[o + 25] as number;
+      const na3 = cells[o + 7] as number;
+      const na2 = cells[o + 5] as number;
+      const na1 = cells[o + 3] as number;
+      const nb3 = cells[o + 15] as number;
+      const nb2 = cells[o + 13] as number;
+      const nb1 = cells[o + 11] as number;
+      const nc3 = cells[o + 23] as number;
+      const nc2 = cells[o + 21] as number;
+      const nc1 = cells[o + 19] as number;
       const nd3 = cells[o + 31] as number;
-      const nd2 = cells[o + 30] as number;
-      const nd1 = cells[o + 29] as number;
-      const nr0 = ((na3 * t + na2) * t + na1) * t + (cells[o + 16] as number);
-      const nr1 = ((nb3 * t + nb2) * t + nb1) * t + (cells[o + 20] as number);
-      const nr2 = ((nc3 * t + nc2) * t + nc1) * t + (cells[o + 24] as number);
-      const nr3 = ((nd3 * t + nd2) * t + nd1) * t + (cells[o + 28] as number);
+      const nd2 = cells[o + 29] as number;
+      const nd1 = cells[o + 27] as number;
+      const nr0 = ((na3 * t + na2) * t + na1) * t + (cells[o + 1] as number);
+      const nr1 = ((nb3 * t + nb2) * t + nb1) * t + (cells[o + 9] as number);
+      const nr2 = ((nc3 * t + nc2) * t + nc1) * t + (cells[o + 17] as number);
+      const nr3 = ((nd3 * t + nd2) * t + nd1) * t + (cells[o + 25] as number);
       const nq0 = (3 * na3 * t + 2 * na2) * t + na1;
       const nq1 = (3 * nb3 * t + 2 * nb2) * t + nb1;
       const nq2 = (3 * nc3 * t + 2 * nc2) * t + nc1;
@@ -261,7 +267,7 @@ function fillCells(law: SmoothLaw, crest: Axis, peak: Axis): Float64Array {
           corner[8 + c] = (nodes[o + 2] as number) * ht;
           corner[12 + c] = (nodes[o + 3] as number) * hs * ht;
         }
-        hermiteToPolynomial(corner, cells, (i * (columns - 1) + j) * CELL + 16 * f);
+        hermiteToPolynomial(corner, cells, (i * (columns - 1) + j) * CELL + f);
       }
     }
   }
@@ -283,6 +289,6 @@ function hermiteToPolynomial(corner: Float64Array, cells: Float64Array, at: numb
   const slope1 = cubic(q(6), q(7), q(14), q(15));
   for (let j = 0; j < 4; j++) {
     const along = cubic(value0[j] as number, value1[j] as number, slope0[j] as number, slope1[j] as number);
-    for (let i = 0; i < 4; i++) cells[at + 4 * i + j] = along[i] as number;
+    for (let i = 0; i < 4; i++) cells[at + 2 * (4 * i + j)] = along[i] as number;
   }
 }
