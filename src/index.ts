@@ -1,4 +1,4 @@
-export { analyse, type Analysis } from './engine/circuits/analysis.ts';
+export { type Analysis, analyse } from './engine/circuits/analysis.ts';
 export type { DetectorCircuit } from './engine/circuits/circuit.ts';
 export { LinearResponse } from './engine/circuits/response.ts';
 export { type RestPoint, restPoint } from './engine/circuits/rest-point.ts';

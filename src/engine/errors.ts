@@ -10,6 +10,8 @@ export interface Fault {
   readonly got: string;
   readonly expected: string;
   readonly hint?: string;
+  /** The parts list's name as the person gave it, where the fault stands in one. */
+  readonly file?: string;
   /** Position in the parts list, counted from 1, where there is one. */
   readonly line?: number;
   readonly column?: number;

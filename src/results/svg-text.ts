@@ -45,7 +45,8 @@ const FULL_WIDTH = /[\u1100-\u115f\u2e80-\u9fff\ua960-\ua97f\uac00-\ud7a3\uf900-
 
 /**
  * Width of a text in a common sans-serif font, px, on the wide side: 1.05 of the size for full-width letters and
- * pictures, less for the rest. Widths by eye from three common fonts; only the layout of legends depends on them.
+ * pictures, less for the rest. The figures are estimates, not measured from a font; only where legends break and names
+ * are shortened depends on them.
  */
 export function textWidth(text: string, size: number): number {
   let widths = 0;

@@ -20,7 +20,10 @@ export interface DetectorProcessorOptions {
 export interface WorkletScope {
   readonly sampleRate: number;
   readonly AudioWorkletProcessor: new () => object;
-  registerProcessor(name: string, processor: new (options: { processorOptions: DetectorProcessorOptions }) => object): void;
+  registerProcessor(
+    name: string,
+    processor: new (options: { processorOptions: DetectorProcessorOptions }) => object,
+  ): void;
 }
 
 /**
@@ -44,7 +47,12 @@ export function registerDetector(scope: WorkletScope, onFault: (fault: unknown) 
       this.renderer = this.make(circuit, modulation, scope.sampleRate, quality ?? 'normal');
     }
 
-    private make(circuit: DetectorCircuit, modulation: number, rate: number, quality: Quality): DetectorRenderer | null {
+    private make(
+      circuit: DetectorCircuit,
+      modulation: number,
+      rate: number,
+      quality: Quality,
+    ): DetectorRenderer | null {
       try {
         const rest = restPoint(circuit);
         return new DetectorRenderer(rest, new TableStore().lawsFor(rest, modulation), rate, quality);

@@ -1,7 +1,7 @@
 // Builds what ships: the command as one file, and the audio-thread processor for browsers.
 import { rm } from 'node:fs/promises';
-import { fileURLToPath } from 'node:url';
 import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
 import { build } from 'esbuild';
 
 const root = fileURLToPath(new URL('../../', import.meta.url));
@@ -10,7 +10,22 @@ const out = join(root, 'out', 'build');
 // web-audio-api brings a sound-card addon and decoders under other licences; the command carries neither
 const noCodec = join(root, 'src', 'cli', 'stubs', 'no-codec.ts');
 const stubs = { '@audio/speaker': join(root, 'src', 'cli', 'stubs', 'no-speaker.ts') };
-for (const codec of ['aac', 'ac3', 'amr', 'avi', 'dsd', 'dts', 'eac3', 'mod', 'mp4', 'mpc', 'tta', 'wavpack', 'webm', 'wma']) {
+for (const codec of [
+  'aac',
+  'ac3',
+  'amr',
+  'avi',
+  'dsd',
+  'dts',
+  'eac3',
+  'mod',
+  'mp4',
+  'mpc',
+  'tta',
+  'wavpack',
+  'webm',
+  'wma',
+]) {
   stubs[`@audio/decode-${codec}`] = noCodec;
 }
 

@@ -1,8 +1,8 @@
 // Installs once, builds, and renders the sample: one command on a fresh clone.
 import { spawnSync } from 'node:child_process';
 import { existsSync, statSync } from 'node:fs';
-import { fileURLToPath } from 'node:url';
 import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
 
 const root = fileURLToPath(new URL('../../', import.meta.url));
 const run = (command, args, shell = false) => {

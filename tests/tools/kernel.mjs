@@ -9,9 +9,23 @@ const folder = new URL('../../src/engine/renderer/kernel/', import.meta.url);
 export async function compileKernel() {
   let bytes = null;
   const { error, stderr } = await asc.main(
-    ['stage.ts', '--runtime', 'stub', '--optimizeLevel', '3', '--shrinkLevel', '0', '--noAssert', '--importMemory', '--enable', 'simd', '--outFile', 'k.wasm'],
+    [
+      'stage.ts',
+      '--runtime',
+      'stub',
+      '--optimizeLevel',
+      '3',
+      '--shrinkLevel',
+      '0',
+      '--noAssert',
+      '--importMemory',
+      '--enable',
+      'simd',
+      '--outFile',
+      'k.wasm',
+    ],
     {
-      readFile: async (name, base) => {
+      readFile: async (name) => {
         try {
           return await readFile(new URL(name, folder), 'utf8');
         } catch {
@@ -25,7 +39,9 @@ export async function compileKernel() {
     },
   );
   if (error) throw new Error(`${error.message}\n${stderr.toString()}`);
-  const lines = Buffer.from(bytes).toString('base64').match(/.{1,100}/g);
+  const lines = Buffer.from(bytes)
+    .toString('base64')
+    .match(/.{1,100}/g);
   return (
     '// Made by tests/tools/kernel.mjs from stage.ts; not edited by hand. A test compiles it again and compares.\n' +
     `export const KERNEL_BASE64 =\n  '${lines.join("' +\n  '")}';\n`

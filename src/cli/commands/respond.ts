@@ -1,0 +1,36 @@
+import { analyse } from '../../engine/circuits/analysis.ts';
+import { responseMarkdown } from '../../results/response-markdown.ts';
+import type { Result, VariantResult } from '../../results/result.ts';
+import { resultJson } from '../../results/result-json.ts';
+import { variantResult } from '../../results/variant-result.ts';
+import { EXIT, type Io } from '../io.ts';
+import { variantsFrom } from '../list-input.ts';
+import { flag, type RawOptions, text } from '../options.ts';
+import { Progress } from '../progress.ts';
+import { paperFiles } from '../result-files.ts';
+import { checkFolder, writeResults } from '../result-folder.ts';
+import { summaryText } from '../summary.ts';
+
+/** Everything on paper, no clip. */
+export async function respond(list: string | null, options: RawOptions, io: Io): Promise<number> {
+  const variants = await variantsFrom(list, options);
+  const folder = text(options, 'out');
+  if (folder !== null) await checkFolder(folder);
+  const progress = new Progress(io, flag(options, 'quiet'));
+  const results: VariantResult[] = [];
+  for (const [k, variant] of variants.entries()) {
+    progress.tell(`analysing ${variant.name}`, k / variants.length);
+    results.push(variantResult(variant.name, variant.changes, analyse(variant.circuit, variant.ratings)));
+    await progress.breathe();
+  }
+  progress.clear();
+  const result: Result = { format: 'presolder-result/1', variants: results };
+  if (flag(options, 'json')) io.out(`${resultJson(result)}\n`);
+  else io.out(`${responseMarkdown(result)}\n${summaryText(result)}\n`);
+  if (folder !== null) {
+    const { replaced } = await writeResults(folder, paperFiles(result));
+    if (!flag(options, 'quiet'))
+      io.err(`${replaced ? 'Replaced the earlier results in' : 'Wrote tables and plot to'} ${folder}\n`);
+  }
+  return EXIT.done;
+}

@@ -1,0 +1,146 @@
+import { Command, CommanderError } from 'commander';
+import { InputError } from '../engine/errors.ts';
+import { faultText } from '../results/fault-text.ts';
+import { EXIT, type Io, Stopped } from './io.ts';
+import { addPartFlags } from './options.ts';
+
+const EXIT_HELP = `
+Exit status: 0 done; 2 the input is wrong (the message names it); 3 a proof or a goal was not met; 1 a fault of the
+program.`;
+
+/**
+ * The command: parses, runs, and turns faults into messages and an exit status. Never throws.
+ *
+ * @param argv  arguments after the program's name
+ */
+export async function run(argv: readonly string[], io: Io): Promise<number> {
+  let status: number = EXIT.done;
+  const finish = (work: Promise<number>): Promise<void> =>
+    work.then((value) => {
+      status = value;
+    });
+  const program = makeProgram(io, finish);
+  try {
+    if (argv.length === 0) {
+      io.out(program.helpInformation());
+      return EXIT.done;
+    }
+    await program.parseAsync([...argv], { from: 'user' });
+    return status;
+  } catch (error) {
+    return reportFault(error, io);
+  }
+}
+
+/** Prints what went wrong for the person it concerns; returns the exit status. */
+function reportFault(error: unknown, io: Io): number {
+  if (error instanceof CommanderError) return error.exitCode === 0 ? EXIT.done : EXIT.input;
+  if (error instanceof Stopped) {
+    io.err('Stopped; nothing was written.\n');
+    return EXIT.stopped;
+  }
+  if (error instanceof InputError) {
+    for (const fault of error.faults) io.err(`${faultText(fault)}\n`);
+    return EXIT.input;
+  }
+  const detail = error instanceof Error ? (error.stack ?? error.message) : String(error);
+  io.err(`presolder failed; this is a fault of the program, not of your input.\n${detail}\n`);
+  return EXIT.fault;
+}
+
+function makeProgram(io: Io, finish: (work: Promise<number>) => Promise<void>): Command {
+  const program = new Command('presolder')
+    .description('Hear a tube detector before you solder it.')
+    .exitOverride()
+    .configureOutput({ writeOut: (text) => io.out(text), writeErr: (text) => io.err(text) })
+    .showHelpAfterError('(presolder COMMAND --help shows what it takes)')
+    .addHelpText(
+      'after',
+      `${EXIT_HELP}
+
+Examples:
+  presolder start                                  writes a commented parts list to begin with
+  presolder respond my-set.yaml                    tables on paper, no clip
+  presolder render speech.wav my-set.yaml          WAV files, tables and a plot in a folder under out/
+  presolder render speech.wav --bypass 47p,100p,1n three bypass values on the standard set`,
+    );
+
+  addPartFlags(program.command('render'))
+    .description('The main job: a clip through each variant, as WAV files with tables and a plot.')
+    .argument('<clip>', 'programme: WAV, or FLAC, MP3, Ogg')
+    .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
+    .option('--out <DIR>', 'folder for the results; left out: a folder under out/')
+    .option('--match <HOW>', 'level keeps the true differences, loudness makes all equally loud', 'level')
+    .option('--wav <BITS>', '16, 24 or 32f (float)', '24')
+    .option('--quality <Q>', 'normal, or fine (twice the solutions a second)', 'normal')
+    .option('--json', 'print the result file, nothing else')
+    .option('--quiet', 'no progress, no summary')
+    .addHelpText(
+      'after',
+      `
+Examples:
+  presolder render speech.wav my-set.yaml
+  presolder render speech.wav my-set.yaml --bypass 47p,100p,250p --match loudness
+  presolder render speech.wav --tube 12AX7,76 --leak 1M,2M2 --out out/tubes`,
+    )
+    .action((clip: string, list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/render.ts').then((module) => module.render(clip, list ?? null, options, io))),
+    );
+
+  addPartFlags(program.command('respond'))
+    .description('Rest point, response, cost by part, distortion and sensitivity, without a clip.')
+    .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
+    .option('--out <DIR>', 'also write result.json, tables and plot there')
+    .option('--json', 'print the result file, nothing else')
+    .option('--quiet', 'no progress')
+    .addHelpText(
+      'after',
+      `
+Examples:
+  presolder respond my-set.yaml
+  presolder respond --bypass 0,100p,1n --load 'resistor 56k'
+  presolder respond my-set.yaml --out out/paper`,
+    )
+    .action((list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/respond.ts').then((module) => module.respond(list ?? null, options, io))),
+    );
+
+  addPartFlags(program.command('prove'))
+    .description('Runs the carrier-cycle reference on the list and prints its difference to the renderer.')
+    .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
+    .option('--tones <HZ>', 'audio tones, a comma list', '50,400,2500,10000')
+    .option('--depths <PERCENT>', 'modulation depths, a comma list', '30,80')
+    .option('--json', 'print the comparison as JSON, nothing else')
+    .option('--quiet', 'no progress')
+    .addHelpText(
+      'after',
+      `
+The reference integrates every carrier cycle and takes seconds to minutes a tone. Exit status 3: outside the limits.
+Example:
+  presolder prove my-set.yaml --tones 400,5000`,
+    )
+    .action((list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/prove.ts').then((module) => module.prove(list ?? null, options, io))),
+    );
+
+  program
+    .command('stock')
+    .description('The catalogue, with sources: tubes with their published rows and how well the law meets them.')
+    .argument('[kind]', 'tubes, or outputs (what a stage feeds)')
+    .argument('[name]', 'one part of that kind')
+    .option('--supply <V>', 'supply voltage that chooses the row the law is taken from', '90V')
+    .option('--json', 'print it as JSON, nothing else')
+    .addHelpText('after', '\nExamples:\n  presolder stock\n  presolder stock tubes 6SL7-GT --supply 250V')
+    .action((kind: string | undefined, name: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/stock.ts').then((module) => module.stock(kind ?? null, name ?? null, options, io))),
+    );
+
+  program
+    .command('start')
+    .description('Writes a commented parts list to begin with; never over a file that is there.')
+    .argument('[file]', 'its name', 'parts-list.yaml')
+    .addHelpText('after', '\nExample:\n  presolder start my-set.yaml')
+    .action((file: string) => finish(import('./commands/start.ts').then((module) => module.start(file, io))));
+
+  return program;
+}

@@ -1,0 +1,55 @@
+import { integratedLoudness } from '../engine/measure/loudness.ts';
+import type { RenderedClip } from '../engine/renderer/render-clip.ts';
+
+/** Level that the loudest peak of a set is brought to, dB re full scale: room for players that resample. */
+const PEAK_DECIBELS = -1;
+
+/** How a set of rendered variants is put into files. */
+export interface SoundLevels {
+  /** Volts that stand at full scale, before each variant's gain. */
+  readonly fullScaleVolts: number;
+  /** Per variant: gain (dB), loudness of the file (LUFS, null when too quiet to measure), samples. */
+  readonly sounds: readonly { gainDecibels: number; loudnessLufs: number | null; samples: Float64Array }[];
+}
+
+/**
+ * One full scale for all variants, so that their level differences are kept (`level`), or gains that give all the
+ * same loudness by ITU-R BS.1770 with no peak over −1 dB (`loudness`). A silent variant keeps gain 0.
+ */
+export function levelSounds(
+  clips: readonly RenderedClip[],
+  rateHertz: number,
+  match: 'level' | 'loudness',
+): SoundLevels {
+  const largest = Math.max(0, ...clips.map((clip) => clip.peakVolts));
+  const fullScaleVolts = largest > 0 ? largest / 10 ** (PEAK_DECIBELS / 20) : 1;
+  const flat = clips.map((clip) => clip.volts.map((volts) => volts / fullScaleVolts));
+  const loudness = flat.map((samples) => integratedLoudness([samples], rateHertz));
+  const gains = flat.map(() => 0);
+  if (match === 'loudness') {
+    // the common loudness is what the variant with least room to grow can reach
+    let common = Number.POSITIVE_INFINITY;
+    clips.forEach((clip, k) => {
+      const own = loudness[k];
+      if (own === null || own === undefined || !(clip.peakVolts > 0)) return;
+      const room = PEAK_DECIBELS - 20 * Math.log10(clip.peakVolts / fullScaleVolts);
+      common = Math.min(common, own + room);
+    });
+    loudness.forEach((own, k) => {
+      if (own !== null && Number.isFinite(common)) gains[k] = common - own;
+    });
+  }
+  return {
+    fullScaleVolts,
+    sounds: flat.map((samples, k) => {
+      const gainDecibels = gains[k] as number;
+      const factor = 10 ** (gainDecibels / 20);
+      const own = loudness[k] ?? null;
+      return {
+        gainDecibels,
+        loudnessLufs: own === null ? null : own + gainDecibels,
+        samples: gainDecibels === 0 ? samples : samples.map((value) => value * factor),
+      };
+    }),
+  };
+}

@@ -1,0 +1,53 @@
+import { formatQuantity } from '../engine/parts/format-quantity.ts';
+import { COST_PARTS } from '../results/cost-parts.ts';
+import type { Result, VariantResult } from '../results/result.ts';
+import { plainTable } from './plain-table.ts';
+
+const hertz = (value: number | null): string => (value === null ? '-' : formatQuantity(value, 'frequency', 3));
+const signed = (value: number): string => `${value > 0 ? '+' : ''}${value.toFixed(1)} dB`;
+const at = (variant: VariantResult, frequency: number) => variant.response.find((row) => row.hertz === frequency);
+
+/** What a builder wants first: level, treble, corner, distortion and where the treble went, a row a variant. */
+export function summaryText(result: Result): string {
+  const loudest = Math.max(...result.variants.map((variant) => at(variant, 400)?.voltsRmsAt30Percent ?? 0));
+  const rows = result.variants.map((variant) => {
+    const level = at(variant, 400)?.voltsRmsAt30Percent ?? 0;
+    const tone = variant.distortion.find((row) => row.hertz === 400 && row.modulationPercent === 80);
+    return [
+      variant.name,
+      formatQuantity(level, 'voltage', 3),
+      loudest > 0 && level > 0 ? signed(20 * Math.log10(level / loudest)) : '-',
+      signed(at(variant, 5000)?.decibels ?? 0),
+      hertz(variant.highCornerHertz),
+      `${(tone?.secondPercent ?? 0).toFixed(1)} %`,
+      formatQuantity(variant.rest.plateVolts, 'voltage', 3),
+      variant.circuit.tunedCircuit.loadedQ.toFixed(0),
+    ];
+  });
+  const heads = ['variant', 'audio', 're loudest', '5 kHz', '-3 dB at', '2nd, 80 %', 'plate', 'loaded Q'];
+  const costs = result.variants.map((variant) => [
+    variant.name,
+    ...COST_PARTS.map(({ key }) => signed(at(variant, 5000)?.cost[key] ?? 0)),
+  ]);
+  return [
+    plainTable(heads, rows),
+    '',
+    'audio: 400 Hz at 30 % modulation; 5 kHz: re 400 Hz.',
+    '',
+    'What would come back at 5 kHz if one part alone were ideal:',
+    plainTable(['variant', ...COST_PARTS.map(({ name }) => name)], costs),
+    '',
+    ...cautionLines(result),
+  ].join('\n');
+}
+
+/** Each caution once, with the variants it concerns when it does not concern all. */
+function cautionLines(result: Result): string[] {
+  const concerned = new Map<string, string[]>();
+  for (const variant of result.variants) {
+    for (const caution of variant.cautions) concerned.set(caution, [...(concerned.get(caution) ?? []), variant.name]);
+  }
+  return [...concerned].map(([caution, names]) =>
+    names.length === result.variants.length ? `Caution: ${caution}` : `Caution (${names.join(', ')}): ${caution}`,
+  );
+}

@@ -1,0 +1,143 @@
+import * as z from 'zod';
+import type { Fault } from '../engine/errors.ts';
+import type { QuantityKind } from '../engine/parts/format-quantity.ts';
+import { type QuantityRange, rangeText, readQuantity } from '../engine/parts/quantities.ts';
+import { unitDescription } from '../engine/parts/units.ts';
+import { readTransconductance, SLOPE_EXPECTED } from './transconductance.ts';
+import { plainWords } from './words.ts';
+
+/** Which quantity a field holds, so that a variant can be named after its value. Filled where fields are defined. */
+export const quantityKinds = z.registry<{ kind: QuantityKind }>();
+
+export type Written = string | number;
+export type Reading<T> = { readonly value: T } | { readonly fault: Fault };
+
+/** A field that is read from text: its faults travel in the issue, so that the place can be added later. */
+export function readField<T>(
+  read: (written: Written) => Reading<T>,
+  expected: string,
+  what: string,
+): z.ZodType<T, Written> {
+  return z
+    .union([z.string(), z.number()], { error: () => expected })
+    .transform((written, context): T => {
+      const reading = read(written);
+      if ('value' in reading) return reading.value;
+      context.addIssue({ code: 'custom', message: reading.fault.code, params: { fault: reading.fault } });
+      return z.NEVER;
+    })
+    .meta({ description: what });
+}
+
+export interface QuantityLimits extends QuantityRange {
+  /** Whether 0 is allowed besides the range. */
+  readonly orZero?: boolean;
+}
+
+/** A quantity within limits, base SI units. */
+export function quantity(kind: QuantityKind, limits: QuantityLimits, what: string): z.ZodType<number, Written> {
+  const field = readField(
+    (written) => readWithin(written, kind, limits),
+    expectedOf(kind),
+    `${what}; ${limitsText(kind, limits)}`,
+  );
+  return field.register(quantityKinds, { kind });
+}
+
+/** A quantity with its default as written; the default goes through the same reading. */
+export function quantityOr(
+  standard: string,
+  kind: QuantityKind,
+  limits: QuantityLimits,
+  what: string,
+): z.ZodType<number, Written | undefined> {
+  return quantity(kind, limits, what).prefault(standard).register(quantityKinds, { kind });
+}
+
+/** A quantity or the word `none`, which gives null. */
+export function quantityOrNone(
+  standard: string,
+  kind: QuantityKind,
+  limits: QuantityLimits,
+  what: string,
+): z.ZodType<number | null, Written | undefined> {
+  const field = readField<number | null>(
+    (written) => {
+      if (/^\s*none\s*$/i.test(String(written))) return { value: null };
+      const reading = readWithin(written, kind, limits);
+      if ('value' in reading) return reading;
+      return { fault: { ...reading.fault, expected: `${reading.fault.expected}, or none` } };
+    },
+    `${expectedOf(kind)}, or none`,
+    `${what}; ${limitsText(kind, limits)}, or none`,
+  );
+  return field.prefault(standard).register(quantityKinds, { kind });
+}
+
+/** One of a few words; `also` maps other spellings to them. */
+export function choice<const T extends string>(
+  words: readonly [T, ...T[]],
+  what: string,
+  also: Readonly<Record<string, T>> = {},
+  remark = '',
+): z.ZodType<T, unknown> {
+  const read = (written: unknown): unknown => {
+    if (typeof written !== 'string') return written;
+    const plain = plainWords(written);
+    return words.find((word) => word.toLowerCase() === plain.toLowerCase()) ?? also[plain.toLowerCase()] ?? plain;
+  };
+  return z
+    .preprocess(read, z.enum(words, { error: () => listed(words) + remark }).meta({ description: what }))
+    .meta({ description: what });
+}
+
+/** One of a few words, with its default. */
+export function choiceOr<const T extends string>(
+  words: readonly [T, ...T[]],
+  standard: T,
+  what: string,
+  also: Readonly<Record<string, T>> = {},
+  remark = '',
+): z.ZodType<T, unknown> {
+  return choice(words, what, also, remark).prefault(standard);
+}
+
+/** Plain text, trimmed, of 1 to `longest` characters. */
+export function words(longest: number, what: string, expected: string): z.ZodType<string, Written> {
+  return readField(
+    (written) => {
+      const text = String(written).normalize('NFC').replace(/\s+/g, ' ').trim();
+      if (text.length >= 1 && text.length <= longest) return { value: text };
+      return { fault: { code: text ? 'too-long' : 'no-value', where: '', got: text || 'nothing', expected } };
+    },
+    expected,
+    what,
+  );
+}
+
+/** A transconductance in siemens. */
+export function transconductance(what: string): z.ZodType<number, Written> {
+  return readField(readTransconductance, SLOPE_EXPECTED, what);
+}
+
+/** Words in a row as a sentence has them: `a, b or c`. */
+export function listed(names: readonly string[]): string {
+  return names.length < 2 ? (names[0] ?? '') : `${names.slice(0, -1).join(', ')} or ${names.at(-1)}`;
+}
+
+function expectedOf(kind: QuantityKind): string {
+  const { noun, examples } = unitDescription(kind);
+  return `${noun} such as ${examples}`;
+}
+
+function limitsText(kind: QuantityKind, limits: QuantityLimits): string {
+  return (limits.orZero ? '0, or ' : '') + rangeText(limits, kind);
+}
+
+function readWithin(written: Written, kind: QuantityKind, limits: QuantityLimits): Reading<number> {
+  const reading = readQuantity(written, kind, '', limits);
+  if ('value' in reading || !limits.orZero || reading.fault.code !== 'out-of-range') return reading;
+  const anything = readQuantity(written, kind, '');
+  if ('value' in anything && anything.value === 0) return anything;
+  return { fault: { ...reading.fault, expected: limitsText(kind, limits) } };
+}

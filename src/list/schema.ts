@@ -1,0 +1,110 @@
+import * as z from 'zod';
+import { dottedFields } from './dotted-keys.ts';
+import { choiceOr, quantity, quantityOr, quantityOrNone, words } from './fields.ts';
+import { plateLoad } from './plate-load.ts';
+import { tubeSection } from './tube-section.ts';
+
+const OHMS = { atLeast: 1, atMost: 1e9 } as const;
+const FARADS = { atLeast: 0.1e-12, atMost: 1 } as const;
+const FARADS_OR_NONE = { ...FARADS, orZero: true } as const;
+const Q = { atLeast: 1, atMost: 2000 } as const;
+
+/** Defaults of the tuned circuit as built; they hold only where no loaded Q is given, so the schema leaves them open. */
+export const STANDARD_COIL = { coilHenries: 200e-6, unloadedQ: 90 } as const;
+
+const name = words(80, 'Name of the receiver or experiment', 'a name of 1 to 80 characters');
+
+const station = z.strictObject({
+  carrier: quantityOr('920 kHz', 'frequency', { atLeast: 30e3, atMost: 30e6 }, 'Carrier frequency'),
+  level: quantityOr(
+    '60 mV',
+    'voltage',
+    { atLeast: 0, atMost: 30 },
+    'Carrier, rms and unmodulated, at the tap with no detector connected',
+  ),
+  modulation: quantityOr('80 %', 'fraction', { atLeast: 0, atMost: 2 }, "Depth at the clip's largest peak"),
+  'pre-emphasis': choiceOr(['none', 'nrsc-1'], 'none', "The transmitter's treble boost"),
+  'channel limit': choiceOr(['none', '9 kHz'], 'none', 'Audio limit of a crowded 9 kHz channel', { '9khz': '9 kHz' }),
+  side: choiceOr(['both', 'left', 'right'], 'both', 'Which side of a stereo clip is the programme'),
+});
+
+const tunedCircuit = z.strictObject({
+  coil: quantity('inductance', { atLeast: 1e-6, atMost: 1 }, 'The whole coil (200 µH when left out)').optional(),
+  capacitor: quantity(
+    'capacitance',
+    { atLeast: 1e-12, atMost: 1e-6 },
+    'Tuning capacitance, in place of the coil',
+  ).optional(),
+  'unloaded Q': quantity('number', Q, 'Q of coil and tuning capacitor alone (90 when left out)').optional(),
+  'loaded Q': quantity('number', Q, 'Alone: a stiff source whose level is that at the detector').optional(),
+  tap: quantity(
+    'number',
+    { atLeast: 0.01, atMost: 1 },
+    "Part of the coil's voltage at the detector (1 when left out)",
+  ).optional(),
+  retune: choiceOr(['yes', 'no'], 'yes', "Dial set again for the detector's capacitance", { true: 'yes', false: 'no' }),
+  detune: quantityOr('0 Hz', 'frequency', { atLeast: -3e6, atMost: 3e6 }, 'Station minus resonance'),
+});
+
+const detector = z.strictObject({
+  kind: choiceOr(['grid leak'], 'grid leak', 'Kind of detector', {}, ', the one kind of detector this release knows'),
+  law: choiceOr(['tube', 'square', 'linear'], 'tube', "The tube's own law or a textbook's"),
+  tube: words(40, 'Tube type', 'a tube type such as 6SL7-GT, 76, 01-A').prefault('6SL7-GT'),
+  'grid capacitor': quantityOr('150 pF', 'capacitance', FARADS, 'Grid capacitor'),
+  'grid capacitor leakage': quantityOrNone('none', 'resistance', { atLeast: 1, atMost: 1e12 }, 'Its own leakage'),
+  leak: quantityOrNone('2M2', 'resistance', OHMS, 'Grid leak'),
+  'leak position': choiceOr(['to cathode', 'across capacitor'], 'to cathode', 'Where the leak is soldered'),
+  'leak returns to': choiceOr(['cathode', 'filament -', 'filament +'], 'cathode', 'Where its far end goes', {
+    'filament-': 'filament -',
+    'filament+': 'filament +',
+  }),
+  'charge resistance': quantityOrNone('none', 'resistance', OHMS, 'Of the linear law (a thousandth of the leak)'),
+});
+
+const plate = z.strictObject({
+  supply: quantityOr('90 V', 'voltage', { atLeast: 0, atMost: 1000 }, 'Supply'),
+  load: plateLoad,
+  bypass: quantityOr('220 pF', 'capacitance', FARADS_OR_NONE, 'Bypass from plate to cathode'),
+});
+
+const output = z.strictObject({
+  coupling: quantityOr('10 nF', 'capacitance', FARADS, 'Coupling capacitor'),
+  into: choiceOr(['next grid', 'ceramic earpiece', 'crystal earpiece'], 'next grid', 'What the stage feeds'),
+  'load resistance': quantity('resistance', OHMS, 'In place of that of what it feeds').optional(),
+  'load capacitance': quantity('capacitance', FARADS_OR_NONE, 'In place of that of what it feeds').optional(),
+});
+
+/** Strays of a socket and its wiring: common practice, no source. */
+const strays = z.strictObject({
+  grid: quantityOr('5 pF', 'capacitance', { atLeast: 0, atMost: 1e-9 }, 'Grid to cathode'),
+  plate: quantityOr('5 pF', 'capacitance', { atLeast: 0, atMost: 1e-9 }, 'Plate to cathode'),
+  'grid to plate': quantityOr('0.5 pF', 'capacitance', { atLeast: 0, atMost: 1e-9 }, 'Grid to plate'),
+});
+
+/** Everything that makes one circuit; every key may be left out. */
+const circuitShape = {
+  station: station.prefault({}),
+  'tuned circuit': tunedCircuit.prefault({}),
+  detector: detector.prefault({}),
+  plate: plate.prefault({}),
+  output: output.prefault({}),
+  strays: strays.prefault({}),
+  tube: tubeSection.prefault({}),
+};
+
+/** One circuit of a parts list, without its variants. */
+export const circuitList = z.strictObject({ name: name.optional(), ...circuitShape });
+
+/** Every key a variant or a flag may change, dotted, with its field. */
+export const CHANGEABLE: ReadonlyMap<string, z.ZodType> = dottedFields(circuitShape);
+
+const variant = z.strictObject(Object.fromEntries([...CHANGEABLE].map(([key, field]) => [key, field.optional()])));
+
+/** The whole parts list: the one definition that checking and the JSON Schema come from. */
+export const partsList = z.strictObject({
+  name: name.optional(),
+  ...circuitShape,
+  variants: z.record(z.string(), variant).optional().meta({ description: 'What changes, by the name of the variant' }),
+});
+
+export type CircuitList = z.output<typeof circuitList>;
