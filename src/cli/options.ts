@@ -47,7 +47,7 @@ export function keySettings(options: RawOptions): KeySetting[] {
     const value = options[flag.replace(/-(\w)/g, (_, letter: string) => letter.toUpperCase())];
     if (typeof value === 'string') settings.push({ key, value, where: `--${flag}` });
   }
-  const sets = Array.isArray(options['set']) ? options['set'] : [];
+  const sets = Array.isArray(options.set) ? options.set : [];
   for (const text of sets.map(String)) {
     const at = text.indexOf('=');
     if (at < 1) {
