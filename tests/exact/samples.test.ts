@@ -5,6 +5,7 @@ import { readWav } from '../../src/results/wav-read.ts';
 import { composeMusic } from '../tools/compose-music.ts';
 
 const sampleBytes = (name: string): Uint8Array => readFileSync(new URL(`../../samples/${name}`, import.meta.url));
+const sampleText = (name: string): string => new TextDecoder().decode(sampleBytes(name));
 
 /** Samples of one stretch of a windowed power sum: 85 ms at 48 kHz, long enough to part 4 kHz from its neighbours. */
 const STRETCH = 4096;
@@ -86,7 +87,7 @@ describe('how the samples were made', () => {
   });
 
   it('the spoken words fit the length of the speech', () => {
-    const words = new TextDecoder().decode(sampleBytes('speech.txt')).trim().split(/\s+/);
+    const words = sampleText('speech.txt').trim().split(/\s+/);
     const minutes = readWav(sampleBytes('speech.wav'), 'speech.wav').frames / 48_000 / 60;
     // 120 to 200 words a minute, from slow reading to brisk announcing (common practice, no source)
     expect(words.length / minutes).toBeGreaterThan(120);
