@@ -14,10 +14,9 @@ export function mappingShape(schema: z.core.$ZodType): Readonly<Record<string, z
   if (inner instanceof z.ZodObject) return inner.shape;
   if (inner instanceof z.ZodPipe) return mappingShape(inner.in);
   if (inner instanceof z.ZodUnion) {
-    for (const option of inner.options) {
-      const shape = mappingShape(option);
-      if (shape) return shape;
-    }
+    const shapes = inner.options.map(mappingShape).filter((shape) => shape !== null);
+    // the first option's wording of a key stands for all
+    return shapes.length === 0 ? null : Object.assign({}, ...shapes.reverse());
   }
   return null;
 }

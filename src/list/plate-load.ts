@@ -1,36 +1,35 @@
 import * as z from 'zod';
-import type { PlateLoad } from '../engine/circuits/circuit.ts';
-import { readQuantity } from '../engine/parts/quantities.ts';
-import { choiceOr, quantity, quantityKinds, type Reading, readField, type Written } from './fields.ts';
+import type { Fault } from '../engine/errors.ts';
+import { quantity, type Written } from './fields.ts';
 
 const LOAD_OHMS = { atLeast: 1, atMost: 1e9 } as const;
-const KNOWN_LOADS = 'resistor, the one kind of load this release knows';
-const EXPECTED = 'a load such as resistor 220 kΩ, or a mapping { kind: resistor, resistance: 220 kΩ }';
 
-/** Takes `resistor 220 kΩ` or a bare resistance, which means a resistor. */
-function readLoad(written: Written): Reading<PlateLoad> {
+const resistor = z.strictObject({
+  kind: z.literal('resistor'),
+  resistance: quantity('resistance', LOAD_OHMS, 'Resistance of the load').prefault('220 kΩ'),
+});
+
+/** The value that stands behind each kind of load when it is written on one line. */
+const MAIN_VALUE: Readonly<Record<string, string>> = { resistor: 'resistance' };
+
+const KINDS = Object.keys(MAIN_VALUE);
+const EXPECTED = `a load such as resistor 220 kΩ, or a mapping { kind: resistor, resistance: 220 kΩ }; kinds: ${KINDS.join(', ')}`;
+
+/** What stands between plate and supply, with the load's own values. */
+export const plateLoad = z
+  .discriminatedUnion('kind', [resistor], { error: () => EXPECTED })
+  .meta({ description: 'Plate load: resistor 220 kΩ, or a mapping with its own values' })
+  .prefault({ kind: 'resistor' } as never);
+
+/** A load on one line as the mapping it stands for; a bare resistance is a resistor. */
+export function loadMapping(written: Written): Readonly<Record<string, Written>> | { readonly fault: Fault } {
   const text = String(written).trim();
   const word = /^([a-z][a-z ]*?)(?:\s+(?=[\d.+-]|r\d)|$)/i.exec(text)?.[1];
-  if (word !== undefined && word.toLowerCase() !== 'resistor') {
-    return { fault: { code: 'unknown-load', where: '', got: text, expected: KNOWN_LOADS, hint: EXPECTED } };
+  const kind = word === undefined ? 'resistor' : KINDS.find((known) => known === word.toLowerCase());
+  if (kind === undefined) {
+    return { fault: { code: 'unknown-load', where: '', got: text, expected: EXPECTED } };
   }
-  const value = readQuantity(text.slice(word?.length ?? 0).trim(), 'resistance', '', LOAD_OHMS);
-  if ('fault' in value) {
-    return { fault: { ...value.fault, got: text, ...(text.length === word?.length ? { expected: EXPECTED } : {}) } };
-  }
-  return { value: { kind: 'resistor', ohms: value.value } };
+  const rest = text.slice(word?.length ?? 0).trim();
+  const key = MAIN_VALUE[kind];
+  return rest === '' || key === undefined ? { kind } : { kind, [key]: rest };
 }
-
-const loadMapping = z
-  .strictObject({
-    kind: choiceOr(['resistor'], 'resistor', 'Kind of load', {}, ', the one kind of load this release knows'),
-    resistance: quantity('resistance', LOAD_OHMS, 'Resistance of the load').prefault('220 kΩ'),
-  })
-  .transform((load): PlateLoad => ({ kind: 'resistor', ohms: load.resistance }));
-
-/** What stands between plate and supply: on one line, or as a mapping with the load's own values. */
-export const plateLoad = z
-  .union([readField(readLoad, EXPECTED, 'A resistor with its value'), loadMapping], { error: () => EXPECTED })
-  .meta({ description: 'Plate load: resistor 220 kΩ, or a mapping' })
-  .prefault('resistor 220 kΩ')
-  .register(quantityKinds, { kind: 'resistance' });

@@ -1,4 +1,6 @@
 import * as z from 'zod';
+import { formatQuantity } from '../engine/parts/format-quantity.ts';
+import { SOCKET_STRAYS } from '../engine/tubes/socketed-tube.ts';
 import { dottedFields } from './dotted-keys.ts';
 import { choiceOr, quantity, quantityOr, quantityOrNone, words } from './fields.ts';
 import { plateLoad } from './plate-load.ts';
@@ -7,10 +9,13 @@ import { tubeSection } from './tube-section.ts';
 const OHMS = { atLeast: 1, atMost: 1e9 } as const;
 const FARADS = { atLeast: 0.1e-12, atMost: 1 } as const;
 const FARADS_OR_NONE = { ...FARADS, orZero: true } as const;
+const STRAY = { atLeast: 0, atMost: 1e-9 } as const;
 const Q = { atLeast: 1, atMost: 2000 } as const;
 
 /** Defaults of the tuned circuit as built; they hold only where no loaded Q is given, so the schema leaves them open. */
 export const STANDARD_COIL = { coilHenries: 200e-6, unloadedQ: 90 } as const;
+
+const picofarads = (farads: number): string => formatQuantity(farads, 'capacitance');
 
 const name = words(80, 'Name of the receiver or experiment', 'a name of 1 to 80 characters');
 
@@ -74,22 +79,25 @@ const output = z.strictObject({
   'load capacitance': quantity('capacitance', FARADS_OR_NONE, 'In place of that of what it feeds').optional(),
 });
 
-/** Strays of a socket and its wiring: common practice, no source. */
+/** Strays of a socket and its wiring; their sources stand with the figures. */
 const strays = z.strictObject({
-  grid: quantityOr('5 pF', 'capacitance', { atLeast: 0, atMost: 1e-9 }, 'Grid to cathode'),
-  plate: quantityOr('5 pF', 'capacitance', { atLeast: 0, atMost: 1e-9 }, 'Plate to cathode'),
-  'grid to plate': quantityOr('0.5 pF', 'capacitance', { atLeast: 0, atMost: 1e-9 }, 'Grid to plate'),
+  grid: quantityOr(picofarads(SOCKET_STRAYS.gridCathodeFarads), 'capacitance', STRAY, 'Grid to cathode'),
+  plate: quantityOr(picofarads(SOCKET_STRAYS.plateCathodeFarads), 'capacitance', STRAY, 'Plate to cathode'),
+  'grid to plate': quantityOr(picofarads(SOCKET_STRAYS.gridPlateFarads), 'capacitance', STRAY, 'Grid to plate'),
 });
 
+/** Stands for a section left out. Every key of one has its default, which the types of the fields cannot say. */
+const EMPTY = {} as never;
+
 /** Everything that makes one circuit; every key may be left out. */
-const circuitShape = {
-  station: station.prefault({}),
-  'tuned circuit': tunedCircuit.prefault({}),
-  detector: detector.prefault({}),
-  plate: plate.prefault({}),
-  output: output.prefault({}),
-  strays: strays.prefault({}),
-  tube: tubeSection.prefault({}),
+export const circuitShape = {
+  station: station.prefault(EMPTY),
+  'tuned circuit': tunedCircuit.prefault(EMPTY),
+  detector: detector.prefault(EMPTY),
+  plate: plate.prefault(EMPTY),
+  output: output.prefault(EMPTY),
+  strays: strays.prefault(EMPTY),
+  tube: tubeSection.prefault(EMPTY),
 };
 
 /** One circuit of a parts list, without its variants. */
@@ -98,13 +106,17 @@ export const circuitList = z.strictObject({ name: name.optional(), ...circuitSha
 /** Every key a variant or a flag may change, dotted, with its field. */
 export const CHANGEABLE: ReadonlyMap<string, z.ZodType> = dottedFields(circuitShape);
 
-const variant = z.strictObject(Object.fromEntries([...CHANGEABLE].map(([key, field]) => [key, field.optional()])));
-
 /** The whole parts list: the one definition that checking and the JSON Schema come from. */
 export const partsList = z.strictObject({
   name: name.optional(),
   ...circuitShape,
-  variants: z.record(z.string(), variant).optional().meta({ description: 'What changes, by the name of the variant' }),
+  variants: z
+    .record(
+      z.string(),
+      z.strictObject(Object.fromEntries([...CHANGEABLE].map(([key, field]) => [key, field.optional()]))),
+    )
+    .optional()
+    .meta({ description: 'What changes, by the name of the variant' }),
 });
 
 export type CircuitList = z.output<typeof circuitList>;

@@ -3,6 +3,8 @@ import { choice, quantity, transconductance } from './fields.ts';
 
 const ROW_EXPECTED =
   'rows of the data sheet, such as - { plate: 90 V, grid: -4.5 V, current: 2.5 mA, mu: 9.3, slope: 850 µmho }';
+/** Stands for a mapping left out: every key of it may be. */
+const EMPTY = {} as never;
 const PART_OF_TUBE = { atLeast: 0, atMost: 1e-9 } as const;
 
 const row = z.strictObject(
@@ -32,7 +34,7 @@ const reading = z.strictObject(
 export const tubeSection = z.strictObject({
   rows: z
     .array(row, { error: () => ROW_EXPECTED })
-    .min(1)
+    .min(1, ROW_EXPECTED)
     .max(40)
     .optional()
     .meta({ description: 'Rows of the data sheet' }),
@@ -43,7 +45,7 @@ export const tubeSection = z.strictObject({
       'grid to cathode': quantity('capacitance', PART_OF_TUBE, 'Of the tube alone').optional(),
       'plate to cathode': quantity('capacitance', PART_OF_TUBE, 'Of the tube alone').optional(),
     })
-    .prefault({}),
+    .prefault(EMPTY),
   filament: quantity('voltage', { above: 0, atMost: 150 }, 'Filament or heater volts').optional(),
   'cathode kind': choice(['heater oxide', 'filament oxide', 'filament thoriated'], 'How the cathode is made', {
     heater: 'heater oxide',
@@ -54,10 +56,10 @@ export const tubeSection = z.strictObject({
       'thermal voltage': quantity('voltage', { atLeast: 0.02, atMost: 1 }, 'Volts of one e-fold below zero').optional(),
       readings: z
         .array(reading, { error: () => READINGS_EXPECTED })
-        .min(2)
-        .max(2)
+        .min(2, READINGS_EXPECTED)
+        .max(2, READINGS_EXPECTED)
         .optional()
         .meta({ description: 'Two voltages of the free grid across known leaks' }),
     })
-    .prefault({}),
+    .prefault(EMPTY),
 });

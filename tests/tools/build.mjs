@@ -14,6 +14,7 @@ for (const codec of [
   'aac',
   'ac3',
   'amr',
+  'ape',
   'avi',
   'dsd',
   'dts',

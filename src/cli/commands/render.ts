@@ -1,5 +1,6 @@
 import { basename, join } from 'node:path';
 import { type Analysis, analyse } from '../../engine/circuits/analysis.ts';
+import type { Caution } from '../../engine/circuits/cautions.ts';
 import { type RenderedClip, renderClip } from '../../engine/renderer/render-clip.ts';
 import { TableStore } from '../../engine/renderer/table-store.ts';
 import { preEmphasise } from '../../engine/station/pre-emphasis.ts';
@@ -44,7 +45,7 @@ export async function render(clipPath: string, list: string | null, options: Raw
     const programme = programmeFor(variant, clip, programmes);
     limitedSamples = Math.max(limitedSamples, programme.limitedSamples);
     const analysis = analyse(variant.circuit, variant.ratings);
-    analyses.push(withLimiter(analysis, programme));
+    analyses.push(withCautions(analysis, variant, programme));
     await progress.breathe();
     const laws = tables.lawsFor(analysis.rest, largest(programme.modulation));
     const total = programme.modulation.length;
@@ -116,12 +117,10 @@ function programmeFor(variant: ListedVariant, clip: ReadSound, kept: Map<string,
   return made;
 }
 
-function withLimiter(analysis: Analysis, programme: Programme): Analysis {
-  if (programme.limitedSamples === 0) return analysis;
-  return {
-    ...analysis,
-    cautions: [...analysis.cautions, { code: 'limited', figure: programme.limitedSamples, limit: 0 }],
-  };
+/** With what the parts themselves and the transmitter's limiter give cause for. */
+function withCautions(analysis: Analysis, variant: ListedVariant, { limitedSamples }: Programme): Analysis {
+  const limited: Caution[] = limitedSamples > 0 ? [{ code: 'limited', figure: limitedSamples, limit: 0 }] : [];
+  return { ...analysis, cautions: [...analysis.cautions, ...variant.cautions, ...limited] };
 }
 
 function largest(samples: Float64Array): number {

@@ -20,7 +20,9 @@ export async function respond(list: string | null, options: RawOptions, io: Io):
   const results: VariantResult[] = [];
   for (const [k, variant] of variants.entries()) {
     progress.tell(`analysing ${variant.name}`, k / variants.length);
-    results.push(variantResult(variant.name, variant.changes, analyse(variant.circuit, variant.ratings)));
+    const analysis = analyse(variant.circuit, variant.ratings);
+    const cautions = [...analysis.cautions, ...variant.cautions];
+    results.push(variantResult(variant.name, variant.changes, { ...analysis, cautions }));
     await progress.breathe();
   }
   progress.clear();

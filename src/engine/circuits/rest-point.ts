@@ -5,13 +5,15 @@ import type { Complex } from './complex.ts';
 import { solveReal } from './dense-solve.ts';
 import { type AudioStage, carrierAdmittances, gridLeakAudio } from './grid-leak.ts';
 import { emptyCurrents, Stage, type StageCurrents, type StageLaws } from './stage-currents.ts';
-import { linearGrid, squareGrid, straightPlate, tubeStageLaws } from './stage-laws.ts';
+import { linearGrid, type QuietPoint, squareGrid, straightPlate, tubeStageLaws } from './stage-laws.ts';
 import { loadTunedCircuit, type TunedState } from './tuned-circuit.ts';
 
 /** A circuit at rest: carrier on, no modulation. */
 export interface RestPoint {
   readonly circuit: DetectorCircuit;
   readonly laws: StageLaws;
+  /** The tube with no carrier, about which a textbook law is straight; null for the tube's own law. */
+  readonly quiet: QuietPoint | null;
   readonly path: CarrierPath;
   readonly audio: AudioStage;
   readonly gridVolts: number;
@@ -144,16 +146,18 @@ export function restPoint(circuit: DetectorCircuit): RestPoint {
   const currents = emptyCurrents();
   const quiet = new Stage(tubeLaws, path);
   let laws = tubeLaws;
+  let quietPoint: QuietPoint | null = null;
   if (circuit.detector.law !== 'tube') {
     restAtPeak(quiet, direct, 0, w, currents);
-    const plate = straightPlate(circuit.tube.law, {
+    quietPoint = {
       gridVolts: w[0],
       plateVolts: w[1],
       cathodeAmps: currents.plateAmps + currents.gridAmps,
       cathodeSiemens: currents.heldPlateByGrid + currents.heldGridByGrid,
       kneeSiemens:
         currents.heldPlateByPlate - (currents.heldPlateByGrid + currents.heldGridByGrid) / circuit.tube.law.mu,
-    });
+    };
+    const plate = straightPlate(circuit.tube.law, quietPoint);
     const grid = circuit.detector.law === 'square' ? squareGrid(circuit.tube.law, w[0]) : linearGrid(circuit);
     laws = { ...plate, grid };
   }
@@ -169,6 +173,7 @@ export function restPoint(circuit: DetectorCircuit): RestPoint {
   return {
     circuit,
     laws,
+    quiet: quietPoint,
     path,
     audio,
     gridVolts: w[0],

@@ -23,8 +23,8 @@ export function tubeStageLaws(law: TubeLaw): StageLaws {
   };
 }
 
-/** A rest point without modulation, as the textbook laws take it from the tube. */
-export interface LinearisedPlate {
+/** The rest point without carrier, as the textbook laws take it from the tube. */
+export interface QuietPoint {
   readonly gridVolts: number;
   readonly plateVolts: number;
   /** Cathode current times knee, A, and its slope in u, S. */
@@ -35,7 +35,7 @@ export interface LinearisedPlate {
 }
 
 /** A plate stage made straight about a rest point of the tube. */
-export function straightPlate(law: TubeLaw, at: LinearisedPlate): Omit<StageLaws, 'grid'> {
+export function straightPlate(law: TubeLaw, at: QuietPoint): Omit<StageLaws, 'grid'> {
   const u = at.gridVolts + at.plateVolts / law.mu + law.phi;
   return {
     cathode: straightCycleLaw(u, at.cathodeAmps, at.cathodeSiemens),

@@ -1,5 +1,6 @@
 import type { DetectorCircuit } from '../circuits/circuit.ts';
 import { type Fault, InputError } from '../errors.ts';
+import type { StageLaws } from './instantaneous-laws.ts';
 import type { ReferenceSource } from './source-drive.ts';
 import { BLOCKS_PER_CYCLE } from './two-port-stepper.ts';
 
@@ -8,6 +9,7 @@ export function checkReference(
   circuit: DetectorCircuit,
   source: ReferenceSource,
   stepsPerCycle: number,
+  stage: StageLaws | undefined,
   tone?: { readonly audioHertz: number; readonly modulation: number },
   times?: { readonly settleSeconds: number; readonly periods: number },
 ): void {
@@ -20,6 +22,14 @@ export function checkReference(
     'stepsPerCycle',
     stepsPerCycle,
     `a multiple of ${BLOCKS_PER_CYCLE}, 16 and up`,
+  );
+  // A textbook law is for the caller to state; running the tube's own in its place would judge the wrong thing.
+  const { law } = circuit.detector;
+  need(
+    law === 'tube' || (stage?.grid && stage.plate) !== undefined,
+    'detector.law',
+    law,
+    'laws of grid and plate stated',
   );
   const carrier = circuit.station.carrierHertz;
   need(carrier > 0 && Number.isFinite(carrier), 'carrierHertz', carrier, 'a frequency above 0 Hz');

@@ -16,10 +16,10 @@ export type GridLaw =
       readonly curvature: number;
     };
 
-/** Plate current: the tube's own, a straight line about a rest point, or none at all. */
+/** Plate current: the tube's own, a cathode current straight about a rest point less the grid's share, or none at all. */
 export type PlateLaw =
   | { readonly law: 'tube' }
-  /** i = restAmps + gm · (v − gridVolts) + gp · (vp − plateVolts) */
+  /** i = restAmps + gm · (v − gridVolts) + gp · (vp − plateVolts) − grid current */
   | {
       readonly law: 'straight';
       readonly restAmps: number;

@@ -63,7 +63,7 @@ export function referenceRest(
   options: RestOptions = {},
 ): ReferenceRest {
   const stepsPerCycle = options.stepsPerCycle ?? 96;
-  checkReference(circuit, source, stepsPerCycle);
+  checkReference(circuit, source, stepsPerCycle, options.stage);
   return settleStage(circuit, source, circuit.station.carrierHertz, stepsPerCycle, options.stage).rest;
 }
 

@@ -82,7 +82,10 @@ export function runReference(
 ): ReferenceResult {
   const stepsPerCycle = options.stepsPerCycle ?? 96;
   const periods = options.periods ?? 1;
-  checkReference(circuit, tone.source, stepsPerCycle, tone, { settleSeconds: options.settleSeconds, periods });
+  checkReference(circuit, tone.source, stepsPerCycle, tone.stage, tone, {
+    settleSeconds: options.settleSeconds,
+    periods,
+  });
   const { audioHertz, modulation } = tone;
   const asked = circuit.station.carrierHertz;
   const cyclesPerPeriod = Math.round(asked / audioHertz);

@@ -288,8 +288,8 @@ export function advance(s: Stepper, cycles: number): void {
             dpg = dik - dig;
             dpp = dik * overMu;
           } else if (plateCode === PLATE_STRAIGHT) {
-            ip = p0 + p1 * vg + p2 * vp;
-            dpg = p1;
+            ip = p0 + p1 * vg + p2 * vp - ig;
+            dpg = p1 - dig;
             dpp = p2;
           } else ip = 0;
 

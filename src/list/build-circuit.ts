@@ -1,0 +1,141 @@
+import type { Caution, Ratings } from '../engine/circuits/cautions.ts';
+import type { DetectorCircuit, GridLeakDetector, TunedCircuit } from '../engine/circuits/circuit.ts';
+import { type Fault, InputError } from '../engine/errors.ts';
+import type { BandLimit, PreEmphasis } from '../engine/station/pre-emphasis.ts';
+import type { CathodeKind } from '../engine/tubes/fitting.ts';
+import { socketedTube } from './list-tube.ts';
+import { outputPart } from './output-parts.ts';
+import { type CircuitList, STANDARD_COIL } from './schema.ts';
+
+/** How the station treats the clip before it is sent. */
+export interface Sending {
+  readonly preEmphasis: PreEmphasis;
+  readonly channelLimit: BandLimit;
+  readonly side: 'both' | 'left' | 'right';
+}
+
+export interface BuiltCircuit {
+  readonly circuit: DetectorCircuit;
+  readonly ratings: Ratings | null;
+  readonly sending: Sending;
+  /** What the parts themselves give cause for, before anything is computed. */
+  readonly cautions: readonly Caution[];
+}
+
+/** The circuit a read list describes. Throws InputError whose faults name dotted keys. */
+export function buildCircuit(list: CircuitList): BuiltCircuit {
+  const { station, plate, output } = list;
+  const { tube, cathode, filamentVolts, ratings, cautions } = socketedTube(list);
+  const part = outputPart(output.into);
+  return {
+    circuit: {
+      station: {
+        carrierHertz: station.carrier,
+        levelVoltsRms: station.level,
+        modulation: station.modulation,
+      },
+      tunedCircuit: tunedCircuit(list),
+      detector: gridLeak(list, cathode, filamentVolts),
+      tube,
+      plate: { supplyVolts: plate.supply, bypassFarads: plate.bypass, load: loadOf(plate.load) },
+      output: {
+        couplingFarads: output.coupling,
+        loadOhms: output['load resistance'] ?? part.loadOhms,
+        loadFarads: output['load capacitance'] ?? part.loadFarads,
+      },
+    },
+    ratings,
+    sending: {
+      preEmphasis: station['pre-emphasis'],
+      channelLimit: station['channel limit'] === '9 kHz' ? 'channel 9 kHz' : 'none',
+      side: station.side,
+    },
+    cautions,
+  };
+}
+
+function loadOf(load: CircuitList['plate']['load']): DetectorCircuit['plate']['load'] {
+  return { kind: 'resistor', ohms: load.resistance };
+}
+
+function tunedCircuit(list: CircuitList): TunedCircuit {
+  const written = list['tuned circuit'];
+  const { detune: detuneHertz } = written;
+  if (Math.abs(detuneHertz) >= list.station.carrier / 2) {
+    throw fault('off-tune', 'tuned circuit.detune', `${detuneHertz} Hz`, 'less than half the carrier');
+  }
+  const loadedQ = written['loaded Q'];
+  if (loadedQ !== undefined) {
+    for (const key of ['coil', 'capacitor', 'unloaded Q', 'tap'] as const) {
+      if (written[key] !== undefined) {
+        throw fault(
+          'two-tuned-circuits',
+          `tuned circuit.${key}`,
+          `${key} beside a loaded Q`,
+          'either a loaded Q alone (a stiff source), or the coil with its unloaded Q',
+        );
+      }
+    }
+    return { kind: 'stiff', loadedQ, detuneHertz };
+  }
+  const { coil, capacitor } = written;
+  if (coil !== undefined && capacitor !== undefined) {
+    throw fault(
+      'coil-and-capacitor',
+      'tuned circuit.capacitor',
+      'both coil and capacitor',
+      'one of them: the carrier gives the other',
+    );
+  }
+  const omega = 2 * Math.PI * list.station.carrier;
+  return {
+    kind: 'coil',
+    coilHenries: coil ?? (capacitor === undefined ? STANDARD_COIL.coilHenries : 1 / (omega * omega * capacitor)),
+    unloadedQ: written['unloaded Q'] ?? STANDARD_COIL.unloadedQ,
+    tap: written.tap ?? 1,
+    retuned: written.retune === 'yes',
+    detuneHertz,
+  };
+}
+
+/**
+ * Grid bias of tubes with a filament is counted from its negative end, so that end is the cathode here: a leak to
+ * filament + returns to the whole filament voltage.
+ */
+function gridLeak(list: CircuitList, cathode: CathodeKind, filamentVolts: number): GridLeakDetector {
+  const { detector } = list;
+  const leakage = detector['grid capacitor leakage'];
+  const returns = detector['leak returns to'];
+  if (returns !== 'cathode' && cathode === 'heater oxide') {
+    throw fault(
+      'no-filament',
+      'detector.leak returns to',
+      returns,
+      'cathode: this tube has a heater apart from its cathode',
+    );
+  }
+  if (detector.leak === null && leakage === null) {
+    throw fault(
+      'no-leak',
+      'detector.leak',
+      'none, with a grid capacitor that does not leak',
+      'a leak such as 2M2, or a grid capacitor leakage: else the grid charges up and stays there',
+    );
+  }
+  const leakOhms = detector.leak ?? (leakage as number);
+  return {
+    kind: 'grid leak',
+    law: detector.law,
+    gridCapacitorFarads: detector['grid capacitor'],
+    leakOhms,
+    leakPosition: detector.leak === null ? 'across capacitor' : detector['leak position'],
+    leakReturnVolts: returns === 'filament +' ? filamentVolts : 0,
+    capacitorLeakageOhms: detector.leak === null ? null : leakage,
+    chargeOhms: detector['charge resistance'],
+  };
+}
+
+function fault(code: string, where: string, got: string, expected: string): InputError {
+  const made: Fault = { code, where, got, expected };
+  return new InputError(made);
+}

@@ -1,0 +1,113 @@
+import type { Fault } from '../engine/errors.ts';
+import { loadMapping } from './plate-load.ts';
+import { type CircuitList, circuitList } from './schema.ts';
+import type { WrittenEntry, WrittenKeys, WrittenValue } from './written-list.ts';
+
+/** One layer of changes: those later in the row stand over the earlier ones. */
+export interface Layer {
+  readonly keys: WrittenKeys;
+  /** Flag that gave it, where it did not come from the list. */
+  readonly flag?: string;
+}
+
+interface Laid extends WrittenEntry {
+  readonly flag?: string;
+}
+
+export type LaidResult =
+  | { readonly list: CircuitList; readonly places: ReadonlyMap<string, Laid> }
+  | { readonly faults: readonly Fault[] };
+
+/** Lays changes over one another and reads the values. Faults carry the place of the layer that is wrong. */
+export function readLayers(layers: readonly Layer[]): LaidResult {
+  const laid = new Map<string, Laid>();
+  const faults: Fault[] = [];
+  for (const { keys, flag } of layers) {
+    clearFor(laid, keys);
+    for (const [key, entry] of keys) lay(laid, key, { ...entry, ...(flag === undefined ? {} : { flag }) }, faults);
+  }
+  if (faults.length > 0) return { faults };
+  const parsed = circuitList.safeParse(nested(laid));
+  if (parsed.success) return { list: parsed.data, places: laid };
+  return {
+    faults: parsed.error.issues.map((issue) => {
+      const path = issue.path.map(String);
+      const key = path.join('.');
+      const stated = issue.code === 'custom' ? (issue.params?.fault as Fault | undefined) : undefined;
+      if (stated) return placed({ ...stated, where: key }, laid);
+      if (issue.code === 'unrecognized_keys') {
+        const extra = issue.keys[0] ?? '';
+        const where = [...path, extra].join('.');
+        const expected = `a key that ${path.at(-1) === 'load' ? 'this kind of load' : 'a row here'} has`;
+        return placed({ code: 'unknown-key', where, got: extra, expected }, laid);
+      }
+      const got = shortly(laid.get(key)?.value);
+      return placed({ code: 'wrong-value', where: key, got, expected: issue.message }, laid);
+    }),
+  };
+}
+
+/** Adds the place of a key, or of the nearest part of it that was written. */
+export function placed(fault: Fault, laid: ReadonlyMap<string, Laid>): Fault {
+  for (let key = fault.where; key !== ''; key = key.slice(0, Math.max(key.lastIndexOf('.'), 0))) {
+    const entry = laid.get(key);
+    if (entry?.flag !== undefined) return { ...fault, where: entry.flag };
+    const place = entry?.deepPlaces?.get(fault.where) ?? entry?.place;
+    if (place && place.line > 0) return { ...fault, line: place.line, column: place.column };
+  }
+  return fault;
+}
+
+function lay(laid: Map<string, Laid>, key: string, entry: Laid, faults: Fault[]): void {
+  if (key === 'plate.load') {
+    const { value } = entry;
+    const mapping = typeof value === 'string' || typeof value === 'number' ? loadMapping(value) : { kind: '' };
+    if ('fault' in mapping) {
+      faults.push(placed({ ...(mapping.fault as Fault), where: key }, new Map([[key, entry]])));
+      return;
+    }
+    laid.set(key, entry);
+    for (const [name, written] of Object.entries(mapping)) laid.set(`${key}.${name}`, { ...entry, value: written });
+    return;
+  }
+  laid.set(key, entry);
+}
+
+/** Values of an earlier layer that mean nothing once this one stands over it: a load is swapped whole, and so is a coil. */
+function clearFor(laid: Map<string, Laid>, keys: WrittenKeys): void {
+  const kind = keys.get('plate.load.kind');
+  if (keys.has('plate.load') || (kind && kind.value !== laid.get('plate.load.kind')?.value)) drop(laid, 'plate.load.');
+  const tuned = (name: string): string => `tuned circuit.${name}`;
+  const own = ['coil', 'capacitor', 'unloaded Q', 'tap'].map(tuned);
+  if (keys.has(tuned('loaded Q'))) for (const key of own) laid.delete(key);
+  if (own.some((key) => keys.has(key))) laid.delete(tuned('loaded Q'));
+  if (keys.has(tuned('coil'))) laid.delete(tuned('capacitor'));
+  if (keys.has(tuned('capacitor'))) laid.delete(tuned('coil'));
+}
+
+function drop(laid: Map<string, Laid>, prefix: string): void {
+  for (const key of [...laid.keys()]) if (key.startsWith(prefix)) laid.delete(key);
+}
+
+function nested(laid: ReadonlyMap<string, Laid>): Record<string, unknown> {
+  const root: Record<string, unknown> = {};
+  for (const [key, { value }] of laid) {
+    if (key === 'plate.load') continue;
+    const path = key.split('.');
+    const last = path.pop() as string;
+    let at = root;
+    for (const part of path) {
+      at[part] ??= {};
+      at = at[part] as Record<string, unknown>;
+    }
+    at[last] = value;
+  }
+  const plate = root.plate as { load?: Record<string, unknown> } | undefined;
+  if (plate?.load) plate.load = { kind: 'resistor', ...plate.load };
+  return root;
+}
+
+function shortly(value: WrittenValue | undefined): string {
+  const text = value === undefined ? 'nothing' : typeof value === 'object' ? JSON.stringify(value) : String(value);
+  return text.length > 60 ? `${text.slice(0, 57)}...` : text;
+}

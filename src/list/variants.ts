@@ -1,0 +1,168 @@
+import { type Fault, InputError } from '../engine/errors.ts';
+import { type BuiltCircuit, buildCircuit } from './build-circuit.ts';
+import { nearestKey } from './dotted-keys.ts';
+import { type Layer, placed, readLayers } from './layers.ts';
+import { CHANGEABLE } from './schema.ts';
+import { foldedName, plainWords } from './words.ts';
+import { type WrittenKeys, type WrittenList, type WrittenVariant, writtenList } from './written-list.ts';
+
+/** A key set over the list, as a flag gives it; a comma list in the value makes variants. */
+export interface Setting {
+  readonly key: string;
+  readonly value: string;
+  readonly where: string;
+}
+
+/** One circuit of a run. */
+export interface ListedVariant extends BuiltCircuit {
+  readonly name: string;
+  /** Dotted key to the value as written, for all that the list's own variants and the flags changed. */
+  readonly changes: Readonly<Record<string, string>>;
+}
+
+/** Most variants of one run: more than can be told apart by ear, and as many as a plot can show. */
+export const MOST_VARIANTS = 24;
+const NO_PLACE = { line: 0, column: 0 } as const;
+
+interface Drafted {
+  readonly name: string;
+  readonly line?: number;
+  readonly column?: number;
+  readonly changes: WrittenKeys;
+  readonly layers: readonly Layer[];
+}
+
+/**
+ * All variants of a parts list with the flags over it: the list's variants, times every comma list.
+ *
+ * @param text      the list, YAML; empty gives the standard one-tube set
+ * @param fileName  as the person gave it, for faults
+ * @returns 1 to 24 variants, names all different
+ * @throws InputError with every fault found, each with its place in the list or its flag
+ */
+export function listVariants(text: string, fileName: string, settings: readonly Setting[] = []): ListedVariant[] {
+  const inFile = (fault: Fault): Fault => (fault.line === undefined ? fault : { ...fault, file: fileName });
+  const list = writtenList(text);
+  const flags = settings.map(readSetting);
+  const faults: Fault[] = [...list.faults, ...flags.flatMap((flag) => ('fault' in flag ? [flag.fault] : []))];
+  if (faults.length > 0) throw new InputError(faults.map(inFile));
+  const drafts = draftVariants(list, flags as readonly FlagValues[]);
+  if (drafts.length > MOST_VARIANTS) {
+    throw new InputError({
+      code: 'too-many-variants',
+      where: fileName,
+      got: `${drafts.length} variants`,
+      expected: `at most ${MOST_VARIANTS}`,
+      hint: 'comma lists multiply with each other and with the variants of the list',
+    });
+  }
+  const found = new Map<string, Fault>();
+  const note = (fault: Fault): void => {
+    found.set(`${fault.code} ${fault.where} ${fault.line} ${fault.column} ${fault.got}`, inFile(fault));
+  };
+  for (const fault of sameNames(drafts)) note(fault);
+  const variants: ListedVariant[] = [];
+  for (const draft of drafts) {
+    const read = readLayers([{ keys: list.base }, ...draft.layers]);
+    if ('faults' in read) {
+      read.faults.forEach(note);
+      continue;
+    }
+    try {
+      const changes = Object.fromEntries([...draft.changes].map(([key, { value }]) => [key, asText(value)]));
+      variants.push({ name: draft.name, changes, ...buildCircuit(read.list) });
+    } catch (error) {
+      if (!(error instanceof InputError)) throw error;
+      for (const fault of error.faults) note(placed(fault, read.places));
+    }
+  }
+  if (found.size > 0) throw new InputError([...found.values()]);
+  return variants;
+}
+
+interface FlagValues {
+  readonly key: string;
+  readonly values: readonly string[];
+  readonly where: string;
+}
+
+function readSetting({ key: written, value, where }: Setting): FlagValues | { readonly fault: Fault } {
+  const plain = plainWords(written).toLowerCase();
+  const known = [...CHANGEABLE.keys()];
+  const key = known.find((one) => one.toLowerCase() === plain);
+  if (key === undefined) {
+    const near = nearestKey(plain, known);
+    const hint = near === null ? {} : { hint: `nearest: ${near}` };
+    return { fault: { code: 'unknown-key', where, got: written, expected: 'a key of the parts list', ...hint } };
+  }
+  const values = value.split(',').map((one) => one.trim());
+  if (values.some((one) => one === '')) {
+    return {
+      fault: { code: 'no-value', where, got: value || 'nothing', expected: 'a value, or values with commas between' },
+    };
+  }
+  return { key, values, where };
+}
+
+function draftVariants(list: WrittenList, flags: readonly FlagValues[]): Drafted[] {
+  const set = new Set(flags.map((flag) => flag.key));
+  const listed: Drafted[] = list.variants.map((variant) => fromList(variant, set));
+  let drafts = listed.length > 0 ? listed : [{ name: '', changes: new Map(), layers: [] }];
+  for (const { key, values, where } of flags) {
+    drafts = drafts.flatMap((draft) =>
+      values.map((value): Drafted => {
+        const keys: WrittenKeys = new Map([[key, { value, place: NO_PLACE }]]);
+        const part = values.length > 1 ? `${shortKey(key)} ${value}` : '';
+        return {
+          ...draft,
+          name: [draft.name, part].filter((text) => text !== '').join(', '),
+          changes: new Map([...draft.changes, ...keys]),
+          layers: [...draft.layers, { keys, flag: where }],
+        };
+      }),
+    );
+  }
+  const whole = list.name === null ? 'as drawn' : asText(list.name.value).slice(0, 80);
+  return withoutRepeats(
+    drafts.map((draft) => (draft.name === '' ? { ...draft, name: whole } : draft)),
+    set,
+  );
+}
+
+/** A variant of the list; what a flag sets anyway is no longer its own. */
+function fromList(variant: WrittenVariant, set: ReadonlySet<string>): Drafted {
+  const changes = new Map([...variant.changes].filter(([key]) => !set.has(key)));
+  return { name: variant.name, ...variant.place, changes, layers: [{ keys: changes }] };
+}
+
+/** Flags over the very key that told the list's variants apart leave several alike: the first of them stands for all. */
+function withoutRepeats(drafts: readonly Drafted[], set: ReadonlySet<string>): Drafted[] {
+  if (set.size === 0) return [...drafts];
+  const kept = new Map<string, Drafted>();
+  for (const draft of drafts) {
+    const key = JSON.stringify([...draft.changes].map(([name, { value }]) => [name, value]));
+    if (!kept.has(key)) kept.set(key, draft);
+  }
+  return [...kept.values()];
+}
+
+function sameNames(drafts: readonly Drafted[]): Fault[] {
+  const seen = new Map<string, string>();
+  return drafts.flatMap((draft): Fault[] => {
+    const folded = foldedName(draft.name);
+    const other = seen.get(folded);
+    seen.set(folded, draft.name);
+    if (other === undefined) return [];
+    const at = draft.line === undefined ? {} : { line: draft.line, column: draft.column as number };
+    const expected = `a name of its own (there is already ${JSON.stringify(other)})`;
+    return [{ code: 'same-name', where: 'variants', got: JSON.stringify(draft.name), expected, ...at }];
+  });
+}
+
+function shortKey(key: string): string {
+  return key.slice(key.lastIndexOf('.') + 1);
+}
+
+function asText(value: unknown): string {
+  return typeof value === 'object' ? JSON.stringify(value) : String(value);
+}
