@@ -1,5 +1,5 @@
 // Builds what ships: the command as one file, and the audio-thread processor for browsers.
-import { rm } from 'node:fs/promises';
+import { rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { build } from 'esbuild';
@@ -59,3 +59,16 @@ await build({
   legalComments: 'none',
   logLevel: 'warning',
 });
+
+// the parts list's JSON Schema, from the definition the command checks lists with
+const bundled = await build({
+  entryPoints: [join(root, 'src', 'list', 'json-schema.ts')],
+  bundle: true,
+  platform: 'node',
+  format: 'esm',
+  write: false,
+  logLevel: 'warning',
+});
+const code = Buffer.from(bundled.outputFiles[0].contents).toString('base64');
+const { partsListSchema } = await import(`data:text/javascript;base64,${code}`);
+await writeFile(join(out, 'parts-list.schema.json'), `${JSON.stringify(partsListSchema(), null, 2)}\n`);

@@ -1,0 +1,109 @@
+// One table of how fast things are: medians, and ratios to the carrier-cycle reference measured in the same run.
+import { spawnSync } from 'node:child_process';
+import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
+import { cpus, tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { analyse } from '../../src/engine/circuits/analysis.ts';
+import { restPoint } from '../../src/engine/circuits/rest-point.ts';
+import { referenceSource } from '../../src/engine/proof/reference-request.ts';
+import { runReference } from '../../src/engine/reference/run-reference.ts';
+import { renderClip } from '../../src/engine/renderer/render-clip.ts';
+import { TableStore } from '../../src/engine/renderer/table-store.ts';
+import { programmeFrom } from '../../src/engine/station/programme.ts';
+import { listVariants } from '../../src/list/variants.ts';
+import { readWav } from '../../src/results/wav-read.ts';
+import { writeWav } from '../../src/results/wav-write.ts';
+import { medianSeconds } from './median.ts';
+
+// the bundle lies in out/
+const root = fileURLToPath(new URL('../', import.meta.url));
+const command = join(root, 'out', 'build', 'presolder.mjs');
+const clipPath = join(root, 'samples', 'speech.wav');
+const clipBytes = new Uint8Array(readFileSync(clipPath));
+const clip = readWav(clipBytes, clipPath);
+const seconds = clip.frames / clip.sampleRateHertz;
+const rows: (readonly [string, string, string])[] = [];
+const say = (what: string, figure: string, ratio = ''): void => {
+  rows.push([what, figure, ratio]);
+};
+
+const circuitOf = (settings: Record<string, string>) =>
+  (
+    listVariants(
+      '',
+      'bench',
+      Object.entries(settings).map(([key, value]) => ({ key, value, where: key })),
+    )[0] as ReturnType<typeof listVariants>[number]
+  ).circuit;
+
+const programme = programmeFrom(clip.channels[0] as Float64Array, 0.8).modulation;
+
+// yardstick: what one second of programme costs when every carrier cycle is integrated
+const weak = restPoint(circuitOf({ 'station.level': '60 mV' }));
+const referenceSeconds = await medianSeconds(3, () => {
+  runReference(
+    weak.circuit,
+    { audioHertz: 1000, modulation: 0.8, source: referenceSource(weak) },
+    { settleSeconds: 0.02, periods: 5 },
+  );
+});
+const everyCycle = referenceSeconds / 0.025;
+say('every carrier cycle (920 kHz), per second of programme', `${everyCycle.toFixed(1)} s`, '1');
+
+for (const level of ['5 mV', '60 mV', '1 V', '5 V']) {
+  for (const quality of level === '60 mV' ? (['normal', 'fine'] as const) : (['normal'] as const)) {
+    const rest = restPoint(circuitOf({ 'station.level': level }));
+    const laws = new TableStore().lawsFor(rest, 1);
+    const took = await medianSeconds(3, () => {
+      renderClip(rest, laws, programme, clip.sampleRateHertz, quality);
+    });
+    say(
+      `render, resistor, ${level}, ${quality}`,
+      `${(seconds / took).toFixed(0)} × real time`,
+      `${((everyCycle * seconds) / took).toFixed(0)}`,
+    );
+  }
+}
+say(
+  'tables, 1 V',
+  `${(1000 * (await medianSeconds(3, () => void new TableStore().lawsFor(restPoint(circuitOf({ 'station.level': '1 V' })), 1)))).toFixed(0)} ms`,
+);
+say('analysis of one circuit', `${(1000 * (await medianSeconds(3, () => void analyse(circuitOf({}))))).toFixed(0)} ms`);
+say(
+  'decode the clip',
+  `${(seconds / (await medianSeconds(5, () => void readWav(clipBytes, clipPath)))).toFixed(0)} × real time`,
+);
+const samples = clip.channels[0] as Float64Array;
+say(
+  'encode 24 bits',
+  `${(seconds / (await medianSeconds(5, () => void writeWav({ samples, sampleRateHertz: 48_000, format: '24', comment: '', ditherSeed: 1 })))).toFixed(0)} × real time`,
+);
+
+const folder = mkdtempSync(join(tmpdir(), 'presolder-bench-'));
+const run = (...args: string[]) =>
+  medianSeconds(5, () => void spawnSync(process.execPath, [command, ...args], { cwd: folder }));
+say('--help, whole process', `${(1000 * (await run('--help'))).toFixed(0)} ms`);
+say('respond, whole process', `${(1000 * (await run('respond'))).toFixed(0)} ms`);
+const whole = await run('render', clipPath, '--out', 'one', '--quiet');
+say('render one variant, whole process, files included', `${(seconds / whole).toFixed(0)} × real time`);
+const eight = await run(
+  'render',
+  clipPath,
+  '--bypass',
+  '47p,100p,150p,220p,330p,470p,1n,2n2',
+  '--out',
+  'eight',
+  '--quiet',
+);
+say('render eight variants, whole process, a variant', `${((8 * seconds) / eight).toFixed(0)} × real time`);
+rmSync(folder, { recursive: true, force: true });
+
+const lines = [
+  `Node ${process.version}, ${cpus().length} × ${cpus()[0]?.model ?? 'unknown processor'}`,
+  '',
+  '| what | figure | every cycle = 1 |',
+  '| --- | ---: | ---: |',
+  ...rows.map((row) => `| ${row.join(' | ')} |`),
+];
+process.stdout.write(`${lines.join('\n')}\n`);
