@@ -38,6 +38,8 @@ export function dottedFields(shape: Readonly<Record<string, z.core.$ZodType>>, p
 
 /** The known dotted key most like what was typed: by the whole key, else by its last part. */
 export function nearestKey(typed: string, known: readonly string[]): string | null {
+  // no key is half as long: nothing can be near
+  if (typed.length > 100) return null;
   const whole = nearestName(typed, known);
   if (whole !== null) return whole;
   const last = (key: string): string => key.slice(key.lastIndexOf('.') + 1);

@@ -4,7 +4,7 @@ import type { QuantityKind } from '../engine/parts/format-quantity.ts';
 import { type QuantityRange, rangeText, readQuantity } from '../engine/parts/quantities.ts';
 import { unitDescription } from '../engine/parts/units.ts';
 import { readTransconductance, SLOPE_EXPECTED } from './transconductance.ts';
-import { plainWords } from './words.ts';
+import { plainName, plainWords } from './words.ts';
 
 /** Which quantity a field holds, so that a variant can be named after its value. Filled where fields are defined. */
 export const quantityKinds = z.registry<{ kind: QuantityKind }>();
@@ -106,7 +106,7 @@ export function choiceOr<const T extends string>(
 export function words(longest: number, what: string, expected: string): z.ZodType<string, Written> {
   return readField(
     (written) => {
-      const text = String(written).normalize('NFC').replace(/\s+/g, ' ').trim();
+      const text = plainName(String(written));
       if (text.length >= 1 && text.length <= longest) return { value: text };
       return { fault: { code: text ? 'too-long' : 'no-value', where: '', got: text || 'nothing', expected } };
     },

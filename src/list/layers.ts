@@ -1,7 +1,10 @@
 import type { Fault } from '../engine/errors.ts';
-import { loadMapping } from './plate-load.ts';
+import { nearestName } from '../engine/parts/nearest-name.ts';
+import { LOAD_EXPECTED, loadMapping } from './plate-load.ts';
 import { type CircuitList, circuitList } from './schema.ts';
+import { READING_KEYS, ROW_KEYS } from './tube-section.ts';
 import type { WrittenEntry, WrittenKeys, WrittenValue } from './written-list.ts';
+import type { Place } from './yaml-text.ts';
 
 /** One layer of changes: those later in the row stand over the earlier ones. */
 export interface Layer {
@@ -30,21 +33,28 @@ export function readLayers(layers: readonly Layer[]): LaidResult {
   const parsed = circuitList.safeParse(nested(laid));
   if (parsed.success) return { list: parsed.data, places: laid };
   return {
-    faults: parsed.error.issues.map((issue) => {
+    faults: parsed.error.issues.flatMap((issue): Fault[] => {
       const path = issue.path.map(String);
       const key = path.join('.');
       const stated = issue.code === 'custom' ? (issue.params?.fault as Fault | undefined) : undefined;
-      if (stated) return placed({ ...stated, where: key }, laid);
+      if (stated) return [placed({ ...stated, where: key }, laid)];
       if (issue.code === 'unrecognized_keys') {
-        const extra = issue.keys[0] ?? '';
-        const where = [...path, extra].join('.');
-        const expected = `a key that ${path.at(-1) === 'load' ? 'this kind of load' : 'a row here'} has`;
-        return placed({ code: 'unknown-key', where, got: extra, expected }, laid);
+        return issue.keys.map((extra) => placed(unknownKey(path, extra), laid));
       }
       const got = shortly(laid.get(key)?.value);
-      return placed({ code: 'wrong-value', where: key, got, expected: issue.message }, laid);
+      return [placed({ code: 'wrong-value', where: key, got, expected: issue.message }, laid)];
     }),
   };
+}
+
+/** A key that a row, or the load of that kind, does not have. */
+function unknownKey(path: readonly string[], extra: string): Fault {
+  const where = [...path, extra].join('.');
+  if (path.at(-1) === 'load') return { code: 'unknown-key', where, got: extra, expected: 'a key of this kind of load' };
+  const known = path.includes('readings') ? READING_KEYS : ROW_KEYS;
+  const near = nearestName(extra, known);
+  const hint = near === null ? {} : { hint: `nearest: ${near}` };
+  return { code: 'unknown-key', where, got: extra || 'no key', expected: `one of ${known.join(', ')}`, ...hint };
 }
 
 /** Adds the place of a key, or of the nearest part of it that was written. */
@@ -52,16 +62,28 @@ export function placed(fault: Fault, laid: ReadonlyMap<string, Laid>): Fault {
   for (let key = fault.where; key !== ''; key = key.slice(0, Math.max(key.lastIndexOf('.'), 0))) {
     const entry = laid.get(key);
     if (entry?.flag !== undefined) return { ...fault, where: entry.flag };
-    const place = entry?.deepPlaces?.get(fault.where) ?? entry?.place;
+    const place = deepestPlace(entry, fault.where, key) ?? entry?.place;
     if (place && place.line > 0) return { ...fault, line: place.line, column: place.column };
   }
   return fault;
 }
 
+/** The place of the longest part of `where` that was written below an entry. */
+function deepestPlace(entry: Laid | undefined, where: string, key: string): Place | undefined {
+  for (let part = where; part.length > key.length; part = part.slice(0, Math.max(part.lastIndexOf('.'), 0))) {
+    const place = entry?.deepPlaces?.get(part);
+    if (place) return place;
+  }
+  return undefined;
+}
+
 function lay(laid: Map<string, Laid>, key: string, entry: Laid, faults: Fault[]): void {
   if (key === 'plate.load') {
     const { value } = entry;
-    const mapping = typeof value === 'string' || typeof value === 'number' ? loadMapping(value) : { kind: '' };
+    const mapping =
+      typeof value === 'object'
+        ? { fault: { code: 'unknown-load', where: key, got: shortly(value), expected: LOAD_EXPECTED } }
+        : loadMapping(value);
     if ('fault' in mapping) {
       faults.push(placed({ ...(mapping.fault as Fault), where: key }, new Map([[key, entry]])));
       return;

@@ -53,7 +53,9 @@ export function socketedTube(list: CircuitList): ListTube {
     ...(row['plate resistance'] === undefined ? {} : { plateOhms: row['plate resistance'] }),
   }));
   const socketed = rows
-    ? ownTube({ type: list.detector.tube, cathode, heaterVolts: filamentVolts, rows, ...capacitances, ...options })
+    ? asListed(() =>
+        ownTube({ type: list.detector.tube, cathode, heaterVolts: filamentVolts, rows, ...capacitances, ...options }),
+      )
     : socket((type as TubeType).name, (type as TubeType).rows, cathode, filamentVolts, capacitances, options);
   const volts = socketed.errors.map(({ row }) => row.plateVolts);
   return {
@@ -63,6 +65,20 @@ export function socketedTube(list: CircuitList): ListTube {
     ratings: type ? { plateVolts: type.ratings.maxPlateVolts, plateWatts: type.ratings.maxPlateWatts } : null,
     cautions: outsideRows(list.plate.supply, volts),
   };
+}
+
+/** Does what the engine does of a tube; its third row or reading is at `….2`, as the list's places are kept. */
+function asListed<T>(work: () => T): T {
+  try {
+    return work();
+  } catch (error) {
+    if (!(error instanceof InputError)) throw error;
+    const listed = (where: string): string =>
+      where.replace(/^(tube\.rows|tube\.grid current\.readings)(?:\.rows)? (\d+)$/, (_, key: string, nth: string) => {
+        return `${key}.${Number(nth) - 1}`;
+      });
+    throw new InputError(error.faults.map((fault) => ({ ...fault, where: listed(fault.where) })));
+  }
 }
 
 function outsideRows(supplyVolts: number, rowVolts: readonly number[]): Caution[] {
@@ -104,7 +120,9 @@ function gridLaw(list: CircuitList, cathode: CathodeKind): GridLaw | null {
       leakOhms: reading.leak,
       returnVolts: reading['leak returns to'] ?? 0,
     }));
-    if (first && second) return gridLawFromReadings([first, second], undefined, 'tube.grid current.readings');
+    if (first && second) {
+      return asListed(() => gridLawFromReadings([first, second], undefined, 'tube.grid current.readings'));
+    }
   }
   if (zero === undefined && thermal === undefined) return null;
   const assumed = assumedGridCurrent(cathode);

@@ -13,21 +13,22 @@ const resistor = z.strictObject({
 const MAIN_VALUE: Readonly<Record<string, string>> = { resistor: 'resistance' };
 
 const KINDS = Object.keys(MAIN_VALUE);
-const EXPECTED = `a load such as resistor 220 kΩ, or a mapping { kind: resistor, resistance: 220 kΩ }; kinds: ${KINDS.join(', ')}`;
+/** What a fault says is expected of a load. */
+export const LOAD_EXPECTED = `a load such as resistor 220 kΩ, or a mapping { kind: resistor, resistance: 220 kΩ }; kinds: ${KINDS.join(', ')}`;
 
 /** What stands between plate and supply, with the load's own values. */
 export const plateLoad = z
-  .discriminatedUnion('kind', [resistor], { error: () => EXPECTED })
+  .discriminatedUnion('kind', [resistor], { error: () => LOAD_EXPECTED })
   .meta({ description: 'Plate load: resistor 220 kΩ, or a mapping with its own values' })
   .prefault({ kind: 'resistor' } as never);
 
 /** A load on one line as the mapping it stands for; a bare resistance is a resistor. */
 export function loadMapping(written: Written): Readonly<Record<string, Written>> | { readonly fault: Fault } {
-  const text = String(written).trim();
-  const word = /^([a-z][a-z ]*?)(?:\s+(?=[\d.+-]|r\d)|$)/i.exec(text)?.[1];
+  const text = String(written).replace(/\s+/g, ' ').trim();
+  const word = /^([a-z][a-z ]*?)(?: (?=[\d.+-]|r\d)|$)/i.exec(text)?.[1];
   const kind = word === undefined ? 'resistor' : KINDS.find((known) => known === word.toLowerCase());
   if (kind === undefined) {
-    return { fault: { code: 'unknown-load', where: '', got: text, expected: EXPECTED } };
+    return { fault: { code: 'unknown-load', where: '', got: text, expected: LOAD_EXPECTED } };
   }
   const rest = text.slice(word?.length ?? 0).trim();
   const key = MAIN_VALUE[kind];

@@ -19,6 +19,9 @@ const row = z.strictObject(
   { error: (issue) => (issue.code === 'invalid_type' ? ROW_EXPECTED : undefined) },
 );
 
+/** Keys of a row, and of a reading below. */
+export const ROW_KEYS: readonly string[] = Object.keys(row.shape);
+
 const READINGS_EXPECTED = 'two readings, such as - { grid: -0.35 V, leak: 1 MΩ }';
 
 const reading = z.strictObject(
@@ -29,6 +32,8 @@ const reading = z.strictObject(
   },
   { error: (issue) => (issue.code === 'invalid_type' ? READINGS_EXPECTED : undefined) },
 );
+
+export const READING_KEYS: readonly string[] = Object.keys(reading.shape);
 
 /** A builder's own tube, or what differs from the catalogue's: every key may be left out. */
 export const tubeSection = z.strictObject({

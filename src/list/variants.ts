@@ -3,7 +3,7 @@ import { type BuiltCircuit, buildCircuit } from './build-circuit.ts';
 import { nearestKey } from './dotted-keys.ts';
 import { type Layer, placed, readLayers } from './layers.ts';
 import { CHANGEABLE } from './schema.ts';
-import { foldedName, plainWords } from './words.ts';
+import { foldedName, plainName, plainWords } from './words.ts';
 import { type WrittenKeys, type WrittenList, type WrittenVariant, writtenList } from './written-list.ts';
 
 /** A key set over the list, as a flag gives it; a comma list in the value makes variants. */
@@ -22,10 +22,14 @@ export interface ListedVariant extends BuiltCircuit {
 
 /** Most variants of one run: more than can be told apart by ear, and as many as a plot can show. */
 export const MOST_VARIANTS = 24;
+/** Faults that are told of at once: enough to mend in one pass. */
+const MOST_FAULTS = 50;
 const NO_PLACE = { line: 0, column: 0 } as const;
 
 interface Drafted {
   readonly name: string;
+  /** Flag whose comma list made it, if one did. */
+  readonly flag?: string;
   readonly line?: number;
   readonly column?: number;
   readonly changes: WrittenKeys;
@@ -46,16 +50,7 @@ export function listVariants(text: string, fileName: string, settings: readonly 
   const flags = settings.map(readSetting);
   const faults: Fault[] = [...list.faults, ...flags.flatMap((flag) => ('fault' in flag ? [flag.fault] : []))];
   if (faults.length > 0) throw new InputError(faults.map(inFile));
-  const drafts = draftVariants(list, flags as readonly FlagValues[]);
-  if (drafts.length > MOST_VARIANTS) {
-    throw new InputError({
-      code: 'too-many-variants',
-      where: fileName,
-      got: `${drafts.length} variants`,
-      expected: `at most ${MOST_VARIANTS}`,
-      hint: 'comma lists multiply with each other and with the variants of the list',
-    });
-  }
+  const drafts = draftVariants(list, flags as readonly FlagValues[], fileName);
   const found = new Map<string, Fault>();
   const note = (fault: Fault): void => {
     found.set(`${fault.code} ${fault.where} ${fault.line} ${fault.column} ${fault.got}`, inFile(fault));
@@ -76,7 +71,7 @@ export function listVariants(text: string, fileName: string, settings: readonly 
       for (const fault of error.faults) note(placed(fault, read.places));
     }
   }
-  if (found.size > 0) throw new InputError([...found.values()]);
+  if (found.size > 0) throw new InputError([...found.values()].slice(0, MOST_FAULTS));
   return variants;
 }
 
@@ -101,20 +96,36 @@ function readSetting({ key: written, value, where }: Setting): FlagValues | { re
       fault: { code: 'no-value', where, got: value || 'nothing', expected: 'a value, or values with commas between' },
     };
   }
-  return { key, values, where };
+  return { key, values: [...new Set(values)], where };
 }
 
-function draftVariants(list: WrittenList, flags: readonly FlagValues[]): Drafted[] {
-  const set = new Set(flags.map((flag) => flag.key));
-  const listed: Drafted[] = list.variants.map((variant) => fromList(variant, set));
-  let drafts = listed.length > 0 ? listed : [{ name: '', changes: new Map(), layers: [] }];
-  for (const { key, values, where } of flags) {
+function draftVariants(list: WrittenList, flags: readonly FlagValues[], fileName: string): Drafted[] {
+  // of two flags for one key the later stands
+  const last = [...new Map(flags.map((flag) => [flag.key, flag])).values()];
+  const set = new Set(last.map((flag) => flag.key));
+  const listed = withoutRepeats(
+    list.variants.map((variant) => fromList(variant, set)),
+    set,
+  );
+  const total = last.reduce((product, flag) => product * flag.values.length, Math.max(listed.length, 1));
+  if (total > MOST_VARIANTS) {
+    throw new InputError({
+      code: 'too-many-variants',
+      where: fileName,
+      got: `${total} variants`,
+      expected: `at most ${MOST_VARIANTS}`,
+      hint: 'comma lists multiply with each other and with the variants of the list',
+    });
+  }
+  let drafts: Drafted[] = listed.length > 0 ? listed : [{ name: '', changes: new Map(), layers: [] }];
+  for (const { key, values, where } of last) {
     drafts = drafts.flatMap((draft) =>
       values.map((value): Drafted => {
         const keys: WrittenKeys = new Map([[key, { value, place: NO_PLACE }]]);
-        const part = values.length > 1 ? `${shortKey(key)} ${value}` : '';
+        const part = values.length > 1 ? `${shortKey(key)} ${plainName(value)}` : '';
         return {
           ...draft,
+          ...(part === '' ? {} : { flag: where }),
           name: [draft.name, part].filter((text) => text !== '').join(', '),
           changes: new Map([...draft.changes, ...keys]),
           layers: [...draft.layers, { keys, flag: where }],
@@ -122,16 +133,14 @@ function draftVariants(list: WrittenList, flags: readonly FlagValues[]): Drafted
       }),
     );
   }
-  const whole = list.name === null ? 'as drawn' : asText(list.name.value).slice(0, 80);
-  return withoutRepeats(
-    drafts.map((draft) => (draft.name === '' ? { ...draft, name: whole } : draft)),
-    set,
-  );
+  const whole = list.name ?? 'as drawn';
+  return drafts.map((draft) => (draft.name === '' ? { ...draft, name: whole } : draft));
 }
 
-/** A variant of the list; what a flag sets anyway is no longer its own. */
+/** A variant of the list; what a flag sets anyway, a load's own values with the load, is no longer its own. */
 function fromList(variant: WrittenVariant, set: ReadonlySet<string>): Drafted {
-  const changes = new Map([...variant.changes].filter(([key]) => !set.has(key)));
+  const own = [...variant.changes].filter(([key]) => ![...set].some((one) => key === one || key.startsWith(`${one}.`)));
+  const changes: WrittenKeys = new Map(own);
   return { name: variant.name, ...variant.place, changes, layers: [{ keys: changes }] };
 }
 
@@ -153,9 +162,10 @@ function sameNames(drafts: readonly Drafted[]): Fault[] {
     const other = seen.get(folded);
     seen.set(folded, draft.name);
     if (other === undefined) return [];
-    const at = draft.line === undefined ? {} : { line: draft.line, column: draft.column as number };
+    const inList = draft.flag === undefined && draft.line !== undefined;
+    const at = inList ? { line: draft.line as number, column: draft.column as number } : {};
     const expected = `a name of its own (there is already ${JSON.stringify(other)})`;
-    return [{ code: 'same-name', where: 'variants', got: JSON.stringify(draft.name), expected, ...at }];
+    return [{ code: 'same-name', where: draft.flag ?? 'variants', got: JSON.stringify(draft.name), expected, ...at }];
   });
 }
 

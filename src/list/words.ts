@@ -18,6 +18,15 @@ export function plainWords(text: string): string {
   return SYNONYMS.reduce((words, [synonym, ours]) => words.replace(synonym, ours), spaced);
 }
 
+/** A name on one line: marks that move a cursor, turn the reading direction or show nothing become spaces. */
+export function plainName(text: string): string {
+  return text
+    .normalize('NFC')
+    .replace(/[\p{Cc}\p{Cf}\p{Cs}\p{Zl}\p{Zp}]/gu, ' ')
+    .replace(/\s+/g, ' ')
+    .trim();
+}
+
 /** One form for all spellings of a name that a reader, or a file system, takes for the same. */
 export function foldedName(name: string): string {
   return name.normalize('NFKC').replace(/\s+/g, ' ').trim().toUpperCase().toLowerCase();

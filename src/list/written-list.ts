@@ -1,15 +1,10 @@
-import { isAlias, isMap, isScalar, isSeq, LineCounter, type Node, type ParsedNode, parseDocument } from 'yaml';
+import { isMap, isScalar, isSeq, type Node, type ParsedNode } from 'yaml';
 import type * as z from 'zod';
-import type { Fault } from '../engine/errors.ts';
+import { type Fault, InputError } from '../engine/errors.ts';
 import { mappingShape, nearestKey } from './dotted-keys.ts';
 import { CHANGEABLE, circuitShape, partsList } from './schema.ts';
-import { plainWords } from './words.ts';
-
-/** Where something stands in the list, counted from 1. */
-export interface Place {
-  readonly line: number;
-  readonly column: number;
-}
+import { plainName, plainWords } from './words.ts';
+import { isNothing, type Place, tooLarge, type YamlText, yamlText } from './yaml-text.ts';
 
 /** A value as a person wrote it; a table of rows comes as an array of mappings. */
 export type WrittenValue = string | number | readonly WrittenValue[] | { readonly [key: string]: WrittenValue };
@@ -32,7 +27,7 @@ export interface WrittenVariant {
 
 /** A parts list as written: no value has been read yet, every key is a known one. */
 export interface WrittenList {
-  readonly name: WrittenEntry | null;
+  readonly name: string | null;
   readonly base: WrittenKeys;
   readonly variants: readonly WrittenVariant[];
   readonly faults: readonly Fault[];
@@ -40,9 +35,12 @@ export interface WrittenList {
 
 type Shape = Readonly<Record<string, z.core.$ZodType>>;
 
-/** Deepest nesting and most values that are followed: no hand-written list comes near, a hostile one may. */
+/** Deepest rows within rows, and most values, aliases counted as often as they are followed. */
 const DEEPEST = 8;
 const MOST_VALUES = 5000;
+/** Faults after which reading stops: enough to mend in one pass. */
+const MOST_FAULTS = 50;
+const NAME_EXPECTED = 'a name of 1 to 80 characters';
 
 /** Reads the text of a parts list into dotted keys with their places. Faults are collected, never thrown. */
 export function writtenList(text: string): WrittenList {
@@ -50,48 +48,48 @@ export function writtenList(text: string): WrittenList {
 }
 
 class Reader {
-  private readonly lines = new LineCounter();
-  private readonly faults: Fault[] = [];
-  private readonly document: ReturnType<typeof parseDocument>;
+  private readonly text: YamlText;
+  private readonly faults: Fault[];
   private count = 0;
 
   constructor(text: string) {
-    this.document = parseDocument(text.replace(/^\uFEFF/, ''), { lineCounter: this.lines, prettyErrors: false });
+    this.text = yamlText(text);
+    this.faults = [...this.text.faults];
   }
 
   read(): WrittenList {
     const base: WrittenKeys = new Map();
     const variants: WrittenVariant[] = [];
-    let name: WrittenEntry | null = null;
-    for (const error of this.document.errors) {
-      this.fault(
-        'not-yaml',
-        'parts list',
-        this.placeAt(error.pos[0]),
-        plainError(error.message),
-        'YAML: one key, a colon and a value a line, sections indented alike',
-      );
-    }
-    const root = this.document.contents;
-    if (this.faults.length === 0 && root !== null && !(isScalar(root) && root.value === null)) {
-      if (!isMap(root)) {
-        this.fault(
-          'not-a-list',
-          'parts list',
-          this.place(root),
-          'text that is no parts list',
-          'sections such as detector:, plate:, variants:',
-        );
-      } else {
+    let name: string | null = null;
+    try {
+      const { root } = this.text;
+      if (isMap(root)) {
         for (const [key, node, place] of this.pairs(root, Object.keys(partsList.shape), '')) {
-          if (key === 'name') name = this.leaf('name', node, place);
+          if (key === 'name') name = this.readName(node, 'name', place);
           else if (key === 'variants') variants.push(...this.readVariants(node, place));
-          else
-            this.section(key, node, place, mappingShape((circuitShape as Shape)[key] as z.core.$ZodType) ?? {}, base);
+          else {
+            const shape = mappingShape((circuitShape as Shape)[key] as z.core.$ZodType) ?? {};
+            this.section(key, node, place, shape, base);
+          }
         }
+      } else if (!isNothing(root)) {
+        const expected = 'sections such as detector:, plate:, variants:';
+        this.fault('not-a-list', 'parts list', this.place(root), 'text that is no parts list', expected);
       }
+    } catch (error) {
+      // reading ends at once where there is too much of it
+      if (!(error instanceof InputError)) throw error;
+      this.faults.push(...error.faults);
     }
-    return { name, base, variants, faults: this.faults };
+    return { name, base, variants, faults: this.faults.slice(0, MOST_FAULTS) };
+  }
+
+  /** A name on one line, or null with a fault. */
+  private readName(node: Node | null, where: string, at: Place): string | null {
+    const text = isScalar(node) ? plainName(String(node.source ?? node.value)) : '';
+    if (text !== '' && text.length <= 80) return text;
+    this.fault('bad-name', where, at, text || (isScalar(node) ? 'nothing' : shown(node)), NAME_EXPECTED);
+    return null;
   }
 
   private readVariants(node: ParsedNode | null, place: Place): WrittenVariant[] {
@@ -108,17 +106,11 @@ class Reader {
     }
     return node.items.flatMap((pair) => {
       const at = this.place(pair.key as Node);
-      const name = isScalar(pair.key)
-        ? String(pair.key.source ?? pair.key.value)
-            .replace(/\s+/g, ' ')
-            .trim()
-        : '';
+      this.spend('variants', at);
+      const name = this.readName(pair.key as Node | null, 'variants', at);
+      if (name === null) return [];
       const changes: WrittenKeys = new Map();
-      if (name === '' || name.length > 80) {
-        this.fault('bad-name', 'variants', at, name || 'nothing', 'a name of 1 to 80 characters');
-        return [];
-      }
-      const value = this.followed(pair.value as ParsedNode | null);
+      const value = this.text.followed(pair.value as Node | null);
       if (isNothing(value)) return [{ name, place: at, changes }];
       if (!isMap(value)) {
         this.fault(
@@ -140,15 +132,20 @@ class Reader {
     if (!isMap(node)) return;
     for (const pair of node.items) {
       const at = this.place(pair.key as Node);
+      this.spend(label + prefix, at);
       const written = prefix + plainWords(isScalar(pair.key) ? String(pair.key.value) : '');
       const known = [...CHANGEABLE.keys()];
       const key = known.find((one) => one.toLowerCase() === written.toLowerCase());
-      const value = this.followed(pair.value as ParsedNode | null);
+      const value = this.text.followed(pair.value as Node | null);
       const section = known.some((one) => one.toLowerCase().startsWith(`${written.toLowerCase()}.`));
-      if (section && isMap(value) && this.deeper(written)) this.changes(value, `${written}.`, into, label);
-      else if (key === undefined) this.unknown(label + written, at, written, nearestKey(written, known));
+      if (section && isMap(value)) this.changes(value, `${written}.`, into, label);
+      else if (section && key === undefined) {
+        if (isNothing(value)) continue;
+        const expected = 'its keys with what changes, such as { plate.bypass: 100p }';
+        this.fault('wrong-kind', label + written, this.place(value), shown(value), expected);
+      } else if (key === undefined) this.unknown(label + written, at, written, nearestKey(written, known));
       else if (into.has(key)) this.fault('given-twice', label + key, at, 'the same key again', 'each key once');
-      else this.keep(key, value, at, into);
+      else this.keep(key, value, isNothing(value) ? at : this.place(value), into);
     }
   }
 
@@ -164,7 +161,6 @@ class Reader {
       );
       return;
     }
-    if (!this.deeper(prefix)) return;
     for (const [key, value, at] of this.pairs(node, Object.keys(shape), `${prefix}.`)) {
       const inner = mappingShape(shape[key] as z.core.$ZodType);
       if (inner && (isMap(value) || !CHANGEABLE.has(`${prefix}.${key}`))) {
@@ -188,6 +184,7 @@ class Reader {
     const seen = new Set<string>();
     for (const pair of node.items) {
       const at = this.place(pair.key as Node);
+      this.spend(prefix, at);
       const written = plainWords(isScalar(pair.key) ? String(pair.key.value) : '');
       const key = known.find((one) => one.toLowerCase() === written.toLowerCase());
       if (key === undefined) {
@@ -196,8 +193,8 @@ class Reader {
         this.fault('given-twice', prefix + key, at, 'the same key again', 'each key once');
       } else {
         seen.add(key);
-        const value = this.followed(pair.value as ParsedNode | null);
-        yield [key, value, value && !isNothing(value) ? this.place(value) : at];
+        const value = this.text.followed(pair.value as Node | null);
+        yield [key, value, isNothing(value) ? at : this.place(value)];
       }
     }
   }
@@ -210,42 +207,33 @@ class Reader {
     return null;
   }
 
-  /** A node as plain data, places kept; null where nothing is written. */
+  /** A node as plain data, values as they were written, places kept; null where nothing is written. */
   private plain(found: Node | null, path: string, depth: number, places: Map<string, Place>): WrittenValue | null {
-    const node = this.followed(found as ParsedNode | null);
-    if (isNothing(node) || depth > DEEPEST || ++this.count > MOST_VALUES) return null;
-    places.set(path, this.place(node as Node));
-    if (isScalar(node)) {
-      const { value } = node;
-      if (typeof value === 'number' && /^[-+]?[\d.]/.test(node.source ?? '')) return value;
-      return typeof value === 'string' ? value : String(node.source ?? value);
-    }
-    if (isSeq(node))
+    const node = this.text.followed(found);
+    if (isNothing(node)) return null;
+    this.spend(path, this.place(node), depth);
+    places.set(path, this.place(node));
+    if (isScalar(node)) return typeof node.value === 'string' ? node.value : String(node.source ?? node.value);
+    if (isSeq(node)) {
       return node.items.map((item, n) => this.plain(item as Node, `${path}.${n}`, depth + 1, places) ?? '');
+    }
     if (!isMap(node)) return null;
-    const entries = node.items.map((pair): [string, WrittenValue] => {
+    const entries = new Map<string, WrittenValue>();
+    for (const pair of node.items) {
       const key = plainWords(isScalar(pair.key) ? String(pair.key.value) : '');
-      places.set(`${path}.${key}`, this.place(pair.key as Node));
-      return [key, this.plain(pair.value as Node | null, `${path}.${key}`, depth + 1, places) ?? ''];
-    });
+      const at = this.place(pair.key as Node);
+      if (entries.has(key)) this.fault('given-twice', `${path}.${key}`, at, 'the same key again', 'each key once');
+      places.set(`${path}.${key}`, at);
+      entries.set(key, this.plain(pair.value as Node | null, `${path}.${key}`, depth + 1, places) ?? '');
+    }
     return Object.fromEntries(entries);
   }
 
-  private followed(node: ParsedNode | null): ParsedNode | null {
-    let found: Node | null = node;
-    for (let hops = 0; isAlias(found) && hops < DEEPEST; hops++) found = found.resolve(this.document) ?? null;
-    return isAlias(found) ? null : (found as ParsedNode | null);
-  }
-
-  private deeper(path: string): boolean {
-    if (path.split('.').length <= DEEPEST && ++this.count <= MOST_VALUES) return true;
-    this.faults.push({
-      code: 'too-deep',
-      where: path.slice(0, 80),
-      got: 'sections within sections',
-      expected: 'a parts list of ordinary size',
-    });
-    return false;
+  /** Counts a value; throws where there are more of them, or deeper, than in any list written by hand. */
+  private spend(where: string, at: Place, depth = 0): void {
+    if (depth > DEEPEST || ++this.count > MOST_VALUES || this.faults.length > MOST_FAULTS) {
+      throw new InputError({ ...tooLarge(where), ...at });
+    }
   }
 
   private unknown(where: string, at: Place, got: string, near: string | null, known: readonly string[] = []): void {
@@ -265,17 +253,8 @@ class Reader {
   }
 
   private place(node: Node): Place {
-    return this.placeAt(node?.range?.[0] ?? 0);
+    return this.text.placeAt(node?.range?.[0] ?? 0);
   }
-
-  private placeAt(offset: number): Place {
-    const { line, col } = this.lines.linePos(offset);
-    return { line: Math.max(line, 1), column: Math.max(col, 1) };
-  }
-}
-
-function isNothing(node: Node | null): node is null {
-  return node === null || node === undefined || (isScalar(node) && (node.value === null || node.value === ''));
 }
 
 /** What stands at a node, short enough for a message. */
@@ -284,13 +263,4 @@ function shown(node: Node | null): string {
   if (isSeq(node)) return 'a row of values';
   const text = isScalar(node) ? String(node.source ?? node.value) : 'nothing';
   return text.length > 60 ? `${text.slice(0, 57)}...` : text;
-}
-
-/** The YAML reader's own message without its marks of position, which are given apart. */
-function plainError(message: string): string {
-  const first = message.split('\n')[0] ?? message;
-  return first
-    .replace(/ at line \d+.*$/, '')
-    .replace(/:$/, '')
-    .trim();
 }

@@ -8,7 +8,8 @@ export function faultText(fault: Fault): string {
   const { file, line, column, where, got, expected, hint } = fault;
   const place = line === undefined ? '' : `${file ?? 'parts list'}:${line}:${column ?? 1}: `;
   const remedy = hint === undefined || hint === '' ? '' : `. ${hint.charAt(0).toUpperCase()}${hint.slice(1)}`;
-  const sentence = `${place}${where === '' ? '' : `${where}: `}found ${short(got)}; expected ${expected}${remedy}`;
+  const found = short(got).trim() || 'nothing';
+  const sentence = `${place}${where === '' ? '' : `${short(where)}: `}found ${found}; expected ${expected}${remedy}`;
   return `${harmless(sentence)}${/[.!?]$/.test(sentence) ? '' : '.'}`;
 }
 
