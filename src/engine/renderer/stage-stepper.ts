@@ -16,6 +16,13 @@ const LEAST_CARRIER_VOLTS = 0.005;
 /** A grid move is never taken longer than this in one pass, V: the law is exponential over tens of millivolts. */
 const LONGEST_GRID_MOVE_VOLTS = 2;
 const MOST_PASSES = 60;
+/** Passes after which moves are halved and the plate is let go below zero. */
+const ROUSED_PASSES = 12;
+/**
+ * A plate above zero falls to no less than this share of itself in one pass. Its current dies at zero volts, so a tangent
+ * taken far above can point far below, from where the next one points back up; from the near side they lead home.
+ */
+const LEAST_PLATE_SHARE = 0.1;
 /** Slopes are taken anew when the stage has moved this far, V: a third of the shortest e-fold of a grid law. */
 const STALE_VOLTS = 0.03;
 
@@ -495,8 +502,11 @@ export class StageStepper {
       w[3] = this.rest.plateVolts;
       return false;
     }
+    const near = grid < this.limits.grid && plate < this.limits.plate;
     let share = grid > LONGEST_GRID_MOVE_VOLTS ? LONGEST_GRID_MOVE_VOLTS / grid : 1;
-    if (pass > 12) share *= 0.5;
+    // moves that go to and fro are halved, but not the last ones, or no step would ever be settled by them
+    if (pass > ROUSED_PASSES && !near) share *= 0.5;
+    let whole = share === 1;
     let largest = 0;
     for (let s = 0; s < 2; s++) {
       const dv = s === 0 ? d0 : d2;
@@ -507,14 +517,20 @@ export class StageStepper {
       const a = ag[s] as number;
       const b = au[s] as number;
       w[2 * s] = (w[2 * s] as number) + share * dv;
-      w[2 * s + 1] = (w[2 * s + 1] as number) + share * dp;
+      const p = w[2 * s + 1] as number;
+      let next = p + share * dp;
+      if (this.laws.knee && pass <= ROUSED_PASSES && p > 0 && next < LEAST_PLATE_SHARE * p) {
+        next = LEAST_PLATE_SHARE * p;
+        whole = false;
+      }
+      w[2 * s + 1] = next;
       ag[s] = Math.max(a + share * dg, 0.2 * a);
       au[s] = Math.max(b + share * du, 0.2 * b);
       i0[2 * s] = (i0[2 * s] as number) + (slope[4 * s] as number) * dv + (slope[4 * s + 1] as number) * dp;
       i0[2 * s + 1] = (i0[2 * s + 1] as number) + (slope[4 * s + 2] as number) * dv + (slope[4 * s + 3] as number) * dp;
       largest = Math.max(largest, Math.abs(dg), Math.abs(du));
     }
-    return share === 1 && grid < this.limits.grid && plate < this.limits.plate && largest < this.limits.peak;
+    return whole && near && largest < this.limits.peak;
   }
 }
 

@@ -298,8 +298,11 @@ function fullPass(pass: i32): bool {
     wr(L.W + 2, rd(L.REST_GRID)); wr(L.W + 3, rd(L.REST_PLATE));
     return false;
   }
+  const near = grid < rd(L.GRID_MOVE) && plate < rd(L.PLATE_MOVE);
   let share: f64 = grid > rd(L.LONGEST_MOVE) ? rd(L.LONGEST_MOVE) / grid : 1.0;
-  if (pass > 12) share *= 0.5;
+  // the reasons for halving and for the plate's least share stand in the plain stepper
+  if (pass > 12 && !near) share *= 0.5;
+  let whole = share == 1.0;
   let largest: f64 = 0;
   for (let st = 0; st < 2; st++) {
     const dv = st == 0 ? d0 : d2;
@@ -309,7 +312,13 @@ function fullPass(pass: i32): bool {
     const du = rd(o + 3) + rd(o + 4) * dv + rd(o + 5) * dp;
     const a = rd(L.AG + st), b = rd(L.AU + st);
     wr(L.W + 2 * st, rd(L.W + 2 * st) + share * dv);
-    wr(L.W + 1 + 2 * st, rd(L.W + 1 + 2 * st) + share * dp);
+    const p = rd(L.W + 1 + 2 * st);
+    let next = p + share * dp;
+    if (pass <= 12 && p > 0 && next < 0.1 * p) {
+      next = 0.1 * p;
+      whole = false;
+    }
+    wr(L.W + 1 + 2 * st, next);
     wr(L.AG + st, max(a + share * dg, 0.2 * a));
     wr(L.AU + st, max(b + share * du, 0.2 * b));
     const q = L.SLOPE + 4 * st;
@@ -317,7 +326,7 @@ function fullPass(pass: i32): bool {
     wr(L.CURRENT + 1 + 2 * st, rd(L.CURRENT + 1 + 2 * st) + rd(q + 2) * dv + rd(q + 3) * dp);
     largest = max(largest, max(abs(dg), abs(du)));
   }
-  return share == 1.0 && grid < rd(L.GRID_MOVE) && plate < rd(L.PLATE_MOVE) && largest < rd(L.PEAK_MOVE);
+  return whole && near && largest < rd(L.PEAK_MOVE);
 }
 
 function step(n: i32): void {
