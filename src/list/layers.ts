@@ -62,7 +62,8 @@ export function placed(fault: Fault, laid: ReadonlyMap<string, Laid>): Fault {
   for (let key = fault.where; key !== ''; key = key.slice(0, Math.max(key.lastIndexOf('.'), 0))) {
     const entry = laid.get(key);
     if (entry?.flag !== undefined) return { ...fault, where: entry.flag };
-    const place = deepestPlace(entry, fault.where, key) ?? entry?.place;
+    const ofKey = fault.code === 'unknown-key' ? entry?.deepPlaces?.keys.get(fault.where) : undefined;
+    const place = ofKey ?? deepestPlace(entry, fault.where, key) ?? entry?.place;
     if (place && place.line > 0) return { ...fault, line: place.line, column: place.column };
   }
   return fault;
@@ -71,7 +72,7 @@ export function placed(fault: Fault, laid: ReadonlyMap<string, Laid>): Fault {
 /** The place of the longest part of `where` that was written below an entry. */
 function deepestPlace(entry: Laid | undefined, where: string, key: string): Place | undefined {
   for (let part = where; part.length > key.length; part = part.slice(0, Math.max(part.lastIndexOf('.'), 0))) {
-    const place = entry?.deepPlaces?.get(part);
+    const place = entry?.deepPlaces?.values.get(part);
     if (place) return place;
   }
   return undefined;

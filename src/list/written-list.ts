@@ -12,8 +12,13 @@ export type WrittenValue = string | number | readonly WrittenValue[] | { readonl
 export interface WrittenEntry {
   readonly value: WrittenValue;
   readonly place: Place;
-  /** Places of whatever lies deeper than the key: `tube.rows.0.current`. */
-  readonly deepPlaces?: ReadonlyMap<string, Place>;
+  /** Places of the values, and of the keys, that lie deeper: `tube.rows.0.current`. */
+  readonly deepPlaces?: DeepPlaces;
+}
+
+export interface DeepPlaces {
+  readonly values: Map<string, Place>;
+  readonly keys: Map<string, Place>;
 }
 
 /** Dotted keys of the parts list, each with its value and place. */
@@ -86,7 +91,7 @@ class Reader {
 
   /** A name on one line, or null with a fault. */
   private readName(node: Node | null, where: string, at: Place): string | null {
-    const text = isScalar(node) ? plainName(String(node.source ?? node.value)) : '';
+    const text = isScalar(node) && !isNothing(node) ? plainName(String(node.source ?? node.value)) : '';
     if (text !== '' && text.length <= 80) return text;
     this.fault('bad-name', where, at, text || (isScalar(node) ? 'nothing' : shown(node)), NAME_EXPECTED);
     return null;
@@ -200,7 +205,7 @@ class Reader {
   }
 
   private leaf(key: string, node: ParsedNode | null, place: Place): WrittenEntry | null {
-    const deepPlaces = new Map<string, Place>();
+    const deepPlaces: DeepPlaces = { values: new Map(), keys: new Map() };
     const value = this.plain(node, key, 0, deepPlaces);
     if (value !== null) return { value, place, deepPlaces };
     this.fault('no-value', key, place, 'nothing', 'a value after the colon, or no such line');
@@ -208,11 +213,11 @@ class Reader {
   }
 
   /** A node as plain data, values as they were written, places kept; null where nothing is written. */
-  private plain(found: Node | null, path: string, depth: number, places: Map<string, Place>): WrittenValue | null {
+  private plain(found: Node | null, path: string, depth: number, places: DeepPlaces): WrittenValue | null {
     const node = this.text.followed(found);
     if (isNothing(node)) return null;
     this.spend(path, this.place(node), depth);
-    places.set(path, this.place(node));
+    places.values.set(path, this.place(node));
     if (isScalar(node)) return typeof node.value === 'string' ? node.value : String(node.source ?? node.value);
     if (isSeq(node)) {
       return node.items.map((item, n) => this.plain(item as Node, `${path}.${n}`, depth + 1, places) ?? '');
@@ -223,7 +228,7 @@ class Reader {
       const key = plainWords(isScalar(pair.key) ? String(pair.key.value) : '');
       const at = this.place(pair.key as Node);
       if (entries.has(key)) this.fault('given-twice', `${path}.${key}`, at, 'the same key again', 'each key once');
-      places.set(`${path}.${key}`, at);
+      places.keys.set(`${path}.${key}`, at);
       entries.set(key, this.plain(pair.value as Node | null, `${path}.${key}`, depth + 1, places) ?? '');
     }
     return Object.fromEntries(entries);

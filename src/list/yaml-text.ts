@@ -1,4 +1,5 @@
 import {
+  type Alias,
   Composer,
   type CST,
   isAlias,
@@ -24,7 +25,7 @@ export interface YamlText {
   readonly root: ParsedNode | null;
   readonly faults: readonly Fault[];
   placeAt(offset: number): Place;
-  /** The node itself, or what an alias stands for; null for an alias of an alias of nothing. */
+  /** The node itself, or what an alias stands for. */
   followed(node: Node | null): ParsedNode | null;
 }
 
@@ -73,7 +74,13 @@ export function yamlText(text: string): YamlText {
     });
   }
   if (!document || faults.length > 0) return refused(faults);
-  const meanings = aliasMeanings(document);
+  const { meanings, unknown } = aliasMeanings(document);
+  if (unknown !== null) {
+    const [got, expected] = [`*${unknown.source}`, `the name of an anchor above it, &${unknown.source}`];
+    return refused([
+      { code: 'unknown-alias', where: 'parts list', got, expected, ...placeAt(unknown.range?.[0] ?? 0) },
+    ]);
+  }
   return {
     root: document.contents,
     faults,
@@ -116,17 +123,25 @@ function tooDeep(tokens: readonly CST.Token[]): number | null {
   return null;
 }
 
+interface AliasMeanings {
+  readonly meanings: ReadonlyMap<Node, Node>;
+  /** The first alias that no anchor before it names. */
+  readonly unknown: Alias | null;
+}
+
 /** What each alias stands for: the node that bore its anchor last before it. An alias never leads to another. */
-function aliasMeanings(document: Parameters<typeof visit>[0]): ReadonlyMap<Node, Node> {
+function aliasMeanings(document: Parameters<typeof visit>[0]): AliasMeanings {
   const anchored = new Map<string, Node>();
   const meanings = new Map<Node, Node>();
+  let unknown: Alias | null = null;
   visit(document, {
     Node: (_, node) => {
       if (isAlias(node)) {
         const meaning = anchored.get(node.source);
         if (meaning) meanings.set(node, meaning);
+        else unknown ??= node;
       } else if ('anchor' in node && typeof node.anchor === 'string') anchored.set(node.anchor, node);
     },
   });
-  return meanings;
+  return { meanings, unknown };
 }
