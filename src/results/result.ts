@@ -1,3 +1,4 @@
+import type { Output, Plate } from '../engine/circuits/circuit.ts';
 import type { TubeLaw } from '../engine/tubes/tube.ts';
 
 /** The result file's shape. Keys carry their units; numbers are base SI units unless the key says otherwise. */
@@ -60,12 +61,8 @@ export interface CircuitRecord {
     readonly gridCathodeFarads: number;
     readonly plateCathodeFarads: number;
   };
-  readonly plate: {
-    readonly supplyVolts: number;
-    readonly bypassFarads: number;
-    readonly load: { readonly kind: 'resistor'; readonly ohms: number };
-  };
-  readonly output: { readonly couplingFarads: number; readonly loadOhms: number; readonly loadFarads: number };
+  readonly plate: Plate;
+  readonly output: Output;
 }
 
 export interface RestRecord {

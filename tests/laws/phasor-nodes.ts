@@ -1,4 +1,4 @@
-import type { DetectorCircuit } from '../../src/engine/circuits/circuit.ts';
+import type { DetectorCircuit, ResistorLoad } from '../../src/engine/circuits/circuit.ts';
 
 export type Phasor = readonly [re: number, im: number];
 
@@ -76,11 +76,11 @@ export function straightStage(
   const gridFoot: Phasor = [(across ? 0 : leak) + tube.gridSiemens, omega * circuit.tube.gridCathodeFarads];
   const gridPlate: Phasor = [0, omega * circuit.tube.gridPlateFarads];
   const plateFoot: Phasor = [
-    1 / plate.load.ohms + tube.gpSiemens,
+    1 / (plate.load as ResistorLoad).ohms + tube.gpSiemens,
     omega * (plate.bypassFarads + circuit.tube.plateCathodeFarads),
   ];
-  const coupling: Phasor = [0, omega * output.couplingFarads];
-  const outFoot: Phasor = [1 / output.loadOhms, omega * output.loadFarads];
+  const coupling: Phasor = [0, omega * (output.couplingFarads ?? 0)];
+  const outFoot: Phasor = [1 / (output.loadOhms ?? Number.POSITIVE_INFINITY), omega * output.loadFarads];
   const zero: Phasor = [0, 0];
   const less = (y: Phasor): Phasor => [-y[0], -y[1]];
   // Rows: tap, grid, plate, output. The tap's own row is the source.

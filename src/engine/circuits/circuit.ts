@@ -60,7 +60,81 @@ export interface ResistorLoad {
   readonly ohms: number;
 }
 
-export type PlateLoad = ResistorLoad;
+/** Choke from supply to plate; core loss and self-capacitance lie across the whole of it. */
+export interface ChokeLoad {
+  readonly kind: 'choke';
+  readonly henries: number;
+  readonly dcOhms: number;
+  /** Ohms; null: none. */
+  readonly coreLossOhms: number | null;
+  /** F; null: none. */
+  readonly selfFarads: number | null;
+}
+
+/** What a winding with an iron core loses to direct current: inductance without it, and at a stated current. */
+export interface FallingInductance {
+  readonly henriesWithoutCurrent: number;
+  readonly amps: number;
+  readonly henriesAtAmps: number;
+}
+
+/** A transformer of ratio 1:n, everything but the secondary's own values on the primary side. */
+export interface Transformer {
+  /** Secondary volts a primary volt, above 0. */
+  readonly ratio: number;
+  /** H, at the rest current. */
+  readonly primaryHenries: number;
+  readonly primaryDcOhms: number;
+  readonly leakageHenries: number;
+  /** Ohms; null: none. */
+  readonly coreLossOhms: number | null;
+  readonly primaryFarads: number;
+  readonly secondaryDcOhms: number;
+  readonly secondaryFarads: number;
+}
+
+/** Interstage transformer, primary from supply to plate. */
+export interface TransformerLoad extends Transformer {
+  readonly kind: 'transformer';
+  /** How the primary's inductance falls; null: it does not, or is not known. */
+  readonly falling: FallingInductance | null;
+}
+
+/** Magnetic phones or an earpiece; the three resonance values stand together or are null together. */
+export interface Phones {
+  readonly dcOhms: number;
+  readonly henries: number;
+  /** Ohms across the inductance; null: none. */
+  readonly eddyLossOhms: number | null;
+  /** F across the whole; null: none. */
+  readonly selfFarads: number | null;
+  /** The diaphragm's resonance as a parallel R, L, C in series with the coil. */
+  readonly resonanceOhms: number | null;
+  readonly resonanceHenries: number | null;
+  readonly resonanceFarads: number | null;
+}
+
+/** Phones in the plate lead, from supply to plate. */
+export interface PhonesLoad extends Phones {
+  readonly kind: 'phones';
+}
+
+export type PlateLoad = ResistorLoad | ChokeLoad | TransformerLoad | PhonesLoad;
+
+/** Choke that keeps the carrier out of the load, with the bypass behind it. */
+export interface CarrierChoke {
+  readonly henries: number;
+  readonly dcOhms: number;
+  readonly selfFarads: number | null;
+  /** From the load's end of the choke to the cathode, F, 0 allowed. */
+  readonly bypassFarads: number;
+}
+
+/** Resistor in the supply lead, with the capacitor from its far end to the cathode. */
+export interface DroppingResistor {
+  readonly ohms: number;
+  readonly farads: number;
+}
 
 export interface Plate {
   /** Supply voltage, V, 0 and up. */
@@ -68,13 +142,22 @@ export interface Plate {
   /** Bypass from plate to cathode, F; 0 is allowed (strays stay). */
   readonly bypassFarads: number;
   readonly load: PlateLoad;
+  /** Absent or null: none. */
+  readonly carrierChoke?: CarrierChoke | null;
+  readonly dropping?: DroppingResistor | null;
 }
 
-/** What follows the plate: a coupling capacitor into R in parallel with C. */
+/** What the stage feeds: R in parallel with C, or phones, behind a coupling capacitor where there is one. */
 export interface Output {
-  readonly couplingFarads: number;
-  readonly loadOhms: number;
+  /** F; null: none, straight on (after a transformer, or with the phones in the plate lead). */
+  readonly couplingFarads: number | null;
+  /** Ohms; null: open. */
+  readonly loadOhms: number | null;
   readonly loadFarads: number;
+  /** Matching transformer ahead of what is fed; absent or null: none. */
+  readonly matching?: Transformer | null;
+  /** Phones that are fed, heard by their coil current; absent or null: none. */
+  readonly phones?: Phones | null;
 }
 
 /** One detector, complete: everything the equations use, in SI units. */

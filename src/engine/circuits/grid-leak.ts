@@ -1,8 +1,7 @@
 import type { DetectorCircuit } from './circuit.ts';
 import { type Complex, complex, plus } from './complex.ts';
-import type { Probe } from './load-resistor.ts';
 import { CATHODE, type LinearSystem, Network } from './network.ts';
-import { type IdealParts, plateAdmittance, stampPlateSide } from './plate-network.ts';
+import { type IdealParts, type Probe, plateAdmittance, probeOf, stampPlateSide } from './plate-network.ts';
 
 /** The grid-leak stage for audio: linear network with two ports, grid and plate, where the tube draws its currents. */
 export interface AudioStage {
@@ -30,13 +29,13 @@ export function gridLeakAudio(circuit: DetectorCircuit, ideal: IdealParts = {}):
   const plate = network.node();
   network.capacitor(grid, CATHODE, (ideal.gridCapacitor ? 0 : detector.gridCapacitorFarads) + tube.gridCathodeFarads);
   network.capacitor(grid, plate, tube.gridPlateFarads);
-  network.resistorTo(grid, detector.leakReturnVolts, detector.leakOhms);
+  network.resistor(grid, network.fixed(detector.leakReturnVolts), detector.leakOhms);
   if (detector.capacitorLeakageOhms !== null) {
     const foot = detector.leakPosition === 'across capacitor' ? detector.leakReturnVolts : 0;
-    network.resistorTo(grid, foot, detector.capacitorLeakageOhms);
+    network.resistor(grid, network.fixed(foot), detector.capacitorLeakageOhms);
   }
-  const output = stampPlateSide(network, plate, circuit, ideal);
-  return { system: network.assemble(), gridNode: grid, plateNode: plate, output };
+  const heard = stampPlateSide(network, plate, circuit, ideal);
+  return { system: network.assemble(), gridNode: grid, plateNode: plate, output: probeOf(network, heard) };
 }
 
 /** The constant admittances of the stage at the carrier, S. */

@@ -7,15 +7,15 @@ export const CATHODE = -1;
  * A linear network by element stamps, in the form  E·dz/dt + F·z = b − B·i,
  * z the node voltages against the cathode (V) followed by branch currents (A), i the currents drawn from port nodes.
  *
- * Elements are written one by one; fixed voltages (supply, returns) enter as Norton equivalents of the element that
- * leads to them, so that no source row is needed. Nodes are numbered from 0 by `node()`.
+ * Elements are written one by one. Free nodes are numbered from 0 by `node()`; the cathode and points of fixed voltage
+ * have numbers below 0, take no row, and what leads to them enters the drive b.
  */
 export class Network {
   private readonly capacitors: [number, number, number][] = [];
   private readonly conductors: [number, number, number][] = [];
-  private readonly injected: [number, number][] = [];
   private readonly inductors: [number, number, number, number][] = [];
   private readonly transformers: [number, number, number, number, number][] = [];
+  private readonly fixedVolts: number[] = [0];
   private nodes = 0;
 
   /** A new node; returns its number. */
@@ -23,9 +23,14 @@ export class Network {
     return this.nodes++;
   }
 
-  /** C (F) between two nodes; the constant part of a fixed far end does not matter to a capacitor. */
+  /** A point of fixed voltage against the cathode, such as the supply. */
+  fixed(volts: number): number {
+    return -this.fixedVolts.push(volts);
+  }
+
+  /** C (F) between two nodes; 0 is left out. */
   capacitor(a: number, b: number, farads: number): void {
-    this.capacitors.push([a, b, farads]);
+    if (farads !== 0) this.capacitors.push([a, b, farads]);
   }
 
   /** R (ohm, above 0) between two nodes. */
@@ -33,15 +38,14 @@ export class Network {
     this.conductors.push([a, b, 1 / ohms]);
   }
 
-  /** R (ohm, above 0) from a node to a fixed voltage. */
-  resistorTo(a: number, volts: number, ohms: number): void {
-    this.conductors.push([a, CATHODE, 1 / ohms]);
-    this.injected.push([a, volts / ohms]);
+  /** L (H) in series with R (ohm), 0 allowed for both, between two nodes; returns the branch whose current it is. */
+  inductor(a: number, b: number, henries: number, ohms = 0): number {
+    return this.inductors.push([a, b, henries, ohms]) - 1;
   }
 
-  /** L (H) in series with R (ohm, 0 allowed) between two nodes, as one branch. */
-  inductor(a: number, b: number, henries: number, ohms = 0): void {
-    this.inductors.push([a, b, henries, ohms]);
+  /** Place of a branch's current among the unknowns, once all nodes are there. */
+  branchIndex(branch: number): number {
+    return this.nodes + branch;
   }
 
   /** Ideal transformer: v(c,d) = ratio · v(a,b); its branch current is that of the second winding. */
@@ -62,7 +66,10 @@ export class Network {
     const f = new Float64Array(n * n);
     const b = new Float64Array(n);
     const add = (m: Float64Array, row: number, col: number, value: number): void => {
-      if (row >= 0 && col >= 0) m[row * n + col] = (m[row * n + col] as number) + value;
+      if (row < 0) return;
+      if (col >= 0) m[row * n + col] = (m[row * n + col] as number) + value;
+      // a fixed voltage has no rate of change, so it matters to F alone
+      else if (m === f) b[row] = (b[row] as number) - value * (this.fixedVolts[-1 - col] as number);
     };
     const pair = (m: Float64Array, p: number, q: number, value: number): void => {
       add(m, p, p, value);
@@ -72,7 +79,6 @@ export class Network {
     };
     for (const [p, q, farads] of this.capacitors) pair(e, p, q, farads);
     for (const [p, q, siemens] of this.conductors) pair(f, p, q, siemens);
-    for (const [p, amps] of this.injected) b[p] = (b[p] as number) + amps;
     let row = this.nodes;
     for (const [p, q, henries, ohms] of this.inductors) {
       // branch current leaves p; L·di/dt + R·i − (v_p − v_q) = 0

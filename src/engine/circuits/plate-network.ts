@@ -1,30 +1,70 @@
 import type { DetectorCircuit } from './circuit.ts';
 import { type Complex, complex, over } from './complex.ts';
 import { solveComplex } from './dense-solve.ts';
-import { type Probe, stampOutput, stampResistorLoad } from './load-resistor.ts';
+import { stampChokeLoad } from './load-choke.ts';
+import { stampPhones } from './load-phones.ts';
+import { stampTransformer } from './load-transformer.ts';
 import { CATHODE, type LinearSystem, Network } from './network.ts';
+import { type Heard, stampOutput } from './output-stage.ts';
 
 /** Which parts are taken as ideal for audio, for the cost by part. */
 export interface IdealParts {
   readonly gridCapacitor?: boolean;
+  /** The bypass, and the one behind a carrier choke. */
   readonly plateBypass?: boolean;
+  /** The load with what it feeds, and the supply behind it. */
   readonly load?: boolean;
 }
 
-/** Stamps everything that hangs on the plate but the tube: load, bypass, plate-cathode capacitance, output. */
+/** What is heard, as a weight on one of the network's unknowns: output volts = weight · z[index]. */
+export interface Probe {
+  readonly index: number;
+  readonly weight: number;
+}
+
+/** Finds what is heard among the unknowns of a network with all its nodes. */
+export function probeOf(network: Network, heard: Heard): Probe {
+  return heard.kind === 'node'
+    ? { index: heard.node, weight: 1 }
+    : { index: network.branchIndex(heard.branch), weight: heard.ohms };
+}
+
+/** Stamps everything that hangs on the plate but the tube: bypass, plate-cathode capacitance, load, supply, output. */
 export function stampPlateSide(
   network: Network,
   plate: number,
   circuit: DetectorCircuit,
   ideal: IdealParts = {},
-): Probe {
-  const { load, supplyVolts, bypassFarads } = circuit.plate;
+): Heard {
+  const { load, supplyVolts, bypassFarads, carrierChoke, dropping } = circuit.plate;
   const bypass = ideal.plateBypass ? 0 : bypassFarads;
   network.capacitor(plate, CATHODE, bypass + circuit.tube.plateCathodeFarads);
+  let top = plate;
+  if (carrierChoke) {
+    top = network.node();
+    network.inductor(plate, top, carrierChoke.henries, carrierChoke.dcOhms);
+    network.capacitor(plate, top, carrierChoke.selfFarads ?? 0);
+    network.capacitor(top, CATHODE, ideal.plateBypass ? 0 : carrierChoke.bypassFarads);
+  }
+  let supply = network.fixed(supplyVolts);
+  if (dropping && !ideal.load) {
+    const feed = network.node();
+    network.resistor(feed, supply, dropping.ohms);
+    network.capacitor(feed, CATHODE, dropping.farads);
+    supply = feed;
+  }
+  const perfect = ideal.load === true;
   switch (load.kind) {
     case 'resistor':
-      stampResistorLoad(network, plate, load, supplyVolts);
-      return stampOutput(network, plate, circuit.output, ideal.load === true);
+      network.resistor(top, supply, load.ohms);
+      return stampOutput(network, top, circuit.output, perfect);
+    case 'choke':
+      stampChokeLoad(network, top, supply, load, perfect);
+      return stampOutput(network, top, circuit.output, perfect);
+    case 'transformer':
+      return stampOutput(network, stampTransformer(network, top, supply, load, perfect), circuit.output, perfect);
+    case 'phones':
+      return stampPhones(network, top, supply, load, perfect);
   }
 }
 

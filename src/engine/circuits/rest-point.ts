@@ -1,9 +1,10 @@
 import { InputError } from '../errors.ts';
 import { CarrierPath } from './carrier-path.ts';
-import type { DetectorCircuit } from './circuit.ts';
+import type { DetectorCircuit, PlateLoad } from './circuit.ts';
 import type { Complex } from './complex.ts';
 import { solveReal } from './dense-solve.ts';
 import { type AudioStage, carrierAdmittances, gridLeakAudio } from './grid-leak.ts';
+import { loadAtCurrent } from './load-transformer.ts';
 import { emptyCurrents, Stage, type StageCurrents, type StageLaws } from './stage-currents.ts';
 import { linearGrid, type QuietPoint, squareGrid, straightPlate, tubeStageLaws } from './stage-laws.ts';
 import { loadTunedCircuit, type TunedState } from './tuned-circuit.ts';
@@ -138,6 +139,21 @@ function restAtPeak(stage: Stage, path: DirectPath, peak: number, w: [number, nu
  * Raises InputError `no-rest-point`, `oscillates` (the detector's negative input conductance outweighs the coil).
  */
 export function restPoint(circuit: DetectorCircuit): RestPoint {
+  const { load } = circuit.plate;
+  if (load.kind !== 'transformer' || load.falling === null) return solveRest(circuit);
+  // the inductance shapes nothing at DC, so two rounds settle what current and inductance make of each other
+  let at = solveRest(withLoad(circuit, loadAtCurrent(load, 0)));
+  for (let round = 0; round < 2; round++) {
+    at = solveRest(withLoad(circuit, loadAtCurrent(load, at.currents.plateAmps)));
+  }
+  return at;
+}
+
+function withLoad(circuit: DetectorCircuit, load: PlateLoad): DetectorCircuit {
+  return { ...circuit, plate: { ...circuit.plate, load } };
+}
+
+function solveRest(circuit: DetectorCircuit): RestPoint {
   const audio = gridLeakAudio(circuit);
   const direct = directPath(audio);
   const path = new CarrierPath(carrierAdmittances(circuit), circuit.tube.law.mu);

@@ -1,5 +1,6 @@
 import type { DetectorCircuit } from '../circuits/circuit.ts';
 import { createNetwork, type LinearNetwork, type Port } from './linear-network.ts';
+import { type Listening, wirePlate } from './plate-wiring.ts';
 import type { ReferenceSource } from './source-drive.ts';
 
 /** The grid-leak detector as elements, with the nodes the results are read from. */
@@ -11,11 +12,11 @@ export interface DetectorNetwork {
   readonly foot: number;
   readonly grid: number;
   readonly plate: number;
-  readonly output: number;
+  readonly heard: Listening;
 }
 
 /**
- * Wires a grid-leak detector with a resistor load.
+ * Wires a grid-leak detector.
  *
  * `carrierHertz` and `stepSeconds` serve the tank alone: its L and C are scaled by (ωh/2)/tan(ωh/2), so that the
  * trapezoidal rule gives each its true reactance at the carrier.
@@ -26,7 +27,7 @@ export function gridLeakNetwork(
   carrierHertz: number,
   stepSeconds: number,
 ): DetectorNetwork {
-  const { detector, tube, plate: plateParts, output: outputParts } = circuit;
+  const { detector, tube } = circuit;
   const network = createNetwork();
   const { cathode } = network;
   const across = detector.leakPosition === 'across capacitor';
@@ -53,18 +54,13 @@ export function gridLeakNetwork(
   }
   const grid = network.free();
   const plate = network.free();
-  const output = network.free();
   network.capacitor(tap, grid, detector.gridCapacitorFarads);
   if (detector.capacitorLeakageOhms !== null) network.resistor(tap, grid, detector.capacitorLeakageOhms);
   if (across) network.resistor(tap, grid, detector.leakOhms);
   else network.resistor(grid, network.held(detector.leakReturnVolts), detector.leakOhms);
   network.capacitor(grid, cathode, tube.gridCathodeFarads);
   network.capacitor(grid, plate, tube.gridPlateFarads);
-  network.capacitor(plate, cathode, tube.plateCathodeFarads + plateParts.bypassFarads);
-  network.resistor(plate, network.held(plateParts.supplyVolts), plateParts.load.ohms);
-  network.capacitor(plate, output, outputParts.couplingFarads);
-  network.resistor(output, cathode, outputParts.loadOhms);
-  network.capacitor(output, cathode, outputParts.loadFarads);
+  const heard = wirePlate(network, plate, circuit);
   return {
     network,
     ports: [
@@ -75,6 +71,6 @@ export function gridLeakNetwork(
     foot,
     grid,
     plate,
-    output,
+    heard,
   };
 }

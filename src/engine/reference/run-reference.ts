@@ -2,8 +2,10 @@ import type { DetectorCircuit } from '../circuits/circuit.ts';
 import { blockHarmonics } from './block-harmonics.ts';
 import { checkReference } from './check-request.ts';
 import { packLaws, type StageLaws } from './instantaneous-laws.ts';
+import type { Listening } from './plate-wiring.ts';
 import { settleStage } from './reference-rest.ts';
 import { type ReferenceSource, tonePhasors } from './source-drive.ts';
+import type { Companion, Observation } from './trapezoidal-companion.ts';
 import {
   advance,
   BLOCKS_PER_CYCLE,
@@ -103,7 +105,7 @@ export function runReference(
     stepsPerCycle,
     cyclesPerPeriod,
     drive,
-    companion.observe(wired.output),
+    observeListening(companion, wired.heard),
   );
   s.state.set(settled.state);
   const { rest } = settled;
@@ -115,7 +117,7 @@ export function runReference(
     for (const [node, volts] of [
       [wired.grid, start.gridVolts - rest.gridVolts],
       [wired.plate, start.plateVolts - rest.plateVolts],
-      [wired.output, outputVolts],
+      [wired.heard.a, outputVolts],
     ] as const) {
       const shift = companion.shift(node, volts);
       for (let r = 0; r < shift.length; r++) s.state[r]! += shift[r]!;
@@ -180,5 +182,18 @@ function tuneWithCarrier(source: ReferenceSource, askedOverUsed: number): Refere
     ...source,
     tankFarads: source.tankFarads * scale,
     ...(source.openTankFarads === undefined ? {} : { openTankFarads: source.openTankFarads * scale }),
+  };
+}
+
+/** What is heard, as the loop reads node volts. */
+function observeListening(companion: Companion, { a, b, gain }: Listening): Observation {
+  const high = companion.observe(a);
+  const low = companion.observe(b);
+  const between = (x: Float64Array, y: Float64Array): Float64Array => x.map((value, k) => gain * (value - y[k]!));
+  return {
+    row: between(high.row, low.row),
+    held: gain * (high.held - low.held),
+    drive: gain * (high.drive - low.drive),
+    port: between(high.port, low.port),
   };
 }
