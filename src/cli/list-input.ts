@@ -1,10 +1,10 @@
-import { readFile } from 'node:fs/promises';
+import { open } from 'node:fs/promises';
 import { InputError } from '../engine/errors.ts';
 import { type ListedVariant, listVariants } from '../list/variants.ts';
 import { keySettings, type RawOptions } from './options.ts';
 
 /** Largest parts list that is read, bytes: a hand-written list is a few kilobytes. */
-const LARGEST_LIST_BYTES = 1_000_000;
+const LARGEST_LIST_BYTES = 200_000;
 
 /** Reads the parts list named on the command line (none: the standard set) and applies the flags. */
 export async function variantsFrom(list: string | null, options: RawOptions): Promise<ListedVariant[]> {
@@ -15,26 +15,45 @@ export async function variantsFrom(list: string | null, options: RawOptions): Pr
 async function readList(path: string): Promise<string> {
   const wrong = (code: string, got: string, hint: string): InputError =>
     new InputError({ code, where: path, got, expected: 'a parts list, a YAML text file', hint });
-  let bytes: Uint8Array;
-  try {
-    bytes = await readFile(path);
-  } catch (error) {
+  const bytes = await firstBytes(path, LARGEST_LIST_BYTES + 1).catch((error: unknown) => {
     const code = error instanceof Error && 'code' in error ? String(error.code) : '';
-    if (code === 'ENOENT' || code === 'ENOTDIR') {
+    if (code === 'ENOENT' || code === 'ENOTDIR' || code === 'ERR_INVALID_ARG_VALUE') {
       throw wrong('list-missing', 'no such file', 'presolder start writes one to begin with');
     }
     if (code === 'EISDIR') throw wrong('list-directory', 'a folder', 'name a file in it');
-    throw wrong(
-      'list-unreadable',
-      `a file that cannot be read (${code || 'no reason given'})`,
-      'check its permissions',
-    );
-  }
-  if (bytes.length > LARGEST_LIST_BYTES) throw wrong('list-too-large', `${bytes.length} bytes`, 'is it the clip?');
+    const reason = code || 'no reason given';
+    throw wrong('list-unreadable', `a file that cannot be read (${reason})`, 'check its permissions');
+  });
+  if (isUtf16(bytes)) throw wrong('list-not-utf8', 'text that is not UTF-8 but UTF-16', 'save it as UTF-8');
   if (bytes.includes(0)) throw wrong('list-not-text', 'a file that is not text', 'the clip comes first, then the list');
+  if (bytes.length > LARGEST_LIST_BYTES) {
+    throw wrong('list-too-large', `more than ${LARGEST_LIST_BYTES / 1000} kB`, 'the clip comes first, then the list');
+  }
   try {
     return new TextDecoder('utf-8', { fatal: true }).decode(bytes);
   } catch {
     throw wrong('list-not-utf8', 'text that is not UTF-8', 'save it as UTF-8');
   }
+}
+
+/** The start of a file, a pipe or a device, no more of it than is asked for: a clip given for a list may be large. */
+async function firstBytes(path: string, most: number): Promise<Uint8Array> {
+  const file = await open(path, 'r');
+  try {
+    const bytes = new Uint8Array(most);
+    let length = 0;
+    while (length < most) {
+      const { bytesRead } = await file.read(bytes, length, most - length, null);
+      if (bytesRead === 0) break;
+      length += bytesRead;
+    }
+    return bytes.subarray(0, length);
+  } finally {
+    await file.close();
+  }
+}
+
+/** Whether text begins with the byte-order mark of UTF-16, as some editors save it. */
+function isUtf16(bytes: Uint8Array): boolean {
+  return (bytes[0] === 0xff && bytes[1] === 0xfe) || (bytes[0] === 0xfe && bytes[1] === 0xff);
 }

@@ -1,9 +1,9 @@
 import type { Io } from './io.ts';
 import { run } from './run.ts';
 
-let stop = false;
+const stop = new AbortController();
 process.once('SIGINT', () => {
-  stop = true;
+  stop.abort();
   // a second Ctrl-C ends at once: results are renamed into place whole, so nothing half written can stay
   process.once('SIGINT', () => process.exit(130));
 });
@@ -22,7 +22,7 @@ const io: Io = {
     process.stderr.write(text);
   },
   talkIsTerminal: process.stderr.isTTY === true,
-  stopRequested: () => stop,
+  stopRequested: () => stop.signal.aborted,
 };
 
 process.exitCode = await run(process.argv.slice(2), io);

@@ -17,10 +17,7 @@ export class Progress {
 
   /** Tells how far `what` has come, 0 to 1. Throws Stopped after Ctrl-C. */
   tell(what: string, share: number): void {
-    if (this.io.stopRequested()) {
-      this.clear();
-      throw new Stopped();
-    }
+    this.stopIfAsked();
     const now = performance.now();
     if (!this.shown || (share < 1 && now - this.last < REWRITE_MILLISECONDS)) return;
     this.last = now;
@@ -35,6 +32,18 @@ export class Progress {
     if (now - this.lastYield < REWRITE_MILLISECONDS) return;
     await new Promise((resolve) => setImmediate(resolve));
     this.lastYield = performance.now();
+  }
+
+  /** Lets signals in, then throws Stopped if one asked for it: the last moment before results are written. */
+  async pause(): Promise<void> {
+    await new Promise((resolve) => setImmediate(resolve));
+    this.stopIfAsked();
+  }
+
+  private stopIfAsked(): void {
+    if (!this.io.stopRequested()) return;
+    this.clear();
+    throw new Stopped();
   }
 
   clear(): void {

@@ -1,7 +1,9 @@
 import { randomBytes } from 'node:crypto';
-import { mkdir, readdir, readFile, rename, rm, stat, writeFile } from 'node:fs/promises';
-import { basename, dirname, join, resolve } from 'node:path';
+import { mkdir, readdir, readFile, rename, rm, rmdir, stat, writeFile } from 'node:fs/promises';
+import { basename, dirname, isAbsolute, join, relative, resolve, sep } from 'node:path';
 import { InputError } from '../engine/errors.ts';
+import { safeFileNames } from '../results/safe-names.ts';
+import { isCode, writeFault } from './write-faults.ts';
 
 /** One file of a result. */
 export interface ResultFile {
@@ -12,48 +14,101 @@ export interface ResultFile {
 /** Set-up folders of runs that were killed are cleared by the next run once they are this old, ms. */
 const STALE_MILLISECONDS = 3_600_000;
 const SETTING_UP = '.presolder-unfinished-';
+/** Files of every result beside its sounds. */
+const PAPER_FILES = ['result.json', 'response.csv', 'response.md', 'response.svg', 'listening.html'];
+/** What a file manager leaves in folders it has shown; nobody misses it. */
+const LITTER = ['.DS_Store', 'Thumbs.db', 'desktop.ini'];
+
+const RESULTS_EXPECTED = 'a folder that results can be written to';
 
 function folderFault(code: string, folder: string, got: string, hint: string): InputError {
-  return new InputError({ code, where: folder, got, expected: 'a folder that results can be written to', hint });
+  return new InputError({ code, where: folder, got, expected: RESULTS_EXPECTED, hint });
 }
 
-/** What stands at the place of the results: nothing, an empty folder, earlier results, or something else. */
+/** What stands at the place of the results: nothing, an empty folder, or earlier results and no other file. */
 async function standing(folder: string): Promise<'nothing' | 'empty' | 'results'> {
+  const place = resolve(folder);
+  // a folder is replaced by renaming, and whoever works in it would be left in a folder that is no longer there
+  if (isWithin(place, process.cwd())) {
+    throw folderFault('out-is-here', folder, 'the folder you are working in', 'give --out the name of a folder in it');
+  }
   let names: string[];
   try {
-    if (!(await stat(folder)).isDirectory()) {
+    if (!(await stat(place)).isDirectory()) {
       throw folderFault('out-not-a-folder', folder, 'a file', 'give --out a folder');
     }
-    names = await readdir(folder);
+    names = await readdir(place);
   } catch (error) {
-    if (error instanceof InputError) throw error;
     if (isCode(error, 'ENOENT')) return 'nothing';
-    throw writeFault(folder, error);
+    throw writeFault(folder, error, RESULTS_EXPECTED);
   }
-  if (names.length === 0) return 'empty';
-  if (names.includes('result.json')) {
-    const text = await readFile(join(folder, 'result.json'), 'utf8').catch(() => '');
-    if (text.slice(0, 200).includes('presolder-result/')) return 'results';
-  }
+  if (names.every((name) => LITTER.includes(name))) return 'empty';
+  const ours = new Set([...LITTER, ...(await resultNames(place))]);
+  const others = names.filter((name) => !ours.has(name));
+  if (others.length === 0 && names.includes('result.json')) return 'results';
+  const some = others.slice(0, 3).map((name) => JSON.stringify(name));
   throw folderFault(
     'out-in-use',
     folder,
-    'a folder that holds other files',
+    `a folder that holds other files${some.length > 0 ? `, such as ${some.join(', ')}` : ''}`,
     'give --out a new folder, or one that holds only earlier results',
   );
 }
 
-/** Checks before the work that the results will have a place, so that nobody waits for nothing. */
-export async function checkFolder(folder: string): Promise<void> {
-  await standing(resolve(folder));
-  const parent = dirname(resolve(folder));
+/** The files of earlier results in a folder, by what their result file says of itself; none where there is none. */
+async function resultNames(place: string): Promise<string[]> {
   try {
-    await mkdir(parent, { recursive: true });
-    const trial = join(parent, `${SETTING_UP}${randomBytes(4).toString('hex')}`);
+    const result: unknown = JSON.parse(await readFile(join(place, 'result.json'), 'utf8'));
+    if (!hasKey(result, 'format') || !String(result.format).startsWith('presolder-result/')) return [];
+    const variants = hasKey(result, 'variants') && Array.isArray(result.variants) ? result.variants : [];
+    const sounds = variants.map((variant: unknown) =>
+      hasKey(variant, 'sound') && hasKey(variant.sound, 'file') ? String(variant.sound.file) : '',
+    );
+    return [...PAPER_FILES, ...sounds];
+  } catch {
+    return [];
+  }
+}
+
+function isWithin(folder: string, path: string): boolean {
+  const way = relative(folder, path);
+  return !isAbsolute(way) && way !== '..' && !way.startsWith(`..${sep}`);
+}
+
+function hasKey<Key extends string>(value: unknown, key: Key): value is Record<Key, unknown> {
+  return typeof value === 'object' && value !== null && key in value;
+}
+
+/**
+ * Checks before the work that the results will have a place, so that nobody waits for nothing. Leaves no trace.
+ *
+ * @param inputs  files of the run, which no result may replace
+ */
+export async function checkFolder(folder: string, ...inputs: readonly string[]): Promise<void> {
+  await standing(folder);
+  const held = inputs.find((input) => isWithin(resolve(folder), resolve(input)));
+  if (held !== undefined) {
+    const got = `the folder that holds ${JSON.stringify(held)}`;
+    throw folderFault('out-holds-input', folder, got, 'give --out another folder: what is read is never replaced');
+  }
+  try {
+    const trial = join(await nearestFolder(dirname(resolve(folder))), setUpName());
     await mkdir(trial);
     await rm(trial, { recursive: true, force: true });
   } catch (error) {
-    throw writeFault(folder, error);
+    throw writeFault(folder, error, RESULTS_EXPECTED);
+  }
+}
+
+/** The nearest of a folder and those above it that is there. */
+async function nearestFolder(folder: string): Promise<string> {
+  for (let place = folder; ; place = dirname(place)) {
+    try {
+      await stat(place);
+      return place;
+    } catch (error) {
+      if (!isCode(error, 'ENOENT') || place === dirname(place)) throw error;
+    }
   }
 }
 
@@ -67,11 +122,12 @@ export async function checkFolder(folder: string): Promise<void> {
 export async function writeResults(folder: string, files: readonly ResultFile[]): Promise<{ replaced: boolean }> {
   const place = resolve(folder);
   const parent = dirname(place);
-  const found = await standing(place);
-  const setUp = join(parent, `${SETTING_UP}${randomBytes(4).toString('hex')}`);
+  const found = await standing(folder);
+  const setUp = join(parent, setUpName());
   const old = `${setUp}-old`;
+  let made: string | undefined;
   try {
-    await mkdir(parent, { recursive: true });
+    made = await mkdir(parent, { recursive: true });
     await clearStale(parent);
     await mkdir(setUp);
     for (const { name, contents } of files) await writeFile(join(setUp, name), contents);
@@ -81,68 +137,50 @@ export async function writeResults(folder: string, files: readonly ResultFile[])
       await rename(setUp, place);
     } catch (error) {
       if (found === 'results') await rename(old, place);
+      else if (found === 'empty') await mkdir(place);
       throw error;
     }
-    await rm(old, { recursive: true, force: true });
   } catch (error) {
     await rm(setUp, { recursive: true, force: true }).catch(() => {});
-    throw writeFault(folder, error);
+    await removeEmpty(parent, made).catch(() => {});
+    throw writeFault(folder, error, RESULTS_EXPECTED);
+  }
+  if (found === 'results') {
+    // the new set stands: should something hold the old one open, a later run clears what is named so
+    const spent = join(parent, setUpName());
+    await rename(old, spent)
+      .then(() => rm(spent, { recursive: true, force: true }))
+      .catch(() => {});
   }
   return { replaced: found === 'results' };
+}
+
+/** Removes the folders that were made for a set, from the deepest up to the first made, as far as they are empty. */
+async function removeEmpty(deepest: string, first: string | undefined): Promise<void> {
+  if (first === undefined) return;
+  for (let folder = deepest; isWithin(first, folder); folder = dirname(folder)) await rmdir(folder);
+}
+
+function setUpName(): string {
+  return SETTING_UP + randomBytes(4).toString('hex');
 }
 
 async function clearStale(parent: string): Promise<void> {
   for (const name of await readdir(parent)) {
     if (!name.startsWith(SETTING_UP)) continue;
     const path = join(parent, name);
-    const age = Date.now() - (await stat(path)).mtimeMs;
-    // a set moved aside by a run that died between two renames is the only copy: put it back, never throw it away
-    if (age > STALE_MILLISECONDS && !name.endsWith('-old')) await rm(path, { recursive: true, force: true });
-  }
-}
-
-/** Writes one new file whole; refuses to replace one. */
-export async function writeNewFile(path: string, contents: string): Promise<void> {
-  const place = resolve(path);
-  try {
-    await writeFile(place, contents, { flag: 'wx' });
-  } catch (error) {
-    if (isCode(error, 'EEXIST')) {
-      throw new InputError({
-        code: 'file-exists',
-        where: path,
-        got: 'a file that is already there',
-        expected: 'a new name',
-        hint: 'nothing is overwritten: give another name or move the old file',
-      });
+    try {
+      const age = Date.now() - (await stat(path)).mtimeMs;
+      // a set moved aside by a run that died between two renames is the only copy: never throw it away
+      if (age > STALE_MILLISECONDS && !name.endsWith('-old')) await rm(path, { recursive: true, force: true });
+    } catch {
+      // another run's, gone meanwhile or not ours to clear
     }
-    throw writeFault(path, error);
   }
 }
 
-function isCode(error: unknown, code: string): boolean {
-  return error instanceof Error && 'code' in error && error.code === code;
-}
-
-function writeFault(where: string, error: unknown): unknown {
-  if (error instanceof InputError || !(error instanceof Error) || !('code' in error)) return error;
-  const reasons: Record<string, [string, string]> = {
-    EACCES: ['a place without leave to write', 'choose a folder of your own with --out'],
-    EPERM: ['a place without leave to write', 'choose a folder of your own with --out'],
-    EROFS: ['a read-only place', 'choose a folder on another disk with --out'],
-    ENOSPC: ['a full disk', 'free some space, or choose another disk with --out'],
-    ENOENT: ['a folder that cannot be made', 'check the name'],
-    ENOTDIR: ['a path that leads through a file', 'check the name'],
-    EEXIST: ['a file in the way', 'check the name'],
-    ENAMETOOLONG: ['a name that is too long', 'give a shorter one'],
-    EBUSY: ['a folder in use by another program', 'close what has it open'],
-  };
-  const found = reasons[String(error.code)];
-  if (!found) return error;
-  return folderFault(`out-${String(error.code).toLowerCase()}`, where, found[0], found[1]);
-}
-
-/** Name of the folder for a clip and a list: their names without folders and endings. */
+/** Name of the folder for a clip and a list: their names without folders and endings, safe for every file system. */
 export function folderName(...paths: readonly string[]): string {
-  return paths.map((path) => basename(path).replace(/\.[^.]*$/, '')).join('-');
+  const joined = paths.map((path) => basename(path).replace(/\.[^.]*$/, '')).join('-');
+  return safeFileNames([joined])[0] as string;
 }

@@ -22,7 +22,7 @@ export async function run(argv: readonly string[], io: Io): Promise<number> {
   const program = makeProgram(io, finish);
   try {
     if (argv.length === 0) {
-      io.out(program.helpInformation());
+      program.outputHelp();
       return EXIT.done;
     }
     await program.parseAsync([...argv], { from: 'user' });

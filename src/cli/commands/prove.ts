@@ -21,6 +21,14 @@ export async function prove(list: string | null, options: RawOptions, io: Io): P
   const tones = commaValues(text(options, 'tones') ?? '50,400,2500,10000', '--tones', readTone);
   const depths = commaValues(text(options, 'depths') ?? '30,80', '--depths', readDepth);
   const variants = await variantsFrom(list, options);
+  if (variants.some(({ circuit }) => circuit.station.levelVoltsRms === 0)) {
+    throw new InputError({
+      code: 'no-carrier',
+      where: 'station.level',
+      got: '0 V',
+      expected: 'a carrier: with none there is nothing to compare',
+    });
+  }
   const quiet = flag(options, 'quiet');
   const json = flag(options, 'json');
   const progress = new Progress(io, quiet);
@@ -29,14 +37,6 @@ export async function prove(list: string | null, options: RawOptions, io: Io): P
   const total = variants.length * tones.length * depths.length;
   let done = 0;
   for (const { name, circuit } of variants) {
-    if (circuit.station.levelVoltsRms === 0) {
-      throw new InputError({
-        code: 'no-carrier',
-        where: 'station.level',
-        got: '0 V',
-        expected: 'a carrier: with none there is nothing to compare',
-      });
-    }
     const rest = restPoint(circuit);
     const laws = tables.lawsFor(rest, 1);
     const found: ToneProof[] = [];

@@ -30,9 +30,10 @@ export async function render(clipPath: string, list: string | null, options: Raw
   const quality = choice(options, 'quality', ['normal', 'fine'], 'normal');
   const format = wavCoding(options);
   const variants = await variantsFrom(list, options);
-  const folder = text(options, 'out') ?? join('out', folderName(...(list === null ? [clipPath] : [clipPath, list])));
-  await checkFolder(folder);
   const clip = await readClip(clipPath);
+  const inputs = list === null ? [clipPath] : [clipPath, list];
+  const folder = text(options, 'out') ?? join('out', folderName(...inputs));
+  await checkFolder(folder, ...inputs);
   for (const warning of clip.warnings) if (!quiet) io.err(`${clipPath}: ${warning}\n`);
 
   const progress = new Progress(io, quiet);
@@ -91,8 +92,9 @@ export async function render(clipPath: string, list: string | null, options: Raw
       });
     }),
   };
+  await progress.pause();
   const { replaced } = await writeResults(folder, [...files, ...paperFiles(result)]);
-  if (flag(options, 'json')) io.out(`${resultJson(result)}\n`);
+  if (flag(options, 'json')) io.out(resultJson(result));
   else if (!quiet) io.out(`${summaryText(result)}\n`);
   if (!quiet) {
     io.err(

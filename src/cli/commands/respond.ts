@@ -15,7 +15,7 @@ import { summaryText } from '../summary.ts';
 export async function respond(list: string | null, options: RawOptions, io: Io): Promise<number> {
   const variants = await variantsFrom(list, options);
   const folder = text(options, 'out');
-  if (folder !== null) await checkFolder(folder);
+  if (folder !== null) await checkFolder(folder, ...(list === null ? [] : [list]));
   const progress = new Progress(io, flag(options, 'quiet'));
   const results: VariantResult[] = [];
   for (const [k, variant] of variants.entries()) {
@@ -27,12 +27,12 @@ export async function respond(list: string | null, options: RawOptions, io: Io):
   }
   progress.clear();
   const result: Result = { format: 'presolder-result/1', variants: results };
-  if (flag(options, 'json')) io.out(`${resultJson(result)}\n`);
+  await progress.pause();
+  const replaced = folder === null ? false : (await writeResults(folder, paperFiles(result))).replaced;
+  if (flag(options, 'json')) io.out(resultJson(result));
   else io.out(`${responseMarkdown(result)}\n${summaryText(result)}\n`);
-  if (folder !== null) {
-    const { replaced } = await writeResults(folder, paperFiles(result));
-    if (!flag(options, 'quiet'))
-      io.err(`${replaced ? 'Replaced the earlier results in' : 'Wrote tables and plot to'} ${folder}\n`);
+  if (folder !== null && !flag(options, 'quiet')) {
+    io.err(`${replaced ? 'Replaced the earlier results in' : 'Wrote tables and plot to'} ${folder}\n`);
   }
   return EXIT.done;
 }

@@ -1,6 +1,6 @@
 import { starterList } from '../../list/starter.ts';
 import { EXIT, type Io } from '../io.ts';
-import { writeNewFile } from '../result-folder.ts';
+import { writeNewFile } from '../new-file.ts';
 
 /** Writes the starter parts list; refuses to replace a file. */
 export async function start(file: string, io: Io): Promise<number> {
