@@ -64,7 +64,8 @@ describe('an exponential law over a carrier cycle', () => {
     expect(Math.abs((chord * x * THERMAL) / (2 * mean) - ratio)).toBeLessThan(1e-5);
   });
 
-  // The same law with a leak of 1 MΩ, from 20 µA·exp(v/V_T)·I0(V/V_T) = -v/R. Digits as given, half of the last, and 0.5 %.
+  // The same law with a leak of 1 MΩ, from 20 µA·exp(v/V_T)·I0(V/V_T) = -v/R. Half of the last digit given; 0.5 % for
+  // the input, given to three figures.
   it.each([
     [0.01, 0.00023, 247e3],
     [0.1, 0.02169, 270e3],

@@ -57,7 +57,7 @@ describe('leak, weak signal, 100 pF', () => {
     );
     const louder = steps(circuits.map(loudness));
     for (const step of louder.slice(0, 3)) expect(step).toBeGreaterThan(0);
-    // 2 to 5 MΩ: the grid's treble corner passes 400 Hz and takes what the longer leak gives; as much as a decibel either way
+    // 2 to 5 MΩ: the treble corner comes down on 400 Hz and takes what the longer leak gives, to a decibel either way
     expect(Math.abs(louder[3]!)).toBeLessThan(1);
     for (const step of steps(circuits.map(treble))) expect(step).toBeLessThan(0);
   });
