@@ -18,7 +18,7 @@ async function readList(path: string): Promise<string> {
   const bytes = await firstBytes(path, LARGEST_LIST_BYTES + 1).catch((error: unknown) => {
     const code = error instanceof Error && 'code' in error ? String(error.code) : '';
     if (code === 'ENOENT' || code === 'ENOTDIR' || code === 'ERR_INVALID_ARG_VALUE') {
-      throw wrong('list-missing', 'no such file', 'presolder start writes one to begin with');
+      throw wrong('list-missing', 'no such file', 'the command presolder start writes one to begin with');
     }
     if (code === 'EISDIR') throw wrong('list-directory', 'a folder', 'name a file in it');
     const reason = code || 'no reason given';

@@ -126,11 +126,23 @@ Example:
   program
     .command('stock')
     .description('The catalogue, with sources: tubes with their published rows and how well the law meets them.')
-    .argument('[kind]', 'tubes, or outputs (what a stage feeds)')
+    .argument('[kind]', 'tubes, transformers, chokes, phones, outputs, hearing')
     .argument('[name]', 'one part of that kind')
     .option('--supply <V>', 'supply voltage that chooses the row the law is taken from', '90V')
+    .option('--ratio <1:N>', "a transformer's readings: turns ratio")
+    .option('--source <R>', 'resistance of generator and added resistor')
+    .option('--low-corner <F>', 'frequency at which the output is 3 dB down')
+    .option('--resonance <F>', 'frequency of the highest output')
+    .option('--height <DB>', 'its height over mid frequencies')
+    .option('--primary-dc <R>', 'DC resistance of the primary')
+    .option('--secondary-dc <R>', 'DC resistance of the secondary')
+    .option('--load <R>', 'load of the secondary while reading, if any')
+    .option('--meter <C>', 'capacitance of meter and leads, if any')
     .option('--json', 'print it as JSON, nothing else')
-    .addHelpText('after', '\nExamples:\n  presolder stock\n  presolder stock tubes 6SL7-GT --supply 250V')
+    .addHelpText(
+      'after',
+      '\nExamples:\n  presolder stock\n  presolder stock tubes 6SL7-GT --supply 250V\n  presolder stock transformers --ratio 1:3 --source 10k --low-corner 40Hz --resonance 9.6kHz --height 4dB --primary-dc 1k --secondary-dc 8k',
+    )
     .action((kind: string | undefined, name: string | undefined, options: Record<string, unknown>) =>
       finish(import('./commands/stock.ts').then((module) => module.stock(kind ?? null, name ?? null, options, io))),
     );

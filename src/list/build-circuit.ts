@@ -3,8 +3,8 @@ import type { DetectorCircuit, GridLeakDetector, TunedCircuit } from '../engine/
 import { type Fault, InputError } from '../engine/errors.ts';
 import type { BandLimit, PreEmphasis } from '../engine/station/pre-emphasis.ts';
 import type { CathodeKind } from '../engine/tubes/fitting.ts';
+import { outputOf, plateLoadOf } from './list-loads.ts';
 import { socketedTube } from './list-tube.ts';
-import { outputPart } from './output-parts.ts';
 import { type CircuitList, STANDARD_COIL } from './schema.ts';
 
 /** How the station treats the clip before it is sent. */
@@ -18,15 +18,16 @@ export interface BuiltCircuit {
   readonly circuit: DetectorCircuit;
   readonly ratings: Ratings | null;
   readonly sending: Sending;
+  /** Name of a hearing curve, or of a file of the builder's own. */
+  readonly heardThrough: string;
   /** What the parts themselves give cause for, before anything is computed. */
   readonly cautions: readonly Caution[];
 }
 
 /** The circuit a read list describes. Throws InputError whose faults name dotted keys. */
 export function buildCircuit(list: CircuitList): BuiltCircuit {
-  const { station, plate, output } = list;
+  const { station, plate } = list;
   const { tube, cathode, filamentVolts, ratings, cautions } = socketedTube(list);
-  const part = outputPart(output.into);
   return {
     circuit: {
       station: {
@@ -37,12 +38,25 @@ export function buildCircuit(list: CircuitList): BuiltCircuit {
       tunedCircuit: tunedCircuit(list),
       detector: gridLeak(list, cathode, filamentVolts),
       tube,
-      plate: { supplyVolts: plate.supply, bypassFarads: plate.bypass, load: loadOf(plate.load) },
-      output: {
-        couplingFarads: output.coupling,
-        loadOhms: output['load resistance'] ?? part.loadOhms,
-        loadFarads: output['load capacitance'] ?? part.loadFarads,
+      plate: {
+        supplyVolts: plate.supply,
+        bypassFarads: plate.bypass,
+        load: plateLoadOf(plate.load),
+        carrierChoke:
+          plate['carrier choke'] === null
+            ? null
+            : {
+                henries: plate['carrier choke'],
+                dcOhms: plate['carrier choke resistance'],
+                selfFarads: plate['carrier choke capacitance'],
+                bypassFarads: plate['second bypass'],
+              },
+        dropping:
+          plate['dropping resistor'] === null
+            ? null
+            : { ohms: plate['dropping resistor'], farads: plate['dropping capacitor'] },
       },
+      output: outputOf(list),
     },
     ratings,
     sending: {
@@ -50,12 +64,9 @@ export function buildCircuit(list: CircuitList): BuiltCircuit {
       channelLimit: station['channel limit'] === '9 kHz' ? 'channel 9 kHz' : 'none',
       side: station.side,
     },
+    heardThrough: list.output['heard through'],
     cautions,
   };
-}
-
-function loadOf(load: CircuitList['plate']['load']): DetectorCircuit['plate']['load'] {
-  return { kind: 'resistor', ohms: load.resistance };
 }
 
 function tunedCircuit(list: CircuitList): TunedCircuit {

@@ -1,10 +1,16 @@
 import type { Fault } from '../engine/errors.ts';
 import { nearestName } from '../engine/parts/nearest-name.ts';
-import { LOAD_EXPECTED, loadMapping } from './plate-load.ts';
+import { LOAD_EXPECTED, loadMapping, matchingMapping } from './plate-load.ts';
 import { type CircuitList, circuitList } from './schema.ts';
 import { READING_KEYS, ROW_KEYS } from './tube-section.ts';
 import type { WrittenEntry, WrittenKeys, WrittenValue } from './written-list.ts';
 import type { Place } from './yaml-text.ts';
+
+/** Keys that may hold on one line what they hold as a mapping. */
+const ON_ONE_LINE: Readonly<Record<string, typeof loadMapping>> = {
+  'plate.load': loadMapping,
+  'output.matching': matchingMapping,
+};
 
 /** One layer of changes: those later in the row stand over the earlier ones. */
 export interface Layer {
@@ -79,12 +85,13 @@ function deepestPlace(entry: Laid | undefined, where: string, key: string): Plac
 }
 
 function lay(laid: Map<string, Laid>, key: string, entry: Laid, faults: Fault[]): void {
-  if (key === 'plate.load') {
+  const expand = ON_ONE_LINE[key];
+  if (expand) {
     const { value } = entry;
     const mapping =
       typeof value === 'object'
         ? { fault: { code: 'unknown-load', where: key, got: shortly(value), expected: LOAD_EXPECTED } }
-        : loadMapping(value);
+        : expand(value);
     if ('fault' in mapping) {
       faults.push(placed({ ...(mapping.fault as Fault), where: key }, new Map([[key, entry]])));
       return;
@@ -100,6 +107,7 @@ function lay(laid: Map<string, Laid>, key: string, entry: Laid, faults: Fault[])
 function clearFor(laid: Map<string, Laid>, keys: WrittenKeys): void {
   const kind = keys.get('plate.load.kind');
   if (keys.has('plate.load') || (kind && kind.value !== laid.get('plate.load.kind')?.value)) drop(laid, 'plate.load.');
+  if (keys.has('output.matching')) drop(laid, 'output.matching.');
   const tuned = (name: string): string => `tuned circuit.${name}`;
   const own = ['coil', 'capacitor', 'unloaded Q', 'tap'].map(tuned);
   if (keys.has(tuned('loaded Q'))) for (const key of own) laid.delete(key);
@@ -115,7 +123,7 @@ function drop(laid: Map<string, Laid>, prefix: string): void {
 function nested(laid: ReadonlyMap<string, Laid>): Record<string, unknown> {
   const root: Record<string, unknown> = {};
   for (const [key, { value }] of laid) {
-    if (key === 'plate.load') continue;
+    if (ON_ONE_LINE[key]) continue;
     const path = key.split('.');
     const last = path.pop() as string;
     let at = root;

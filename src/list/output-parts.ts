@@ -1,7 +1,14 @@
 /** What a stage can feed, as its terminals look from the coupling capacitor. */
 export interface OutputPart {
-  readonly name: 'next grid' | 'ceramic earpiece' | 'crystal earpiece';
-  readonly loadOhms: number;
+  readonly name:
+    | 'next grid'
+    | 'ceramic earpiece'
+    | 'crystal earpiece'
+    | 'phones'
+    | 'low-impedance earpiece'
+    | 'nothing';
+  /** Ohms; null: open, or phones alone. */
+  readonly loadOhms: number | null;
   readonly loadFarads: number;
   readonly source: string;
 }
@@ -26,6 +33,9 @@ export const OUTPUT_PARTS: readonly OutputPart[] = [
     loadFarads: 500e-12,
     source: 'Loudspeaker for a crystal set, http://www.crystal-radio.eu/enkristalspeaker.htm, seen',
   },
+  { name: 'phones', loadOhms: null, loadFarads: 0, source: 'those of 2000 ohm in stock phones' },
+  { name: 'low-impedance earpiece', loadOhms: null, loadFarads: 0, source: '30 Ω and 0.5 mH: typical, from memory' },
+  { name: 'nothing', loadOhms: null, loadFarads: 0, source: 'an open end' },
 ];
 
 /** The part of that name; the list's own check lets no other name through. */

@@ -1,9 +1,10 @@
 import * as z from 'zod';
+import { HEARING_NAMES } from '../engine/hearing/hearing-curves.ts';
 import { formatQuantity } from '../engine/parts/format-quantity.ts';
 import { SOCKET_STRAYS } from '../engine/tubes/socketed-tube.ts';
 import { dottedFields } from './dotted-keys.ts';
 import { choiceOr, quantity, quantityOr, quantityOrNone, words } from './fields.ts';
-import { plateLoad } from './plate-load.ts';
+import { plateLoad, transformerKeys } from './plate-load.ts';
 import { tubeSection } from './tube-section.ts';
 
 const OHMS = { atLeast: 1, atMost: 1e9 } as const;
@@ -14,6 +15,8 @@ const Q = { atLeast: 1, atMost: 2000 } as const;
 
 /** Defaults of the tuned circuit as built; they hold only where no loaded Q is given, so the schema leaves them open. */
 export const STANDARD_COIL = { coilHenries: 200e-6, unloadedQ: 90 } as const;
+
+const HEARD = 'What it is heard through: a kind of earpiece or speaker, or a CSV file of Hz and dB';
 
 const picofarads = (farads: number): string => formatQuantity(farads, 'capacitance');
 
@@ -70,13 +73,32 @@ const plate = z.strictObject({
   supply: quantityOr('90 V', 'voltage', { atLeast: 0, atMost: 1000 }, 'Supply'),
   load: plateLoad,
   bypass: quantityOr('220 pF', 'capacitance', FARADS_OR_NONE, 'Bypass from plate to cathode'),
+  'carrier choke': quantityOrNone('none', 'inductance', { atLeast: 1e-6, atMost: 10 }, 'Between plate and load'),
+  'carrier choke resistance': quantityOr('50 Ω', 'resistance', { atLeast: 0, atMost: 1e5 }, 'DC resistance of it'),
+  'carrier choke capacitance': quantityOr('3 pF', 'capacitance', STRAY, 'Capacitance across it'),
+  'second bypass': quantityOr('0 pF', 'capacitance', FARADS_OR_NONE, 'Behind the carrier choke, to cathode'),
+  'dropping resistor': quantityOrNone('none', 'resistance', OHMS, 'In the supply lead'),
+  'dropping capacitor': quantityOr('1 µF', 'capacitance', FARADS_OR_NONE, 'From the far end of it to cathode'),
 });
 
 const output = z.strictObject({
-  coupling: quantityOr('10 nF', 'capacitance', FARADS, 'Coupling capacitor'),
-  into: choiceOr(['next grid', 'ceramic earpiece', 'crystal earpiece'], 'next grid', 'What the stage feeds'),
-  'load resistance': quantity('resistance', OHMS, 'In place of that of what it feeds').optional(),
+  coupling: quantityOr('10 nF', 'capacitance', FARADS, 'Coupling capacitor of a resistor or choke load'),
+  into: choiceOr(
+    ['next grid', 'ceramic earpiece', 'crystal earpiece', 'phones', 'low-impedance earpiece', 'nothing'],
+    'next grid',
+    'What the stage feeds',
+  ),
+  'load resistance': quantity('resistance', OHMS, 'In place of that of what it feeds, or beside phones').optional(),
   'load capacitance': quantity('capacitance', FARADS_OR_NONE, 'In place of that of what it feeds').optional(),
+  matching: z
+    .strictObject(transformerKeys)
+    .optional()
+    .meta({ description: 'Matching transformer ahead of what is fed: 1:0.1, or a mapping' }),
+  'heard through': words(
+    200,
+    HEARD,
+    `one of ${HEARING_NAMES.join(', ')}, or a curve of your own such as cone.csv`,
+  ).prefault('flat'),
 });
 
 /** Strays of a socket and its wiring; their sources stand with the figures. */
@@ -104,7 +126,11 @@ export const circuitShape = {
 export const circuitList = z.strictObject({ name: name.optional(), ...circuitShape });
 
 /** Every key a variant or a flag may change, dotted, with its field. */
-export const CHANGEABLE: ReadonlyMap<string, z.ZodType> = dottedFields(circuitShape);
+export const CHANGEABLE: ReadonlyMap<string, z.ZodType> = new Map<string, z.ZodType>([
+  ...dottedFields(circuitShape),
+  // a mapping that may also stand on one line, as a load may
+  ['output.matching', output.shape.matching],
+]);
 
 /** The whole parts list: the one definition that checking and the JSON Schema come from. */
 export const partsList = z.strictObject({

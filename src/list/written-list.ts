@@ -175,8 +175,10 @@ class Reader {
   }
 
   private keep(key: string, node: ParsedNode | null, place: Place, into: WrittenKeys): void {
-    if (isMap(node) && key === 'plate.load') {
-      this.section(key, node, place, mappingShape(circuitShape.plate.unwrap().shape.load) ?? {}, into);
+    const field = CHANGEABLE.get(key);
+    const shape = isMap(node) && field ? mappingShape(field) : null;
+    if (shape) {
+      this.section(key, node, place, shape, into);
       return;
     }
     const entry = this.leaf(key, node, place);

@@ -3,12 +3,12 @@ import { formatQuantity } from '../../engine/parts/format-quantity.ts';
 import { parseQuantity } from '../../engine/parts/quantities.ts';
 import { findTube, TUBE_TYPES } from '../../engine/tubes/catalogue.ts';
 import { SOCKET_STRAYS, tubeFromCatalogue } from '../../engine/tubes/socketed-tube.ts';
-import { OUTPUT_PARTS } from '../../list/output-parts.ts';
 import { EXIT, type Io } from '../io.ts';
 import { flag, type RawOptions, text } from '../options.ts';
 import { plainTable } from '../plain-table.ts';
+import { hasReadings, PART_KINDS, type PartKind, partsData, printParts, printReadTransformer } from './stock-loads.ts';
 
-const KINDS = ['tubes', 'outputs'] as const;
+const KINDS = ['tubes', ...PART_KINDS] as const;
 
 /** The catalogue, whole or one part of it. */
 export async function stock(kind: string | null, name: string | null, options: RawOptions, io: Io): Promise<number> {
@@ -22,10 +22,21 @@ export async function stock(kind: string | null, name: string | null, options: R
     if (name === null) return stock('tubes', kind, options, io);
     throw new InputError({ code: 'unknown-kind', where: 'stock', got: kind, expected: `one of ${KINDS.join(', ')}` });
   }
-  if (kind === 'outputs') return stockOutputs(name, json, io);
+  if (hasReadings(options)) {
+    printReadTransformer(options, json, io);
+    return EXIT.done;
+  }
+  const partKind: PartKind | undefined = PART_KINDS.find((known) => known === kind);
+  if (partKind) {
+    const data = partsData(partKind, name);
+    if (json) io.out(`${JSON.stringify({ [partKind]: data }, null, 2)}\n`);
+    else printParts(partKind, name, io);
+    return EXIT.done;
+  }
   if (name !== null) return stockTube(name, supplyVolts, json, io);
   if (json) {
-    io.out(`${JSON.stringify({ tubes: TUBE_TYPES, ...(kind === null ? { outputs: OUTPUT_PARTS } : {}) }, null, 2)}\n`);
+    const others = kind === null ? Object.fromEntries(PART_KINDS.map((one) => [one, partsData(one, null)])) : {};
+    io.out(`${JSON.stringify({ tubes: TUBE_TYPES, ...others }, null, 2)}\n`);
     return EXIT.done;
   }
   const rows = TUBE_TYPES.map((type) => [
@@ -40,8 +51,10 @@ export async function stock(kind: string | null, name: string | null, options: R
   ]);
   io.out(`${plainTable(['tube', 'cathode', 'heater', 'mu', 'max plate', 'max watts', 'rows', 'also'], rows)}\n`);
   if (kind === null) {
-    io.out('\n');
-    stockOutputs(null, false, io);
+    for (const one of PART_KINDS) {
+      io.out('\n');
+      printParts(one, null, io);
+    }
   }
   io.err('One tube with its published rows, fit errors and sources: presolder stock tubes NAME\n');
   return EXIT.done;
@@ -92,29 +105,5 @@ function stockTube(name: string, supplyVolts: number, json: boolean, io: Io): nu
   const sources = [...new Set(type.rows.map((row) => `${row.source}, ${row.recall}`))];
   io.out(`Rows: ${sources.join('; ')}\n`);
   for (const caution of socketed.cautions) io.out(`Caution: ${caution.got}; expected ${caution.expected}\n`);
-  return EXIT.done;
-}
-
-function stockOutputs(name: string | null, json: boolean, io: Io): number {
-  const parts = name === null ? OUTPUT_PARTS : OUTPUT_PARTS.filter((part) => part.name === name);
-  if (parts.length === 0) {
-    throw new InputError({
-      code: 'unknown-output',
-      where: 'stock outputs',
-      got: name ?? '',
-      expected: `one of ${OUTPUT_PARTS.map((part) => part.name).join(', ')}`,
-    });
-  }
-  if (json) {
-    io.out(`${JSON.stringify({ outputs: parts }, null, 2)}\n`);
-    return EXIT.done;
-  }
-  const rows = parts.map((part) => [
-    part.name,
-    formatQuantity(part.loadOhms, 'resistance'),
-    formatQuantity(part.loadFarads, 'capacitance'),
-    part.source,
-  ]);
-  io.out(`${plainTable(['what the stage feeds', 'resistance', 'capacitance', 'source'], rows)}\n`);
   return EXIT.done;
 }
