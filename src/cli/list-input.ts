@@ -1,15 +1,25 @@
 import { open } from 'node:fs/promises';
 import { InputError } from '../engine/errors.ts';
+import type { HearingCurve } from '../engine/hearing/hearing-curves.ts';
 import { type ListedVariant, listVariants } from '../list/variants.ts';
+import { hearingCurve } from './hearing-input.ts';
 import { keySettings, type RawOptions } from './options.ts';
 
 /** Largest parts list that is read, bytes: a hand-written list is a few kilobytes. */
 const LARGEST_LIST_BYTES = 200_000;
 
+/** A variant with the curve it is heard through. */
+export interface RunVariant extends ListedVariant {
+  readonly heard: HearingCurve;
+}
+
 /** Reads the parts list named on the command line (none: the standard set) and applies the flags. */
-export async function variantsFrom(list: string | null, options: RawOptions): Promise<ListedVariant[]> {
+export async function variantsFrom(list: string | null, options: RawOptions): Promise<RunVariant[]> {
   const settings = keySettings(options);
-  return listVariants(list === null ? '' : await readList(list), list ?? 'standard set', settings);
+  const variants = listVariants(list === null ? '' : await readList(list), list ?? 'standard set', settings);
+  return Promise.all(
+    variants.map(async (variant) => ({ ...variant, heard: await hearingCurve(variant.heardThrough, list) })),
+  );
 }
 
 async function readList(path: string): Promise<string> {

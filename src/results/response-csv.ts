@@ -1,8 +1,13 @@
 import { onePlainLine } from './plain-line.ts';
-import type { ResponseRow, Result } from './result.ts';
+import type { ResponseRow, Result, VariantResult } from './result.ts';
 
-/** The column group of one variant: its heading with the unit, and the number of a row. */
-const COLUMNS: readonly { readonly heading: string; readonly value: (row: ResponseRow) => number }[] = [
+/** One column of a variant's group: its heading with the unit, and the number of a row. */
+interface Column {
+  readonly heading: string;
+  readonly value: (row: ResponseRow) => number;
+}
+
+const COLUMNS: readonly Column[] = [
   { heading: 'response (dB re 400 Hz)', value: (row) => row.decibels },
   { heading: 'phase (degrees)', value: (row) => row.phaseDegrees },
   { heading: 'output at 30 % modulation (V rms)', value: (row) => row.voltsRmsAt30Percent },
@@ -12,8 +17,15 @@ const COLUMNS: readonly { readonly heading: string; readonly value: (row: Respon
   { heading: 'cost of load and coupling (dB)', value: (row) => row.cost.load },
 ];
 
+const HEARD: Column = { heading: 'heard through (dB re 400 Hz)', value: (row) => row.heardThroughDecibels ?? 0 };
+
+/** The group of a variant: a column more where it is heard through something. */
+function columnsOf(variant: VariantResult): readonly Column[] {
+  return variant.heardThrough ? [...COLUMNS, HEARD] : COLUMNS;
+}
+
 /**
- * The response as comma-separated values: one row a frequency, one group of seven columns a variant, units in the
+ * The response as comma-separated values: one row a frequency, one group of columns a variant, units in the
  * heading, decimal points, numbers unrounded, rows ended by CR LF (RFC 4180, from memory). A frequency that a variant
  * lacks leaves its cells empty. A byte order mark stands in front only when a name has letters beyond ASCII, since some
  * spreadsheets take such a file for another encoding without it.
@@ -28,14 +40,16 @@ export function responseCsv(result: Result): string {
     'frequency (Hz)',
     ...result.variants.flatMap((variant) => {
       const name = onePlainLine(variant.name).replaceAll(';', ',');
-      return COLUMNS.map((column) => `${column.heading}: ${name}`);
+      return columnsOf(variant).map((column) => `${column.heading}: ${name}`);
     }),
   ];
   const lines = allHertz.map((hertz) => [
     numberCell(hertz),
-    ...rowsByHertz.flatMap((rows) => {
+    ...rowsByHertz.flatMap((rows, k) => {
       const row = rows.get(hertz);
-      return COLUMNS.map((column) => (row === undefined ? '' : numberCell(column.value(row))));
+      return columnsOf(result.variants[k] as VariantResult).map((column) =>
+        row === undefined ? '' : numberCell(column.value(row)),
+      );
     }),
   ]);
   const text = [heading.map(textCell), ...lines].map((cells) => `${cells.join(',')}\r\n`).join('');

@@ -43,6 +43,7 @@ export function responseMarkdown(result: Result): string {
     rows.length === 0 ? '' : `### ${title}\n\n${note === '' ? '' : `${note}\n\n`}${table([corner, ...names], rows)}\n`;
   return [
     section('Response', 'Audio at the output, dB re 400 Hz.', 'Hz', responseRows(variants)),
+    heardSection(variants),
     section('Corners', 'Where the response is 3 dB down on 400 Hz.', 'corner', cornerRows(variants)),
     section(
       'Cost by part at 5 kHz',
@@ -75,6 +76,20 @@ function responseRows(variants: readonly VariantResult[]): Row[] {
     String(f),
     ...variants.map((variant) => decibels(variant.response.find((row) => row.hertz === f)?.decibels)),
   ]);
+}
+
+/** What is heard through, in its own table: it is no part of the circuit's response. */
+function heardSection(all: readonly VariantResult[]): string {
+  const variants = all.filter((variant) => variant.heardThrough);
+  const curves = [...new Map(variants.map((variant) => [variant.heardThrough?.name ?? '', variant])).values()];
+  if (curves.length === 0) return '';
+  const hertz = unionOf(curves, (variant) => variant.response.map((row) => row.hertz));
+  const rows = hertz.map((f) => [
+    String(f),
+    ...curves.map((variant) => decibels(variant.response.find((row) => row.hertz === f)?.heardThroughDecibels)),
+  ]);
+  const heads = ['Hz', ...curves.map((variant) => markdownText(variant.heardThrough?.name ?? ''))];
+  return `### Heard through\n\ndB re 400 Hz, to be added to the response: the clips go through it, the tables do not.\n\n${table(heads, rows)}\n`;
 }
 
 function cornerRows(variants: readonly VariantResult[]): Row[] {

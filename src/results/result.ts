@@ -30,6 +30,8 @@ export interface VariantResult {
   readonly distortion: readonly DistortionRow[];
   readonly sensitivity: readonly SensitivityRow[];
   readonly sound?: SoundRecord;
+  /** What it is heard through; absent when that is flat. The sound goes through it, the response does not. */
+  readonly heardThrough?: { readonly name: string; readonly source: string };
   readonly cautions: readonly string[];
 }
 
@@ -96,6 +98,8 @@ export interface ResponseRow {
   readonly phaseDegrees: number;
   readonly voltsRmsAt30Percent: number;
   readonly cost: CostRow;
+  /** What the variant is heard through, dB re 400 Hz, apart from the circuit's response; absent when that is flat. */
+  readonly heardThroughDecibels?: number;
 }
 
 /** dB that would come back at this frequency if the part's audio admittance alone were ideal. */

@@ -1,5 +1,6 @@
 import type { Analysis } from '../engine/circuits/analysis.ts';
 import type { RestPoint } from '../engine/circuits/rest-point.ts';
+import { curveDecibels, type HearingCurve } from '../engine/hearing/hearing-curves.ts';
 import { cautionText } from './caution-text.ts';
 import type { CircuitRecord, SoundRecord, VariantResult } from './result.ts';
 
@@ -30,19 +31,25 @@ export function variantResult(
   name: string,
   changes: Readonly<Record<string, string>>,
   analysis: Analysis,
-  sound?: SoundRecord,
+  more: { readonly sound?: SoundRecord; readonly heard?: HearingCurve } = {},
 ): VariantResult {
+  const { sound, heard } = more;
+  const curve = heard && heard.name !== 'flat' ? heard : null;
+  const level = curve ? curveDecibels(curve, 400) : 0;
   return {
     name,
     changes,
     circuit: circuitRecord(analysis.rest),
     rest: analysis.figures,
-    response: analysis.response,
+    response: curve
+      ? analysis.response.map((row) => ({ ...row, heardThroughDecibels: curveDecibels(curve, row.hertz) - level }))
+      : analysis.response,
     lowCornerHertz: analysis.lowCornerHertz,
     highCornerHertz: analysis.highCornerHertz,
     distortion: analysis.distortion,
     sensitivity: analysis.sensitivity,
     ...(sound ? { sound } : {}),
+    ...(curve ? { heardThrough: { name: curve.name, source: curve.source } } : {}),
     cautions: analysis.cautions.map(cautionText),
   };
 }

@@ -1,11 +1,12 @@
 import { basename, join } from 'node:path';
 import { type Analysis, analyse } from '../../engine/circuits/analysis.ts';
 import type { Caution } from '../../engine/circuits/cautions.ts';
+import type { HearingCurve } from '../../engine/hearing/hearing-curves.ts';
+import { heardThrough } from '../../engine/hearing/hearing-filter.ts';
 import { type RenderedClip, renderClip } from '../../engine/renderer/render-clip.ts';
 import { TableStore } from '../../engine/renderer/table-store.ts';
 import { preEmphasise } from '../../engine/station/pre-emphasis.ts';
 import { type Programme, programmeFrom, toMono } from '../../engine/station/programme.ts';
-import type { ListedVariant } from '../../list/variants.ts';
 import type { Result } from '../../results/result.ts';
 import { resultJson } from '../../results/result-json.ts';
 import { safeFileNames } from '../../results/safe-names.ts';
@@ -14,7 +15,7 @@ import type { ReadSound } from '../../results/wav-read.ts';
 import { writeWav } from '../../results/wav-write.ts';
 import { readClip } from '../clip-read.ts';
 import { EXIT, type Io } from '../io.ts';
-import { variantsFrom } from '../list-input.ts';
+import { type RunVariant, variantsFrom } from '../list-input.ts';
 import { choice, flag, type RawOptions, text, wavCoding } from '../options.ts';
 import { Progress } from '../progress.ts';
 import { paperFiles } from '../result-files.ts';
@@ -50,11 +51,10 @@ export async function render(clipPath: string, list: string | null, options: Raw
     await progress.breathe();
     const laws = tables.lawsFor(analysis.rest, largest(programme.modulation));
     const total = programme.modulation.length;
-    rendered.push(
-      renderClip(analysis.rest, laws, programme.modulation, clip.sampleRateHertz, quality, (done) =>
-        progress.tell(`rendering ${variant.name}`, (k + done / Math.max(total, 1)) / variants.length),
-      ),
+    const heard = renderClip(analysis.rest, laws, programme.modulation, clip.sampleRateHertz, quality, (done) =>
+      progress.tell(`rendering ${variant.name}`, (k + done / Math.max(total, 1)) / variants.length),
     );
+    rendered.push(throughCurve(heard, variant.heard, clip.sampleRateHertz));
     await progress.breathe();
   }
   progress.clear();
@@ -85,10 +85,13 @@ export async function render(clipPath: string, list: string | null, options: Raw
       });
       files.push({ name: file, contents: written.bytes });
       return variantResult(variant.name, variant.changes, analysis, {
-        file,
-        gainDecibels: sound.gainDecibels,
-        loudnessLufs: sound.loudnessLufs,
-        peakVolts: (rendered[k] as RenderedClip).peakVolts,
+        sound: {
+          file,
+          gainDecibels: sound.gainDecibels,
+          loudnessLufs: sound.loudnessLufs,
+          peakVolts: (rendered[k] as RenderedClip).peakVolts,
+        },
+        heard: variant.heard,
       });
     }),
   };
@@ -106,7 +109,7 @@ export async function render(clipPath: string, list: string | null, options: Raw
 }
 
 /** The clip as this variant's station sends it; variants with the same station share one. */
-function programmeFor(variant: ListedVariant, clip: ReadSound, kept: Map<string, Programme>): Programme {
+function programmeFor(variant: RunVariant, clip: ReadSound, kept: Map<string, Programme>): Programme {
   const { preEmphasis, channelLimit, side } = variant.sending;
   const depth = variant.circuit.station.modulation;
   const key = `${preEmphasis} ${channelLimit} ${side} ${depth}`;
@@ -120,9 +123,16 @@ function programmeFor(variant: ListedVariant, clip: ReadSound, kept: Map<string,
 }
 
 /** With what the parts themselves and the transmitter's limiter give cause for. */
-function withCautions(analysis: Analysis, variant: ListedVariant, { limitedSamples }: Programme): Analysis {
+function withCautions(analysis: Analysis, variant: RunVariant, { limitedSamples }: Programme): Analysis {
   const limited: Caution[] = limitedSamples > 0 ? [{ code: 'limited', figure: limitedSamples, limit: 0 }] : [];
   return { ...analysis, cautions: [...analysis.cautions, ...variant.cautions, ...limited] };
+}
+
+/** The rendered clip as it is heard; flat is the clip itself. */
+function throughCurve(clip: RenderedClip, curve: HearingCurve, rateHertz: number): RenderedClip {
+  const volts = heardThrough(clip.volts, curve, rateHertz);
+  if (volts === clip.volts) return clip;
+  return { ...clip, volts, peakVolts: Math.max(largest(volts), largest(volts.map((value) => -value))) };
 }
 
 function largest(samples: Float64Array): number {

@@ -22,7 +22,7 @@ export async function respond(list: string | null, options: RawOptions, io: Io):
     progress.tell(`analysing ${variant.name}`, k / variants.length);
     const analysis = analyse(variant.circuit, variant.ratings);
     const cautions = [...analysis.cautions, ...variant.cautions];
-    results.push(variantResult(variant.name, variant.changes, { ...analysis, cautions }));
+    results.push(variantResult(variant.name, variant.changes, { ...analysis, cautions }, { heard: variant.heard }));
     await progress.breathe();
   }
   progress.clear();
