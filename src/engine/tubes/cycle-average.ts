@@ -103,30 +103,37 @@ export function averageAtNodes(
 export function directAverage(law: SmoothLaw): CycleLaw {
   const work = new Float64Array(4);
   const all = new Float64Array(10);
-  const average = (x: number, a: number, out: Float64Array): void => {
-    averageAtNodes(law, x, a, nodesFor(a, law.scaleVolts), all, work);
+  return fromAverageAt((at, out) => {
+    const a = at[1] as number;
+    averageAtNodes(law, at[0] as number, a, nodesFor(a, law.scaleVolts), all, work);
     for (let k = 0; k < 6; k++) out[k] = all[k] as number;
-  };
-  return fromAverage(average);
+  });
 }
 
-/** The array forms of a law whose cost does not matter. */
-function fromAverage(average: CycleLaw['average']): CycleLaw {
-  const averageAt = (at: Float64Array, out: Float64Array): void => average(at[0] as number, at[1] as number, out);
-  return { average, averageAt, levelsAt: averageAt };
+/** A law worked from voltages handed over in an array, in its other forms too. */
+function fromAverageAt(averageAt: CycleLaw['averageAt']): CycleLaw {
+  const point = new Float64Array(2);
+  return {
+    average(x, a, out) {
+      point[0] = x;
+      point[1] = a;
+      averageAt(point, out);
+    },
+    averageAt,
+    levelsAt: averageAt,
+  };
 }
 
 /** A straight law: i = amps + siemens·(x − volts), whatever the carrier; the chord is the slope. */
 export function straightCycleLaw(volts: number, amps: number, siemens: number): CycleLaw {
-  const average = (x: number, _a: number, out: Float64Array): void => {
-    out[MEAN] = amps + siemens * (x - volts);
+  return fromAverageAt((at, out) => {
+    out[MEAN] = amps + siemens * ((at[0] as number) - volts);
     out[MEAN_BY_X] = siemens;
     out[MEAN_BY_A] = 0;
     out[CHORD] = siemens;
     out[CHORD_BY_X] = 0;
     out[CHORD_BY_A] = 0;
-  };
-  return fromAverage(average);
+  });
 }
 
 /**
@@ -135,15 +142,15 @@ export function straightCycleLaw(volts: number, amps: number, siemens: number): 
  * @param ampsPerVoltSquared  k, A/V² of carrier peak
  */
 export function squareCycleLaw(volts: number, amps: number, siemens: number, ampsPerVoltSquared: number): CycleLaw {
-  const average = (x: number, a: number, out: Float64Array): void => {
-    out[MEAN] = amps + siemens * (x - volts) + ampsPerVoltSquared * a * a;
+  return fromAverageAt((at, out) => {
+    const a = at[1] as number;
+    out[MEAN] = amps + siemens * ((at[0] as number) - volts) + ampsPerVoltSquared * a * a;
     out[MEAN_BY_X] = siemens;
     out[MEAN_BY_A] = 2 * ampsPerVoltSquared * a;
     out[CHORD] = siemens;
     out[CHORD_BY_X] = 0;
     out[CHORD_BY_A] = 0;
-  };
-  return fromAverage(average);
+  });
 }
 
 /**
@@ -155,7 +162,9 @@ export function squareCycleLaw(volts: number, amps: number, siemens: number, amp
  */
 export function linearRectifierCycleLaw(chargeOhms: number): CycleLaw {
   const g = 1 / chargeOhms;
-  const average = (x: number, a: number, out: Float64Array): void => {
+  return fromAverageAt((at, out) => {
+    const x = at[0] as number;
+    const a = at[1] as number;
     if (x <= -a || x >= a) {
       const conducts = x > 0 ? g : 0;
       out[MEAN] = conducts * x;
@@ -177,6 +186,5 @@ export function linearRectifierCycleLaw(chargeOhms: number): CycleLaw {
     // dφ/dx = 1/(a sin φ); d(φ − sin φ cos φ)/dφ = 2 sin² φ
     out[CHORD_BY_X] = (gPi * 2 * sin) / a;
     out[CHORD_BY_A] = (-gPi * 2 * sin * cos) / a;
-  };
-  return fromAverage(average);
+  });
 }

@@ -111,7 +111,8 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
         this.averageAt(at, out);
         return;
       }
-      const ac = a < widest ? a : widest;
+      // by the library: a choice between a number and a kept one would box it, and the loop would take memory
+      const ac = Math.min(a, widest);
       let i = cx[((crestVolts - lowest) * cv) | 0] as number;
       if (crestVolts >= (ck[i + 1] as number) && i < ci.length - 1) i++;
       let j = px[(ac * pv) | 0] as number;
@@ -163,8 +164,8 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
         out[CHORD_BY_A] = 0;
         return;
       }
-      const pc = crestVolts < highest ? crestVolts : highest;
-      const ac = a < widest ? a : widest;
+      const pc = Math.min(crestVolts, highest);
+      const ac = Math.min(a, widest);
       let i = cx[((pc - lowest) * cv) | 0] as number;
       if (pc >= (ck[i + 1] as number) && i < ci.length - 1) i++;
       let j = px[(ac * pv) | 0] as number;
