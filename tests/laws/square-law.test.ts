@@ -52,6 +52,17 @@ describe('square law: second harmonic of m/4, as the stage then passes it', () =
     }
   });
 
+  it('rectifies on the grid what the tube does when the signal is weak', () => {
+    for (const tube of ['6SL7-GT', '76', '30']) {
+      const weak = { tube, levelVoltsRms: 1e-3 };
+      const at = (law: 'square' | 'tube'): number =>
+        magnitude(new LinearResponse(restPoint(gridLeak({ ...weak, law }))).at(100).grid);
+      // on the grid, and at 100 Hz, because the tube's plate rectifies a little too and C_gp brings that to the grid.
+      // 1e-4: the next even term, as below
+      expect(Math.abs(at('square') / at('tube') - 1), tube).toBeLessThan(1e-4);
+    }
+  });
+
   it('is what the tube itself tends to when the signal is weak', () => {
     const weak = gridLeak({ tunedCircuit: BROAD, levelVoltsRms: 1e-3 });
     const rest = restPoint(weak);
