@@ -251,6 +251,7 @@ describe('the other commands', () => {
     [['--depths', '120'], '--depths', '120 %'],
     [['--depths', '30,'], '--depths', 'nothing'],
     [['--depths', '3 dB'], '--depths', '3 dB'],
+    [['--tones', '400,5000', '--carrier', '1 MHz,30 kHz'], '--tones', '5 kHz', '3 kHz'],
     [['--level', '0'], 'station.level', 'a carrier'],
     [['--level', '60 mV,0'], 'station.level', 'a carrier'],
   ])('prove %j', async (flags, ...named) => {

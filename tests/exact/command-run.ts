@@ -13,7 +13,11 @@ export interface Ran {
 }
 
 /** Runs the command with its texts caught; `stop` is asked as often as the command asks whether to stop. */
-export async function ran(argv: readonly string[], stop: () => boolean = () => false): Promise<Ran> {
+export async function ran(
+  argv: readonly string[],
+  stop: () => boolean = () => false,
+  talkIsTerminal = false,
+): Promise<Ran> {
   let out = '';
   let err = '';
   const io: Io = {
@@ -23,7 +27,7 @@ export async function ran(argv: readonly string[], stop: () => boolean = () => f
     err: (text) => {
       err += text;
     },
-    talkIsTerminal: false,
+    talkIsTerminal,
     stopRequested: stop,
   };
   const status = await run(argv, io);

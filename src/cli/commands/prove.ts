@@ -10,6 +10,9 @@ import { flag, type RawOptions, text } from '../options.ts';
 import { plainTable } from '../plain-table.ts';
 import { Progress } from '../progress.ts';
 
+/** Carrier cycles a period of the tone that the reference asks for. */
+const LEAST_CARRIER_CYCLES = 10;
+
 interface VariantProof {
   readonly variant: string;
   readonly levelVoltsRms: number;
@@ -27,6 +30,16 @@ export async function prove(list: string | null, options: RawOptions, io: Io): P
       where: 'station.level',
       got: '0 V',
       expected: 'a carrier: with none there is nothing to compare',
+    });
+  }
+  const slowest = Math.min(...variants.map(({ circuit }) => circuit.station.carrierHertz));
+  for (const hertz of tones) {
+    if (hertz <= slowest / LEAST_CARRIER_CYCLES) continue;
+    throw new InputError({
+      code: 'tone-near-carrier',
+      where: '--tones',
+      got: formatQuantity(hertz, 'frequency'),
+      expected: `at most a tenth of the carrier, ${formatQuantity(slowest / LEAST_CARRIER_CYCLES, 'frequency')}`,
     });
   }
   const quiet = flag(options, 'quiet');

@@ -51,9 +51,11 @@ export async function render(clipPath: string, list: string | null, options: Raw
     await progress.breathe();
     const laws = tables.lawsFor(analysis.rest, largest(programme.modulation));
     const total = programme.modulation.length;
-    const heard = renderClip(analysis.rest, laws, programme.modulation, clip.sampleRateHertz, quality, (done) =>
-      progress.tell(`rendering ${variant.name}`, (k + done / Math.max(total, 1)) / variants.length),
-    );
+    const heard = programme.modulation.every((value) => value === 0)
+      ? stillClip(total)
+      : renderClip(analysis.rest, laws, programme.modulation, clip.sampleRateHertz, quality, (done) =>
+          progress.tell(`rendering ${variant.name}`, (k + done / Math.max(total, 1)) / variants.length),
+        );
     rendered.push(throughCurve(heard, variant.heard, clip.sampleRateHertz));
     await progress.breathe();
   }
@@ -126,6 +128,11 @@ function programmeFor(variant: RunVariant, clip: ReadSound, kept: Map<string, Pr
 function withCautions(analysis: Analysis, variant: RunVariant, { limitedSamples }: Programme): Analysis {
   const limited: Caution[] = limitedSamples > 0 ? [{ code: 'limited', figure: limitedSamples, limit: 0 }] : [];
   return { ...analysis, cautions: [...analysis.cautions, ...variant.cautions, ...limited] };
+}
+
+/** A carrier alone leaves the stage at rest. Rendered, its last digits would be brought up to full scale and heard. */
+function stillClip(frames: number): RenderedClip {
+  return { volts: new Float64Array(frames), peakVolts: 0, unsettledSteps: 0, passesPerStep: 0 };
 }
 
 /** The rendered clip as it is heard; flat is the clip itself. */
