@@ -49,7 +49,7 @@ export function listVariants(text: string, fileName: string, settings: readonly 
   const list = writtenList(text);
   const flags = settings.map(readSetting);
   const faults: Fault[] = [...list.faults, ...flags.flatMap((flag) => ('fault' in flag ? [flag.fault] : []))];
-  if (faults.length > 0) throw new InputError(faults.map(inFile));
+  if (faults.length > 0) throw new InputError(faults.slice(0, MOST_FAULTS).map(inFile));
   const drafts = draftVariants(list, flags as readonly FlagValues[], fileName);
   const found = new Map<string, Fault>();
   const note = (fault: Fault): void => {
