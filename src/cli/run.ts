@@ -35,6 +35,8 @@ export async function run(argv: readonly string[], io: Io): Promise<number> {
 /** Prints what went wrong for the person it concerns; returns the exit status. */
 function reportFault(error: unknown, io: Io): number {
   if (error instanceof CommanderError) return error.exitCode === 0 ? EXIT.done : EXIT.input;
+  // a progress line may stand where the message goes
+  if (io.talkIsTerminal) io.err('\r\u001b[K');
   if (error instanceof Stopped) {
     io.err('Stopped; nothing was written.\n');
     return EXIT.stopped;

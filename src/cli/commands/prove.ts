@@ -6,6 +6,7 @@ import { PROOF_TONE_STEP_HERTZ, proveTone, type ToneProof } from '../../engine/p
 import { TableStore } from '../../engine/renderer/table-store.ts';
 import { EXIT, type Io } from '../io.ts';
 import { variantsFrom } from '../list-input.ts';
+import { ofVariant } from '../of-variant.ts';
 import { flag, type RawOptions, text } from '../options.ts';
 import { plainTable } from '../plain-table.ts';
 import { Progress } from '../progress.ts';
@@ -50,13 +51,14 @@ export async function prove(list: string | null, options: RawOptions, io: Io): P
   const total = variants.length * tones.length * depths.length;
   let done = 0;
   for (const { name, circuit } of variants) {
-    const rest = restPoint(circuit);
+    const rest = ofVariant(name, () => restPoint(circuit));
     const laws = tables.lawsFor(rest, 1);
     const found: ToneProof[] = [];
     for (const hertz of tones) {
       for (const depth of depths) {
         const what = `${name}, ${formatQuantity(hertz, 'frequency')} at ${Math.round(100 * depth)} %`;
-        found.push(proveTone(rest, laws, hertz, depth, (part) => progress.tell(what, (done + part) / total)));
+        const told = (part: number): void => progress.tell(what, (done + part) / total);
+        found.push(ofVariant(name, () => proveTone(rest, laws, hertz, depth, told)));
         done++;
         await progress.breathe();
       }

@@ -16,6 +16,7 @@ import { writeWav } from '../../results/wav-write.ts';
 import { readClip } from '../clip-read.ts';
 import { EXIT, type Io } from '../io.ts';
 import { type RunVariant, variantsFrom } from '../list-input.ts';
+import { ofVariant } from '../of-variant.ts';
 import { choice, flag, type RawOptions, text, wavCoding } from '../options.ts';
 import { Progress } from '../progress.ts';
 import { paperFiles } from '../result-files.ts';
@@ -46,7 +47,7 @@ export async function render(clipPath: string, list: string | null, options: Raw
   for (const [k, variant] of variants.entries()) {
     const programme = programmeFor(variant, clip, programmes);
     limitedSamples = Math.max(limitedSamples, programme.limitedSamples);
-    const analysis = analyse(variant.circuit, variant.ratings);
+    const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings));
     analyses.push(withCautions(analysis, variant, programme));
     await progress.breathe();
     const laws = tables.lawsFor(analysis.rest, largest(programme.modulation));

@@ -5,6 +5,7 @@ import { resultJson } from '../../results/result-json.ts';
 import { variantResult } from '../../results/variant-result.ts';
 import { EXIT, type Io } from '../io.ts';
 import { variantsFrom } from '../list-input.ts';
+import { ofVariant } from '../of-variant.ts';
 import { flag, type RawOptions, text } from '../options.ts';
 import { Progress } from '../progress.ts';
 import { paperFiles } from '../result-files.ts';
@@ -20,7 +21,7 @@ export async function respond(list: string | null, options: RawOptions, io: Io):
   const results: VariantResult[] = [];
   for (const [k, variant] of variants.entries()) {
     progress.tell(`analysing ${variant.name}`, k / variants.length);
-    const analysis = analyse(variant.circuit, variant.ratings);
+    const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings));
     const cautions = [...analysis.cautions, ...variant.cautions];
     results.push(variantResult(variant.name, variant.changes, { ...analysis, cautions }, { heard: variant.heard }));
     await progress.breathe();

@@ -20,7 +20,7 @@ export const TUBE_BY_TUBE = 5;
 export class CarrierPath {
   private readonly a: CarrierAdmittances;
   private readonly mu: number;
-  /** The same numbers as plain fields, for the renderer's loop: 1/mu, grid, grid-plate, plate, η at g = 0, |series|. */
+  /** The same numbers as plain fields, for the renderer's loop: 1/mu, grid, grid-plate, plate, η at g = 0, |series|, series. */
   private readonly c: Float64Array;
 
   constructor(admittances: CarrierAdmittances, mu: number) {
@@ -38,10 +38,12 @@ export class CarrierPath {
       plate.re + gridPlate.re / mu,
       plate.im + gridPlate.im / mu,
       magnitude(series),
+      series.re,
+      series.im,
     );
   }
 
-  /** The constants of the path as one run of ten numbers, for the kernel. */
+  /** The constants of the path as one run of twelve numbers, for the kernel. */
   get numbers(): Float64Array {
     return this.c;
   }
@@ -118,5 +120,49 @@ export class CarrierPath {
     const gridRatio = over(times(series, beta), det);
     const plateRatio = scaled(over(times(series, gamma), det), -1);
     return { grid: gridRatio, plate: plateRatio, input: times(series, minus(complex(1), gridRatio)) };
+  }
+
+  /** The admittance shown to the tuned circuit and its slopes by the two chords, S and no unit. */
+  inputSlopes(g: number, k: number): { input: Complex; byGrid: Complex; byTube: Complex } {
+    const { series, grid, gridPlate, plate } = this.a;
+    const alpha = plus(grid, complex(g));
+    const beta = plus(plate, complex(k / this.mu));
+    const det = plus(times(alpha, beta), times(gridPlate, minus(complex(k - g), gridPlate)));
+    const ratio = over(times(series, beta), det);
+    const detByTube = plus(scaled(alpha, 1 / this.mu), gridPlate);
+    const ratioByGrid = scaled(over(times(ratio, minus(beta, gridPlate)), det), -1);
+    const ratioByTube = over(minus(scaled(series, 1 / this.mu), times(ratio, detByTube)), det);
+    return {
+      input: times(series, minus(complex(1), ratio)),
+      byGrid: scaled(times(series, ratioByGrid), -1),
+      byTube: scaled(times(series, ratioByTube), -1),
+    };
+  }
+
+  /** The admittance shown to the tuned circuit for g = `chords[0]`, k = `chords[1]`, into `out[0..1]`, taking no memory. */
+  inputAt(chords: Float64Array, out: Float64Array): void {
+    const g = chords[0] as number;
+    const k = chords[1] as number;
+    const c = this.c;
+    const perMu = c[0] as number;
+    const gpRe = c[3] as number;
+    const gpIm = c[4] as number;
+    const alphaRe = (c[1] as number) + g;
+    const alphaIm = c[2] as number;
+    const betaRe = (c[5] as number) + k * perMu;
+    const betaIm = c[6] as number;
+    const gammaRe = k - g - gpRe;
+    const detRe = alphaRe * betaRe - alphaIm * betaIm + gpRe * gammaRe + gpIm * gpIm;
+    const detIm = alphaRe * betaIm + alphaIm * betaRe - gpRe * gpIm + gpIm * gammaRe;
+    const sRe = c[10] as number;
+    const sIm = c[11] as number;
+    // series·(1 − series·β/D)
+    const bRe = sRe * betaRe - sIm * betaIm;
+    const bIm = sRe * betaIm + sIm * betaRe;
+    const scale = 1 / (detRe * detRe + detIm * detIm);
+    const leftRe = 1 - (bRe * detRe + bIm * detIm) * scale;
+    const leftIm = -(bIm * detRe - bRe * detIm) * scale;
+    out[0] = sRe * leftRe - sIm * leftIm;
+    out[1] = sRe * leftIm + sIm * leftRe;
   }
 }

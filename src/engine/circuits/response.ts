@@ -1,4 +1,4 @@
-import { type Complex, complex, magnitude, over, plus, scaled, times } from './complex.ts';
+import { type Complex, complex, magnitude, over, plus, scaled } from './complex.ts';
 import { solveComplex } from './dense-solve.ts';
 import { type AudioStage, gridLeakAudio } from './grid-leak.ts';
 import type { IdealParts } from './plate-network.ts';
@@ -46,26 +46,56 @@ export class LinearResponse {
   at(hertz: number): ModulationResponse {
     const { rest, stage } = this;
     const { currents, tuned, circuit } = rest;
-    const envelope = this.tunedIdeal
-      ? complex(1)
-      : envelopeTransfer(hertz, circuit.station.carrierHertz, tuned.loadedQ, tuned.detuneHertz);
-    const drive = scaled(envelope, tuned.carrierPeakVolts);
     const { system, gridNode: g, plateNode: p, output } = stage;
+    const tank = this.tunedIdeal ? null : tuned.tank;
     const n = system.size;
-    const re = system.conductance.slice();
-    const add = (row: number, col: number, siemens: number): void => {
-      re[row * n + col] = (re[row * n + col] as number) + siemens;
+    // with a coil, the envelope's two parts stand behind the network's own unknowns
+    const size = tank ? n + 2 : n;
+    const re = widened(system.conductance, n, size);
+    const im = widened(system.storage, n, size).map((value) => value * 2 * Math.PI * hertz);
+    const add = (row: number, col: number, value: number): void => {
+      re[row * size + col] = (re[row * size + col] as number) + value;
     };
     add(g, g, currents.gridByGrid);
     add(g, p, currents.gridByPlate);
     add(p, g, currents.plateByGrid);
     add(p, p, currents.plateByPlate);
-    const im = system.storage.map((farads) => farads * 2 * Math.PI * hertz);
-    const x = new Float64Array(2 * n);
-    x[g] = -currents.gridByEnvelope;
-    x[p] = -currents.plateByEnvelope;
-    solveComplex(re, im, n, x);
-    const read = (row: number): Complex => times(complex(x[row] as number, x[n + row] as number), drive);
+    const x = new Float64Array(2 * size);
+    const peak = tuned.carrierPeakVolts;
+    if (tank) {
+      const real = n;
+      const imaginary = n + 1;
+      add(g, real, currents.gridByEnvelope * peak);
+      add(p, real, currents.plateByEnvelope * peak);
+      const omega = 2 * Math.PI * hertz;
+      im[real * size + real] = omega;
+      im[imaginary * size + imaginary] = omega;
+      add(real, real, -tank.pole.re);
+      add(real, imaginary, tank.pole.im);
+      add(imaginary, real, -tank.pole.im);
+      add(imaginary, imaginary, -tank.pole.re);
+      const { byGrid, byTube } = rest.path.inputSlopes(currents.gridChord, currents.tubeChord);
+      [g, p, real].forEach((column, k) => {
+        const volts = (k === 2 ? peak : 1) * tank.perSiemensSecond;
+        const gridChord = volts * (currents.gridChordBy[k] as number);
+        const tubeChord = volts * (currents.tubeChordBy[k] as number);
+        add(real, column, byGrid.re * gridChord + byTube.re * tubeChord);
+        add(imaginary, column, byGrid.im * gridChord + byTube.im * tubeChord);
+      });
+      x[real] = -tank.pole.re;
+      x[imaginary] = -tank.pole.im;
+    } else {
+      const envelope = this.tunedIdeal
+        ? complex(1)
+        : envelopeTransfer(hertz, circuit.station.carrierHertz, tuned.loadedQ, tuned.detuneHertz);
+      const drive = scaled(envelope, peak);
+      x[g] = -currents.gridByEnvelope * drive.re;
+      x[size + g] = -currents.gridByEnvelope * drive.im;
+      x[p] = -currents.plateByEnvelope * drive.re;
+      x[size + p] = -currents.plateByEnvelope * drive.im;
+    }
+    solveComplex(re, im, size, x);
+    const read = (row: number): Complex => complex(x[row] as number, x[size + row] as number);
     return { output: scaled(read(output.index), output.weight), grid: read(g), plate: read(p) };
   }
 
@@ -73,6 +103,14 @@ export class LinearResponse {
   decibels(hertz: number, reference = magnitude(this.at(REFERENCE_HERTZ).output)): number {
     return ratioDecibels(magnitude(this.at(hertz).output), reference);
   }
+}
+
+/** A square matrix in the upper left corner of a larger one of zeros. */
+function widened(matrix: Float64Array, n: number, size: number): Float64Array {
+  if (size === n) return matrix.slice();
+  const out = new Float64Array(size * size);
+  for (let r = 0; r < n; r++) out.set(matrix.subarray(r * n, (r + 1) * n), r * size);
+  return out;
 }
 
 /** 20·log10 of a ratio, held above −400 dB so that silence stays a number. */

@@ -194,7 +194,11 @@ function solveRest(circuit: DetectorCircuit): RestPoint {
     audio,
     gridVolts: w[0],
     plateVolts: w[1],
-    currents: { ...currents },
+    currents: {
+      ...currents,
+      gridChordBy: [...currents.gridChordBy],
+      tubeChordBy: [...currents.tubeChordBy],
+    },
     tuned: { ...tuned, input },
     phasors,
     residualAmps,

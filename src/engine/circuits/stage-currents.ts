@@ -41,6 +41,9 @@ export interface StageCurrents {
   /** Chord conductances, S (the cathode's with the knee in it). */
   gridChord: number;
   tubeChord: number;
+  /** Slopes of the two chords by grid volts, plate volts and the envelope, the amplitudes following, S/V. */
+  gridChordBy: [number, number, number];
+  tubeChordBy: [number, number, number];
   /** Slopes with the carrier amplitudes held, as the rest record quotes them, S. */
   heldGridByGrid: number;
   heldPlateByGrid: number;
@@ -61,6 +64,8 @@ export function emptyCurrents(): StageCurrents {
     tubeCarrierPeak: 0,
     gridChord: 0,
     tubeChord: 0,
+    gridChordBy: [0, 0, 0],
+    tubeChordBy: [0, 0, 0],
     heldGridByGrid: 0,
     heldPlateByGrid: 0,
     heldPlateByPlate: 0,
@@ -163,6 +168,8 @@ export class Stage {
           : j === 1
             ? (knee * (k[MEAN_BY_X] as number)) / mu + kneeSlope * cathodeMean + laws.extraPlateSiemens
             : 0;
+      out.gridChordBy[j] = pg + (g[CHORD_BY_A] as number) * dag;
+      out.tubeChordBy[j] = pk + knee * (k[CHORD_BY_A] as number) * dau;
       currents.push([di, held + knee * (k[MEAN_BY_A] as number) * dau - di]);
     }
     const gridMean = g[MEAN] as number;

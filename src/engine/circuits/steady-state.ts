@@ -1,9 +1,11 @@
 import { InputError } from '../errors.ts';
-import { complex, over, plus } from './complex.ts';
+import { complex, over } from './complex.ts';
 import { solveComplex, solveReal } from './dense-solve.ts';
 import { LinearResponse } from './response.ts';
 import type { RestPoint } from './rest-point.ts';
 import { emptyCurrents, Stage } from './stage-currents.ts';
+import { agreedEnvelope, atTwiceTheInstants, type PeriodicEnvelope, writeAdmittance } from './tank-tone.ts';
+import type { Tank } from './tuned-circuit.ts';
 
 /** A steady tone through the detector, all its harmonics. */
 export interface SteadyTone {
@@ -65,10 +67,30 @@ const MOST_SAMPLES = 128;
  * Raises InputError `no-steady-state`.
  */
 export function steadyTone(rest: RestPoint, hertz: number, depth: number): SteadyTone {
-  for (let samples = 64; ; samples *= 2) {
-    const { tone, tail } = steadyToneAt(rest, hertz, depth, samples);
+  let start: Start | null = null;
+  for (let samples = 32; ; samples *= 2) {
+    const { tone, tail, reached } = steadyToneAt(rest, hertz, depth, samples, start);
     if (tail < TAIL_SHARE || samples >= MOST_SAMPLES) return tone;
+    start = {
+      w: interleavedTwice(reached.w),
+      envelope: { re: atTwiceTheInstants(reached.envelope.re), im: atTwiceTheInstants(reached.envelope.im) },
+    };
   }
+}
+
+/** Where a search begins: port volts and envelope at every instant. */
+interface Start {
+  readonly w: Float64Array;
+  readonly envelope: PeriodicEnvelope;
+}
+
+/** Port volts, two at every instant, at twice the instants. */
+function interleavedTwice(w: Float64Array): Float64Array {
+  const [grid, plate] = [0, 1].map((port) => atTwiceTheInstants(w.filter((_, k) => k % 2 === port)));
+  return Float64Array.from(
+    { length: 2 * w.length },
+    (_, k) => ((k % 2 === 0 ? grid : plate) as Float64Array)[k >> 1] as number,
+  );
 }
 
 function steadyToneAt(
@@ -76,20 +98,19 @@ function steadyToneAt(
   hertz: number,
   depth: number,
   samples: number,
-): { tone: SteadyTone; tail: number } {
+  start: Start | null,
+): { tone: SteadyTone; tail: number; reached: Start } {
   const highest = samples / 2 - 1;
   const paths = harmonicPaths(rest, hertz, highest);
   const impulse = impulseOhms(paths, samples);
-  const w = startFromLinear(rest, hertz, depth, samples);
-  let found = solveAt(rest, paths, impulse, envelopeOf(rest, hertz, depth, samples), w);
-  if (!(found.residual < 1e-9)) {
-    for (let k = 0; k < samples; k++) {
-      w[2 * k] = rest.gridVolts;
-      w[2 * k + 1] = rest.plateVolts;
-    }
-    for (let part = 1; part <= 16; part++) {
-      found = solveAt(rest, paths, impulse, envelopeOf(rest, hertz, (depth * part) / 16, samples), w);
-    }
+  const w = start?.w ?? startFromLinear(rest, hertz, depth, samples);
+  let envelope = start?.envelope ?? envelopeOf(rest, hertz, depth, samples);
+  let found: Found;
+  if (rest.tuned.tank) {
+    ({ found, envelope } = solveWithTank(rest, rest.tuned.tank, paths, impulse, hertz, depth, w, envelope));
+  } else {
+    const envelopeAt = (share: number): Float64Array => peaksOf(rest, envelopeOf(rest, hertz, depth * share, samples));
+    found = solveRaised(rest, paths, impulse, envelopeAt, w);
   }
   if (!(found.residual < 1e-5)) {
     throw new InputError({
@@ -100,7 +121,67 @@ function steadyToneAt(
     });
   }
   const tone = { ...readHarmonics(paths, w, found.currents, samples), residualVolts: found.residual };
-  return { tone, tail: Math.max(tailShare(w, 0, samples), tailShare(w, 1, samples)) };
+  const tail = Math.max(tailShare(w, 0, samples), tailShare(w, 1, samples));
+  return { tone, tail, reached: { w, envelope } };
+}
+
+/** Solves the ports under an envelope; when that fails at once, by raising the depth from nothing. */
+function solveRaised(
+  rest: RestPoint,
+  paths: HarmonicPaths,
+  impulse: Float64Array,
+  envelopeAt: (share: number) => Float64Array,
+  w: Float64Array,
+): Found {
+  let found = solveAt(rest, paths, impulse, envelopeAt(1), w);
+  if (found.residual < 1e-9) return found;
+  for (let k = 0; k < w.length; k += 2) {
+    w[k] = rest.gridVolts;
+    w[k + 1] = rest.plateVolts;
+  }
+  for (let part = 1; part <= 16; part++) found = solveAt(rest, paths, impulse, envelopeAt(part / 16), w);
+  return found;
+}
+
+/** Ports and coil together: the ports under an envelope, the coil under the admittance they give, until they agree. */
+function solveWithTank(
+  rest: RestPoint,
+  tank: Tank,
+  paths: HarmonicPaths,
+  impulse: Float64Array,
+  hertz: number,
+  depth: number,
+  w: Float64Array,
+  start: PeriodicEnvelope,
+): { found: Found; envelope: PeriodicEnvelope } {
+  const samples = w.length / 2;
+  const y: PeriodicEnvelope = { re: new Float64Array(samples), im: new Float64Array(samples) };
+  const atRest = rest.phasors.input;
+  let found: Found | null = null;
+  const { left, envelope: agreed } = agreedEnvelope(tank, hertz, depth, start, (envelope) => {
+    const peaks = peaksOf(rest, envelope);
+    found = solveRaised(rest, paths, impulse, (share) => shrunk(rest, peaks, share), w);
+    for (let k = 0; k < samples; k++) {
+      const { input } = rest.path.phasors(found.chords[2 * k] as number, found.chords[2 * k + 1] as number);
+      writeAdmittance(y, k, input, atRest);
+    }
+    return y;
+  });
+  const solved = found as Found | null;
+  if (solved === null) throw new Error('no round was taken');
+  return { found: left < 1e-6 ? solved : { ...solved, residual: left }, envelope: agreed };
+}
+
+/** An envelope brought towards the rest peak. */
+function shrunk(rest: RestPoint, peaks: Float64Array, share: number): Float64Array {
+  const middle = rest.tuned.carrierPeakVolts;
+  return share === 1 ? peaks : peaks.map((peak) => middle + share * (peak - middle));
+}
+
+/** Peak carrier of an envelope, V. */
+function peaksOf(rest: RestPoint, envelope: PeriodicEnvelope): Float64Array {
+  const peak = rest.tuned.carrierPeakVolts;
+  return envelope.re.map((re, k) => peak * Math.hypot(re, envelope.im[k] as number));
 }
 
 /** Largest of three harmonics in the upper half of the sampled band, re the fundamental, at one port. */
@@ -122,27 +203,24 @@ function tailShare(w: Float64Array, port: number, samples: number): number {
   return fundamental > 0 ? largest / fundamental : 0;
 }
 
-/** Peak carrier at the tuned circuit over one period for a tone of the given depth, V. */
-function envelopeOf(rest: RestPoint, hertz: number, depth: number, samples: number): Float64Array {
+/** The envelope over one period for a tone through the loaded Q of the rest point, 1 at rest. */
+function envelopeOf(rest: RestPoint, hertz: number, depth: number, samples: number): PeriodicEnvelope {
   const { tuned, circuit } = rest;
   const f0 = circuit.station.carrierHertz;
   const pole = (offset: number): { re: number; im: number } => complex(1, (2 * tuned.loadedQ * offset) / f0);
   const carrier = pole(tuned.detuneHertz);
   const upper = over(carrier, pole(tuned.detuneHertz + hertz));
   const lower = over(carrier, pole(tuned.detuneHertz - hertz));
-  return Float64Array.from({ length: samples }, (_, k) => {
+  const re = new Float64Array(samples);
+  const im = new Float64Array(samples);
+  for (let k = 0; k < samples; k++) {
     const angle = (2 * Math.PI * k) / samples;
     const c = Math.cos(angle);
     const s = Math.sin(angle);
-    const sum = plus(
-      complex(1),
-      complex(
-        (depth / 2) * (upper.re * c - upper.im * s + lower.re * c + lower.im * s),
-        (depth / 2) * (upper.re * s + upper.im * c + lower.im * c - lower.re * s),
-      ),
-    );
-    return tuned.carrierPeakVolts * Math.hypot(sum.re, sum.im);
-  });
+    re[k] = 1 + (depth / 2) * (upper.re * c - upper.im * s + lower.re * c + lower.im * s);
+    im[k] = (depth / 2) * (upper.re * s + upper.im * c + lower.im * c - lower.re * s);
+  }
+  return { re, im };
 }
 
 /** Port volts in time from the linearised response: where Newton starts. */
@@ -180,6 +258,8 @@ function impulseOhms(paths: HarmonicPaths, samples: number): Float64Array {
 interface Found {
   residual: number;
   currents: Float64Array;
+  /** Chords of grid and tube at every instant, S. */
+  chords: Float64Array;
 }
 
 /** Newton on the port volts of one period; `w` moves to the solution. */
@@ -195,6 +275,7 @@ function solveAt(
   const stage = new Stage(rest.laws, rest.path);
   const out = emptyCurrents();
   const currents = new Float64Array(size);
+  const chords = new Float64Array(size);
   const slopes = new Float64Array(2 * size);
   const error = new Float64Array(size);
   const evaluate = (trial: Float64Array): number => {
@@ -202,6 +283,8 @@ function solveAt(
       stage.evaluate(trial[2 * k] as number, trial[2 * k + 1] as number, envelope[k] as number, out);
       currents[2 * k] = out.gridAmps;
       currents[2 * k + 1] = out.plateAmps;
+      chords[2 * k] = out.gridChord;
+      chords[2 * k + 1] = out.tubeChord;
       slopes[4 * k] = out.gridByGrid;
       slopes[4 * k + 1] = out.gridByPlate;
       slopes[4 * k + 2] = out.plateByGrid;
@@ -258,7 +341,7 @@ function solveAt(
     w.set(trial);
     residual = next;
   }
-  return { residual, currents };
+  return { residual, currents, chords };
 }
 
 /** Magnitudes of the harmonics of output (through the network) and ports. */

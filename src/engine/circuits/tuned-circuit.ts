@@ -11,6 +11,31 @@ export interface TunedState {
   readonly detuneHertz: number;
   /** The detector's admittance at the rest point, S. */
   readonly input: Complex;
+  /** How the coil follows an admittance that moves with the signal; null for a stiff source, which does not. */
+  readonly tank: Tank | null;
+}
+
+/**
+ * A coil as built, about the carrier: with E the complex envelope at the detector (1 at rest) and s the station's,
+ *
+ *   dE/dt = p·(E − s) − κ·(Y − Y_rest)·E ,   p = −(ω/2Q)·(1 + j2Qδ/f) ,   κ = ω²·L·tap²/2
+ *
+ * so that the detector damps and pulls its own coil through the modulation cycle, not at the rest point alone.
+ */
+export interface Tank {
+  /** p, 1/s. */
+  readonly pole: Complex;
+  /** κ, 1/(S·s). */
+  readonly perSiemensSecond: number;
+}
+
+function tankOf(tuned: CoilCircuit, hertz: number, loadedQ: number, detuneHertz: number): Tank {
+  const omega = 2 * Math.PI * hertz;
+  const rate = omega / (2 * loadedQ);
+  return {
+    pole: complex(-rate, (-rate * 2 * loadedQ * detuneHertz) / hertz),
+    perSiemensSecond: (omega * omega * tuned.coilHenries * tuned.tap * tuned.tap) / 2,
+  };
 }
 
 interface CoilOnLoad {
@@ -55,7 +80,7 @@ export function loadTunedCircuit(circuit: DetectorCircuit, inputAt: (peak: numbe
   const tuned = circuit.tunedCircuit;
   if (tuned.kind === 'stiff') {
     const input = inputAt(openPeak);
-    return { carrierPeakVolts: openPeak, loadedQ: tuned.loadedQ, detuneHertz: tuned.detuneHertz, input };
+    return { carrierPeakVolts: openPeak, loadedQ: tuned.loadedQ, detuneHertz: tuned.detuneHertz, input, tank: null };
   }
   const hertz = circuit.station.carrierHertz;
   const excess = (peak: number): number => peak - coilWith(tuned, hertz, openPeak, inputAt(peak)).peak;
@@ -82,5 +107,11 @@ export function loadTunedCircuit(circuit: DetectorCircuit, inputAt: (peak: numbe
   }
   const input = inputAt(peak);
   const loaded = coilWith(tuned, hertz, openPeak, input);
-  return { carrierPeakVolts: peak, loadedQ: loaded.loadedQ, detuneHertz: loaded.detuneHertz, input };
+  return {
+    carrierPeakVolts: peak,
+    loadedQ: loaded.loadedQ,
+    detuneHertz: loaded.detuneHertz,
+    input,
+    tank: tankOf(tuned, hertz, loaded.loadedQ, loaded.detuneHertz),
+  };
 }

@@ -1,4 +1,4 @@
-import type { RestPoint } from '../circuits/rest-point.ts';
+import { type RestPoint, restPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
 import { harmonics } from '../measure/harmonics.ts';
 import { runReference } from '../reference/run-reference.ts';
@@ -61,19 +61,21 @@ export function proofLimits(rest: RestPoint): ProofLimits {
 /**
  * One tone through the renderer and through the carrier-cycle reference, same circuit, same start, same window.
  *
+ * @param given       the circuit at rest
  * @param laws        averaged laws as the renderer is given them
  * @param hertz       multiple of 25 Hz, 25 Hz and up
  * @param modulation  depth, above 0 to 1
  * @param onProgress  told the part done, 0 to 1; may throw to stop
  */
 export function proveTone(
-  rest: RestPoint,
+  given: RestPoint,
   laws: StageLaws,
   hertz: number,
   modulation: number,
   onProgress: (done: number) => void = () => {},
 ): ToneProof {
   const periods = hertz / commonDivisor(hertz, PROOF_RATE_HERTZ);
+  const rest = atWholeCycles(given, hertz);
   const stage = referenceLaws(rest);
   const run = runReference(
     rest.circuit,
@@ -99,6 +101,14 @@ export function proveTone(
     limits,
     holds: Math.abs(decibels) <= limits.decibels && Math.abs(secondDifferencePercent) <= allowed,
   };
+}
+
+/** The circuit at the nearest carrier with whole cycles in a period of the tone, as the reference runs it. */
+function atWholeCycles(rest: RestPoint, hertz: number): RestPoint {
+  const { circuit } = rest;
+  const carrierHertz = Math.round(circuit.station.carrierHertz / hertz) * hertz;
+  if (carrierHertz === circuit.station.carrierHertz) return rest;
+  return restPoint({ ...circuit, station: { ...circuit.station, carrierHertz } });
 }
 
 /** Peak volts of harmonics 0 to 10 of the rendered output, measured over the same stretch as the reference. */

@@ -63,6 +63,11 @@ export class DetectorRenderer {
     const { station } = rest.circuit;
     this.envelope = new TunedEnvelope(station.carrierHertz, rest.tuned.loadedQ, rest.tuned.detuneHertz, stepSeconds);
     this.stepper = new StageStepper(rest, laws, stepSeconds);
+    const { tank } = this.stepper;
+    if (tank) {
+      tank.weights.set(this.envelope.sourceWeights);
+      tank.reach = Math.max(...tank.weights.map(Math.abs));
+    }
     this.drives = new Float64Array(fractions.length);
     this.volts = new Float64Array(this.steps);
     this.delaySamples = 2 * filterDelay(clipRateHertz) - 1;
@@ -127,10 +132,17 @@ export class DetectorRenderer {
     for (let n = 0; n < frames; n++) {
       interpolator.process(input, n, drives);
       for (let k = 0; k < steps; k++) {
-        envelope.step(drives, 2 * k);
-        drive[0] = peak * (magnitudes[0] as number);
-        drive[1] = peak * (magnitudes[1] as number);
-        stepper.step();
+        if (stepper.tank) {
+          envelope.open(drives, 2 * k);
+          stepper.tank.ahead.set(envelope.ahead);
+          stepper.step();
+          envelope.finish(stepper.tank.envelope[2] as number, stepper.tank.envelope[3] as number);
+        } else {
+          envelope.step(drives, 2 * k);
+          drive[0] = peak * (magnitudes[0] as number);
+          drive[1] = peak * (magnitudes[1] as number);
+          stepper.step();
+        }
         volts[k] = (state[place] as number) * weight - restVolts;
       }
       decimator.process(volts, output, n);

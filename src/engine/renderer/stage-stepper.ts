@@ -1,6 +1,7 @@
 import type { CarrierPath } from '../circuits/carrier-path.ts';
 import type { RestPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
+import type { Tank } from '../circuits/tuned-circuit.ts';
 import { CHORD, CHORD_BY_A, CHORD_BY_X, MEAN, MEAN_BY_A, MEAN_BY_X } from '../tubes/cycle-average.ts';
 import { PLATE_KNEE_VOLTS } from '../tubes/tube.ts';
 import { forecastWeights, planStep, type StepPlan } from './implicit-rule.ts';
@@ -40,6 +41,56 @@ function moveLimits(rest: RestPoint): MoveLimits {
   const grid = Math.sqrt(2 * SHORTEST_EFOLD_VOLTS * left);
   // plate volts count by 1/mu; half of mu's share keeps a low-mu tube on the safe side
   return { grid, plate: 0.5 * grid * rest.laws.mu, peak: grid, quick: SHORTEST_EFOLD_VOLTS * left };
+}
+
+/** Most rounds of stage and coil in one step; one is the rule, two or three where a strong carrier swings widely. */
+const MOST_ROUNDS = 12;
+/** Change of the envelope, re its rest value, that ends the rounds: far below the error limits of what is heard. */
+export const ENVELOPE_SHARE = 2e-6;
+
+/** What a coil as built needs in a step. */
+export interface TankStep {
+  /** Envelope at both stages without the detector's pull, set by the caller: real, imaginary, 4. */
+  readonly ahead: Float64Array;
+  /** Envelope at both stages as it came out, 4. */
+  readonly envelope: Float64Array;
+  /** The detector's pull −κ·(Y − Y_rest)·E at both stages, 1/s, 4, and its last four points, real then imaginary, 8. */
+  readonly pull: Float64Array;
+  readonly past: Float64Array;
+  /** Weights of the pull for the envelope, s: set by the caller, 8. */
+  readonly weights: Float64Array;
+  readonly perSiemensSecond: number;
+  readonly peak: number;
+  readonly input: { readonly re: number; readonly im: number };
+  /** Largest effect of a pull on the envelope within a step, s. */
+  reach: number;
+}
+
+function tankStep(rest: RestPoint, tank: Tank): TankStep {
+  return {
+    ahead: Float64Array.of(1, 0, 1, 0),
+    envelope: Float64Array.of(1, 0, 1, 0),
+    pull: new Float64Array(4),
+    past: new Float64Array(8),
+    weights: new Float64Array(8),
+    perSiemensSecond: tank.perSiemensSecond,
+    peak: rest.tuned.carrierPeakVolts,
+    input: rest.phasors.input,
+    reach: 0,
+  };
+}
+
+/** One part (0 real, 1 imaginary) of the envelope at a stage: what comes anyway and both pulls by their complex weights. */
+function tankSum(ahead: number, b: Float64Array, o: number, pull: Float64Array, part: 0 | 1): number {
+  const p0 = pull[0] as number;
+  const p1 = pull[1] as number;
+  const p2 = pull[2] as number;
+  const p3 = pull[3] as number;
+  const r1 = b[o] as number;
+  const i1 = b[o + 1] as number;
+  const r2 = b[o + 2] as number;
+  const i2 = b[o + 3] as number;
+  return part === 0 ? ahead + r1 * p0 - i1 * p1 + r2 * p2 - i2 * p3 : ahead + r1 * p1 + i1 * p0 + r2 * p3 + i2 * p2;
 }
 
 /**
@@ -84,6 +135,14 @@ export class StageStepper {
   private readonly g = new Float64Array(6);
   private readonly k = new Float64Array(6);
   private readonly t = new Float64Array(6);
+  /** Coil as built: what it needs in a step; null for a stiff source. */
+  readonly tank: TankStep | null;
+  /** Chords of grid and tube a stage, S: 4; and their slopes by grid volts, peak, then tube's by volts, plate, peak: 5 a stage. */
+  private readonly chord = new Float64Array(4);
+  private readonly chordSlope = new Float64Array(10);
+  private readonly move = new Float64Array(4);
+  private readonly two = new Float64Array(2);
+  private readonly y = new Float64Array(2);
   /** Newton passes taken, steps that did not settle, and steps, since reset. */
   passes = 0;
   unsettled = 0;
@@ -103,6 +162,7 @@ export class StageStepper {
     this.plan = planStep(rest.audio.system, [rest.audio.gridNode, rest.audio.plateNode], stepSeconds);
     this.z = new Float64Array(this.plan.size);
     this.zNext = new Float64Array(this.plan.size);
+    this.tank = rest.tuned.tank === null ? null : tankStep(rest, rest.tuned.tank);
     this.reset();
   }
 
@@ -137,6 +197,7 @@ export class StageStepper {
     this.steps = 0;
     this.quick = 0;
     this.kept.fill(Number.POSITIVE_INFINITY);
+    this.tank?.past.fill(0);
   }
 
   /** Network unknowns at the end of the last step: node volts, then branch amperes. Read only. */
@@ -152,11 +213,9 @@ export class StageStepper {
     return this.z[this.rest.audio.plateNode] as number;
   }
 
-  /** One step under `drive`. */
+  /** One step under `drive`; with a coil as built, under the tank's own envelope, which `tank` then holds. */
   step(): void {
-    const e0 = this.drive[0] as number;
-    const e1 = this.drive[1] as number;
-    const { plan, z, past, weights, w, ag, au, open, i0 } = this;
+    const { plan, z, open } = this;
     const n = plan.size;
     this.steps++;
     for (let r = 0; r < 4; r++) {
@@ -164,12 +223,96 @@ export class StageStepper {
       for (let c = 0; c < n; c++) sum += (plan.portFromState[r * n + c] as number) * (z[c] as number);
       open[r] = sum;
     }
+    if (this.tank) this.solveWithTank(this.tank);
+    else {
+      this.forecast();
+      this.solve();
+    }
+    this.advance();
+  }
+
+  /** The stage under `drive` from the present estimates. */
+  private solve(): void {
+    let settled = this.quickPass();
+    for (let pass = 0; pass < MOST_PASSES && !settled; pass++) {
+      this.passes++;
+      this.linearise(0);
+      this.linearise(1);
+      this.keepSlopes();
+      settled = this.solvePorts(pass);
+    }
+    if (!settled) this.unsettled++;
+  }
+
+  /**
+   * Stage and coil together: the detector's pull on the coil is forecast, the stage solved under the envelope that
+   * follows, and both repeated while the pull that comes out still moves the envelope.
+   */
+  private solveWithTank(tank: TankStep): void {
+    const { ahead, envelope, pull, past, weights: b, perSiemensSecond, peak, input } = tank;
+    const { drive, weights } = this;
+    for (let s = 0; s < 2; s++) {
+      for (let part = 0; part < 2; part++) {
+        let sum = 0;
+        for (let q = 0; q < 4; q++) sum += (weights[4 * s + q] as number) * (past[4 * part + q] as number);
+        pull[2 * s + part] = sum;
+      }
+    }
+    for (let round = 0; round < MOST_ROUNDS; round++) {
+      for (let s = 0; s < 2; s++) {
+        const o = 4 * s;
+        const re = tankSum(ahead[2 * s] as number, b, o, pull, 0);
+        const im = tankSum(ahead[2 * s + 1] as number, b, o, pull, 1);
+        const before = drive[s] as number;
+        envelope[2 * s] = re;
+        envelope[2 * s + 1] = im;
+        drive[s] = peak * Math.sqrt(re * re + im * im);
+        if (round > 0 && before > 0) {
+          const share = (drive[s] as number) / before;
+          this.ag[s] = (this.ag[s] as number) * share;
+          this.au[s] = (this.au[s] as number) * share;
+        }
+      }
+      if (round === 0) this.forecast();
+      this.solve();
+      let moved = 0;
+      for (let s = 0; s < 2; s++) {
+        this.two[0] = this.chord[2 * s] as number;
+        this.two[1] = this.chord[2 * s + 1] as number;
+        this.path.inputAt(this.two, this.y);
+        const yRe = perSiemensSecond * ((this.y[0] as number) - input.re);
+        const yIm = perSiemensSecond * ((this.y[1] as number) - input.im);
+        const re = envelope[2 * s] as number;
+        const im = envelope[2 * s + 1] as number;
+        const nRe = yIm * im - yRe * re;
+        const nIm = -yRe * im - yIm * re;
+        moved += Math.abs(nRe - (pull[2 * s] as number)) + Math.abs(nIm - (pull[2 * s + 1] as number));
+        pull[2 * s] = nRe;
+        pull[2 * s + 1] = nIm;
+      }
+      if (moved * tank.reach < ENVELOPE_SHARE) break;
+    }
+    // the step ends with the pull as it came out
+    envelope[2] = tankSum(ahead[2] as number, b, 4, pull, 0);
+    envelope[3] = tankSum(ahead[3] as number, b, 4, pull, 1);
+    for (let part = 0; part < 2; part++) {
+      const o = 4 * part;
+      past[o + 3] = past[o + 1] as number;
+      past[o + 2] = past[o] as number;
+      past[o + 1] = pull[part] as number;
+      past[o] = pull[2 + part] as number;
+    }
+  }
+
+  /** Carries the last four stage points on to the next two. */
+  private forecast(): void {
+    const { past, weights, w, ag, au } = this;
     for (let s = 0; s < 2; s++) {
       const w0 = weights[4 * s] as number;
       const w1 = weights[4 * s + 1] as number;
       const w2 = weights[4 * s + 2] as number;
       const w3 = weights[4 * s + 3] as number;
-      const e = s === 0 ? e0 : e1;
+      const e = this.drive[s] as number;
       w[2 * s] =
         w0 * (past[0] as number) + w1 * (past[1] as number) + w2 * (past[2] as number) + w3 * (past[3] as number);
       w[2 * s + 1] =
@@ -181,16 +324,14 @@ export class StageStepper {
       ag[s] = tg > 0 ? tg * e : (past[8] as number) * e;
       au[s] = tu > 0 ? tu * e : (past[12] as number) * e;
     }
-    let settled = this.quickPass();
-    for (let pass = 0; pass < MOST_PASSES && !settled; pass++) {
-      this.passes++;
-      this.linearise(0);
-      this.linearise(1);
-      this.keepSlopes();
-      settled = this.solvePorts(pass);
-    }
-    if (!settled) this.unsettled++;
-    const zNext = this.zNext;
+  }
+
+  /** The network's next state from the stage currents; the stage points become the past. */
+  private advance(): void {
+    const { plan, z, past, w, ag, au, i0, zNext } = this;
+    const e0 = this.drive[0] as number;
+    const e1 = this.drive[1] as number;
+    const n = plan.size;
     for (let r = 0; r < n; r++) {
       let sum = plan.stateConstant[r] as number;
       for (let c = 0; c < n; c++) sum += (plan.stateFromState[r * n + c] as number) * (z[c] as number);
@@ -225,7 +366,7 @@ export class StageStepper {
    * slopes can have left is far below what is heard; else the estimate stays as forecast and the full passes follow.
    */
   private quickPass(): boolean {
-    const { laws, g, k, t, w, ag, au, open, i0, iQuick, slope, peak, blend, inverse, kept, at, path } = this;
+    const { laws, g, k, t, w, ag, au, open, i0, iQuick, slope, peak, blend, inverse, kept, at, path, chord } = this;
     const { grid, cathode, phi, mu } = laws;
     const perMu = 1 / mu;
     const e0 = this.drive[0] as number;
@@ -252,6 +393,8 @@ export class StageStepper {
       cathode.levelsAt(at, k);
       at[0] = g[CHORD] as number;
       at[1] = knee * (k[CHORD] as number);
+      chord[2 * s] = at[0];
+      chord[2 * s + 1] = at[1];
       path.levelsAt(at, t);
       const fg = (t[0] as number) * e - gridPeak;
       const fu = (t[1] as number) * e - tubePeak;
@@ -346,8 +489,34 @@ export class StageStepper {
     i0[1] = c1 + (slope[2] as number) * d0 + (slope[3] as number) * d1;
     i0[2] = c2 + (slope[4] as number) * d2 + (slope[5] as number) * d3;
     i0[3] = c3 + (slope[6] as number) * d2 + (slope[7] as number) * d3;
+    const { move } = this;
+    move[0] = d0;
+    move[1] = d1;
+    move[2] = dg0;
+    move[3] = du0;
+    this.moveChords(0);
+    move[0] = d2;
+    move[1] = d3;
+    move[2] = dg1;
+    move[3] = du1;
+    this.moveChords(1);
     this.quick++;
     return true;
+  }
+
+  /** Takes the chords of a stage along with its last move: grid volts, plate volts, grid peak, tube peak in `move`. */
+  private moveChords(s: number): void {
+    const { chord, chordSlope, move } = this;
+    const o = 5 * s;
+    chord[2 * s] =
+      (chord[2 * s] as number) +
+      (chordSlope[o] as number) * (move[0] as number) +
+      (chordSlope[o + 1] as number) * (move[2] as number);
+    chord[2 * s + 1] =
+      (chord[2 * s + 1] as number) +
+      (chordSlope[o + 2] as number) * (move[0] as number) +
+      (chordSlope[o + 3] as number) * (move[1] as number) +
+      (chordSlope[o + 4] as number) * (move[3] as number);
   }
 
   /** Keeps the slopes of a full pass, and the inverse of its port equations, for the quick passes that follow. */
@@ -405,6 +574,14 @@ export class StageStepper {
     const cgx = g[CHORD_BY_X] as number;
     const ckx = knee * (k[CHORD_BY_X] as number);
     const ckp = ckx / mu + kneeSlope * chordK;
+    const chords = this.chordSlope;
+    this.chord[2 * s] = g[CHORD] as number;
+    this.chord[2 * s + 1] = knee * chordK;
+    chords[5 * s] = cgx;
+    chords[5 * s + 1] = cga;
+    chords[5 * s + 2] = ckx;
+    chords[5 * s + 3] = ckp;
+    chords[5 * s + 4] = cka;
     const tgg = rg * (t[2] as number);
     const tgk = rg * (t[3] as number);
     const tug = ru * (t[4] as number);
@@ -457,7 +634,7 @@ export class StageStepper {
 
   /** Solves the four port volts with the stage currents taken as straight; moves the estimates. True when settled. */
   private solvePorts(pass: number): boolean {
-    const { plan, w, ag, au, open, i0, slope, peak, m } = this;
+    const { plan, w, ag, au, open, i0, slope, peak, m, move } = this;
     const zz = plan.portFromCurrent;
     // (1 + Z·J)·d = open − Z·i0 − w, 4 × 5 augmented in m
     for (let r = 0; r < 4; r++) {
@@ -528,6 +705,11 @@ export class StageStepper {
       au[s] = Math.max(b + share * du, 0.2 * b);
       i0[2 * s] = (i0[2 * s] as number) + (slope[4 * s] as number) * dv + (slope[4 * s + 1] as number) * dp;
       i0[2 * s + 1] = (i0[2 * s + 1] as number) + (slope[4 * s + 2] as number) * dv + (slope[4 * s + 3] as number) * dp;
+      move[0] = share * dv;
+      move[1] = share * dp;
+      move[2] = share * dg;
+      move[3] = share * du;
+      this.moveChords(s);
       largest = Math.max(largest, Math.abs(dg), Math.abs(du));
     }
     return whole && near && largest < this.limits.peak;

@@ -10,6 +10,13 @@ export class TunedEnvelope {
   readonly tuned: boolean;
   /** E (real, imaginary) and the last envelope. */
   private readonly state = Float64Array.of(1, 0, 1);
+  /**
+   * Weights of a source n, dE/dt = … + n, straight through its values at 1/3 and 1: for E at 1/3 from both, then at 1, each
+   * as real and imaginary, 8; seconds.
+   */
+  readonly sourceWeights = new Float64Array(8);
+  /** E at a third of the last step and at its end, real and imaginary, before any source. */
+  readonly ahead = Float64Array.of(1, 0, 1, 0);
   /** |E| at a third of the last step and at its end. */
   readonly magnitudes = new Float64Array([1, 1]);
 
@@ -30,6 +37,7 @@ export class TunedEnvelope {
         this.weights[8 * row + k] = re;
         this.weights[8 * row + 4 + k] = im;
       });
+      this.sourceWeights.set(lineWeights(c * p * stepSeconds, c * p * stepSeconds * slant, c, stepSeconds), 4 * row);
     });
   }
 
@@ -38,6 +46,7 @@ export class TunedEnvelope {
     this.state[1] = 0;
     this.state[2] = 1;
     this.magnitudes.fill(1);
+    this.ahead.set([1, 0, 1, 0]);
   }
 
   /** Takes the envelope at a third of the step and at its end, re the carrier: 1 + `modulation[from]` and the next. */
@@ -67,6 +76,30 @@ export class TunedEnvelope {
       }
     }
     state[2] = end;
+  }
+
+  /** As `step`, but the step is left open for a source: E without it goes to `ahead`, and `finish` ends the step. */
+  open(modulation: Float64Array, from: number): void {
+    const third = 1 + (modulation[from] as number);
+    const end = 1 + (modulation[from + 1] as number);
+    const { weights: w, state, ahead } = this;
+    const re = state[0] as number;
+    const im = state[1] as number;
+    const last = state[2] as number;
+    for (let row = 0; row < 2; row++) {
+      const o = 8 * row;
+      const drive = (w[o + 1] as number) * last + (w[o + 2] as number) * third + (w[o + 3] as number) * end;
+      const driveIm = (w[o + 5] as number) * last + (w[o + 6] as number) * third + (w[o + 7] as number) * end;
+      ahead[2 * row] = (w[o] as number) * re - (w[o + 4] as number) * im + drive;
+      ahead[2 * row + 1] = (w[o] as number) * im + (w[o + 4] as number) * re + driveIm;
+    }
+    state[2] = end;
+  }
+
+  /** Ends an open step with E as it came out under the source. */
+  finish(re: number, im: number): void {
+    this.state[0] = re;
+    this.state[1] = im;
   }
 }
 
@@ -117,5 +150,18 @@ function stepWeights(re: number, im: number, c: number): Pair[] {
     mix(1, -4, 3),
     mix(0, 4.5, -4.5),
     mix(0, -0.5, 1.5),
+  ];
+}
+
+/** Weights for E at fraction c of the step of a source that is the straight line through its values at 1/3 and 1. */
+function lineWeights(re: number, im: number, c: number, stepSeconds: number): number[] {
+  const [phi1, phi2] = phiFunctions(re, im);
+  const constant = phi1.map((value) => value * c * stepSeconds) as Pair;
+  const linear = phi2.map((value) => value * c * c * stepSeconds) as Pair;
+  return [
+    1.5 * (constant[0] - linear[0]),
+    1.5 * (constant[1] - linear[1]),
+    1.5 * linear[0] - 0.5 * constant[0],
+    1.5 * linear[1] - 0.5 * constant[1],
   ];
 }

@@ -1,7 +1,7 @@
 import type { RestPoint } from '../../circuits/rest-point.ts';
 import type { CycleTable } from '../../tubes/cycle-table.ts';
 import type { FilterBank } from '../resampling.ts';
-import type { StageStepper } from '../stage-stepper.ts';
+import { ENVELOPE_SHARE, type StageStepper } from '../stage-stepper.ts';
 import { bytesFromBase64 } from './base64.ts';
 import { KERNEL_BASE64 } from './code.ts';
 import * as L from './layout.ts';
@@ -117,6 +117,12 @@ export class Kernel {
     m.set(plan.portConstant, L.PORT_CONSTANT);
     m.set(plan.portFromCurrent, L.PORT_FROM_CURRENT);
     m.set(envelopeWeights, L.ENVELOPE);
+    const { tank } = stepper;
+    if (tank) {
+      const { input, perSiemensSecond, reach } = tank;
+      m.set([perSiemensSecond, input.re, input.im, reach, ENVELOPE_SHARE, 1], L.TANK);
+      m.set(tank.weights, L.TANK_WEIGHTS);
+    }
     m.set(plan.stateConstant, L.CONSTANT);
     m.set(plan.stateFromState, L.FROM_STATE);
     m.set(plan.stateFromCurrent, L.FROM_CURRENT);
@@ -170,6 +176,7 @@ export class Kernel {
     m.set(past, L.PAST);
     m.fill(Number.POSITIVE_INFINITY, L.KEPT, L.KEPT + 4);
     m.fill(0, L.COUNTS, L.COUNTS + 4);
+    m.fill(0, L.PULL_PAST, L.PULL_PAST + 8);
     m[L.ENVELOPE_STATE] = 1;
     m[L.ENVELOPE_STATE + 1] = 0;
     m[L.ENVELOPE_STATE + 2] = 1;

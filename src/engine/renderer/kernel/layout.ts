@@ -8,7 +8,7 @@ export const MOST_UNKNOWNS = 24;
 /** Largest block, clip samples. */
 export const BLOCK = 2048;
 
-// tube: 1/mu, phi, carrier's rest peak, output rest volts, output weight, and the carrier path's ten numbers
+// tube: 1/mu, phi, carrier's rest peak, output rest volts, output weight, and the carrier path's twelve numbers
 export const PER_MU = 1;
 export const PHI = 2;
 export const REST_PEAK = 3;
@@ -54,8 +54,18 @@ export const RESULT = 228;
 export const AUGMENTED = 240;
 /** Counts: passes, unsettled, steps, quick. */
 export const COUNTS = 262;
+// coil as built: chords 4, their slopes 5 a stage; κ, rest admittance 2, reach and share of the envelope, whether there is one;
+// weights of the pull 8, envelope without it 4, pull 4, its past 8, envelope with it 4
+export const CHORD = 272;
+export const CHORD_SLOPE = 276;
+export const TANK = 286;
+export const TANK_WEIGHTS = 292;
+export const TANK_AHEAD = 300;
+export const TANK_ENVELOPE = 304;
+export const PULL = 308;
+export const PULL_PAST = 312;
 // network: state, next state, constants, then n × n, n × 4 and 4 × n matrices
-export const STATE = 272;
+export const STATE = 320;
 export const NEXT = STATE + MOST_UNKNOWNS;
 export const CONSTANT = NEXT + MOST_UNKNOWNS;
 export const FROM_STATE = CONSTANT + MOST_UNKNOWNS;

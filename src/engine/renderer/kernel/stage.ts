@@ -102,6 +102,15 @@ let kneeSlope: f64 = 0;
   }
 }
 
+// takes the chords of stage st along with its last move
+// @ts-expect-error: decorator
+@inline function moveChords(st: i32, dv: f64, dp: f64, dg: f64, du: f64): void {
+  const o = L.CHORD_SLOPE + 5 * st;
+  const c = L.CHORD + 2 * st;
+  wr(c, rd(c) + rd(o) * dv + rd(o + 1) * dg);
+  wr(c + 1, rd(c + 1) + rd(o + 2) * dv + rd(o + 3) * dp + rd(o + 4) * du);
+}
+
 // one pass with kept slopes; true when it settled
 function quickPass(): bool {
   const perMu = rd(L.PER_MU);
@@ -122,6 +131,8 @@ function quickPass(): bool {
     const g = f64x2.extract_lane(fromGrid, 1);
     const km = knee * f64x2.extract_lane(fromTube, 0);
     const k = knee * f64x2.extract_lane(fromTube, 1);
+    wr(L.CHORD + 2 * st, g);
+    wr(L.CHORD + 1 + 2 * st, k);
     const gpRe = rd(L.PATH + 3), gpIm = rd(L.PATH + 4);
     const alphaRe = rd(L.PATH + 1) + g, alphaIm = rd(L.PATH + 2);
     const betaRe = rd(L.PATH + 5) + k * perMu, betaIm = rd(L.PATH + 6);
@@ -173,6 +184,8 @@ function quickPass(): bool {
   wr(L.CURRENT + 1, c1 + rd(S + 2) * d0 + rd(S + 3) * d1);
   wr(L.CURRENT + 2, c2 + rd(S + 4) * d2 + rd(S + 5) * d3);
   wr(L.CURRENT + 3, c3 + rd(S + 6) * d2 + rd(S + 7) * d3);
+  moveChords(0, d0, d1, dg0, du0);
+  moveChords(1, d2, d3, dg1, du1);
   wr(L.COUNTS + 3, rd(L.COUNTS + 3) + 1);
   return true;
 }
@@ -208,6 +221,10 @@ function linearise(st: i32): void {
   const byG = ((betaRe - gpRe) * detRe + (betaIm - gpIm) * detIm) * det2;
   const byK = ((alphaRe * perMu + gpRe) * detRe + (alphaIm * perMu + gpIm) * detIm) * det2;
   const ckp = ckx * perMu + kneeSlope * chordK;
+  wr(L.CHORD + 2 * st, g);
+  wr(L.CHORD + 1 + 2 * st, k);
+  const cs = L.CHORD_SLOPE + 5 * st;
+  wr(cs, cgx); wr(cs + 1, cga); wr(cs + 2, ckx); wr(cs + 3, ckp); wr(cs + 4, cka);
   const tgg = -rg * byG;
   const tgk = rg * ((betaRe * perMu) / beta2 - byK);
   const tug = ru * ((etaRe * perMu) / eta2 - byG);
@@ -324,25 +341,19 @@ function fullPass(pass: i32): bool {
     const q = L.SLOPE + 4 * st;
     wr(L.CURRENT + 2 * st, rd(L.CURRENT + 2 * st) + rd(q) * dv + rd(q + 1) * dp);
     wr(L.CURRENT + 1 + 2 * st, rd(L.CURRENT + 1 + 2 * st) + rd(q + 2) * dv + rd(q + 3) * dp);
+    moveChords(st, share * dv, share * dp, share * dg, share * du);
     largest = max(largest, max(abs(dg), abs(du)));
   }
   return whole && near && largest < rd(L.PEAK_MOVE);
 }
 
-function step(n: i32): void {
-  const e0 = rd(L.DRIVE), e1 = rd(L.DRIVE + 1);
-  wr(L.COUNTS + 2, rd(L.COUNTS + 2) + 1);
-  for (let r = 0; r < 4; r++) {
-    let sum = rd(L.PORT_CONSTANT + r);
-    const o = L.PORT_FROM_STATE + r * n;
-    for (let c = 0; c < n; c++) sum += rd(o + c) * rd(L.STATE + c);
-    wr(L.OPEN + r, sum);
-  }
+// carries the last four stage points on to the next two
+function forecast(): void {
   const P = L.PAST;
   for (let st = 0; st < 2; st++) {
     const f = L.FORECAST + 4 * st;
     const w0 = rd(f), w1 = rd(f + 1), w2 = rd(f + 2), w3 = rd(f + 3);
-    const e = st == 0 ? e0 : e1;
+    const e = rd(L.DRIVE + st);
     wr(L.W + 2 * st, w0 * rd(P) + w1 * rd(P + 1) + w2 * rd(P + 2) + w3 * rd(P + 3));
     wr(L.W + 1 + 2 * st, w0 * rd(P + 4) + w1 * rd(P + 5) + w2 * rd(P + 6) + w3 * rd(P + 7));
     const tg = w0 * rd(P + 8) + w1 * rd(P + 9) + w2 * rd(P + 10) + w3 * rd(P + 11);
@@ -350,12 +361,109 @@ function step(n: i32): void {
     wr(L.AG + st, (tg > 0 ? tg : rd(P + 8)) * e);
     wr(L.AU + st, (tu > 0 ? tu : rd(P + 12)) * e);
   }
+}
+
+function solve(): void {
   let settled = quickPass();
   for (let pass = 0; pass < 60 && !settled; pass++) {
     wr(L.COUNTS, rd(L.COUNTS) + 1);
     settled = fullPass(pass);
   }
   if (!settled) wr(L.COUNTS + 1, rd(L.COUNTS + 1) + 1);
+}
+
+// envelope at stage st under the pull, to TANK_ENVELOPE
+// @ts-expect-error: decorator
+@inline function underPull(st: i32): void {
+  const o = L.TANK_WEIGHTS + 4 * st;
+  const r1 = rd(o), i1 = rd(o + 1), r2 = rd(o + 2), i2 = rd(o + 3);
+  const p0 = rd(L.PULL), p1 = rd(L.PULL + 1), p2 = rd(L.PULL + 2), p3 = rd(L.PULL + 3);
+  const a = L.TANK_AHEAD + 2 * st;
+  const e = L.TANK_ENVELOPE + 2 * st;
+  wr(e, rd(a) + r1 * p0 - i1 * p1 + r2 * p2 - i2 * p3);
+  wr(e + 1, rd(a + 1) + r1 * p1 + i1 * p0 + r2 * p3 + i2 * p2);
+}
+
+// stage and coil together; the reasons stand in the plain stepper
+function solveWithTank(): void {
+  const P = L.PULL_PAST;
+  for (let st = 0; st < 2; st++) {
+    const f = L.FORECAST + 4 * st;
+    for (let part = 0; part < 2; part++) {
+      const o = P + 4 * part;
+      wr(L.PULL + 2 * st + part, rd(f) * rd(o) + rd(f + 1) * rd(o + 1) + rd(f + 2) * rd(o + 2) + rd(f + 3) * rd(o + 3));
+    }
+  }
+  const peak = rd(L.REST_PEAK), kappa = rd(L.TANK), restRe = rd(L.TANK + 1), restIm = rd(L.TANK + 2);
+  const most = rd(L.TANK + 4) / rd(L.TANK + 3);
+  for (let round = 0; round < 12; round++) {
+    for (let st = 0; st < 2; st++) {
+      const before = rd(L.DRIVE + st);
+      underPull(st);
+      const re = rd(L.TANK_ENVELOPE + 2 * st), im = rd(L.TANK_ENVELOPE + 1 + 2 * st);
+      const now = peak * sqrt(re * re + im * im);
+      wr(L.DRIVE + st, now);
+      if (round > 0 && before > 0) {
+        const share = now / before;
+        wr(L.AG + st, rd(L.AG + st) * share);
+        wr(L.AU + st, rd(L.AU + st) * share);
+      }
+    }
+    if (round == 0) forecast();
+    solve();
+    let moved: f64 = 0;
+    for (let st = 0; st < 2; st++) {
+      const g = rd(L.CHORD + 2 * st), k = rd(L.CHORD + 1 + 2 * st);
+      const perMu = rd(L.PATH);
+      const gpRe = rd(L.PATH + 3), gpIm = rd(L.PATH + 4);
+      const alphaRe = rd(L.PATH + 1) + g, alphaIm = rd(L.PATH + 2);
+      const betaRe = rd(L.PATH + 5) + k * perMu, betaIm = rd(L.PATH + 6);
+      const gammaRe = k - g - gpRe;
+      const detRe = alphaRe * betaRe - alphaIm * betaIm + gpRe * gammaRe + gpIm * gpIm;
+      const detIm = alphaRe * betaIm + alphaIm * betaRe - gpRe * gpIm + gpIm * gammaRe;
+      const sRe = rd(L.PATH + 10), sIm = rd(L.PATH + 11);
+      const bRe = sRe * betaRe - sIm * betaIm, bIm = sRe * betaIm + sIm * betaRe;
+      const scale = 1.0 / (detRe * detRe + detIm * detIm);
+      const leftRe = 1.0 - (bRe * detRe + bIm * detIm) * scale;
+      const leftIm = -(bIm * detRe - bRe * detIm) * scale;
+      const yRe = kappa * (sRe * leftRe - sIm * leftIm - restRe);
+      const yIm = kappa * (sRe * leftIm + sIm * leftRe - restIm);
+      const re = rd(L.TANK_ENVELOPE + 2 * st), im = rd(L.TANK_ENVELOPE + 1 + 2 * st);
+      const nRe = yIm * im - yRe * re;
+      const nIm = -yRe * im - yIm * re;
+      moved += abs(nRe - rd(L.PULL + 2 * st)) + abs(nIm - rd(L.PULL + 1 + 2 * st));
+      wr(L.PULL + 2 * st, nRe);
+      wr(L.PULL + 1 + 2 * st, nIm);
+    }
+    if (moved < most) break;
+  }
+  underPull(1);
+  for (let part = 0; part < 2; part++) {
+    const o = P + 4 * part;
+    wr(o + 3, rd(o + 1));
+    wr(o + 2, rd(o));
+    wr(o + 1, rd(L.PULL + part));
+    wr(o, rd(L.PULL + 2 + part));
+  }
+  wr(L.ENVELOPE_STATE, rd(L.TANK_ENVELOPE + 2));
+  wr(L.ENVELOPE_STATE + 1, rd(L.TANK_ENVELOPE + 3));
+}
+
+function step(n: i32, tank: bool): void {
+  wr(L.COUNTS + 2, rd(L.COUNTS + 2) + 1);
+  for (let r = 0; r < 4; r++) {
+    let sum = rd(L.PORT_CONSTANT + r);
+    const o = L.PORT_FROM_STATE + r * n;
+    for (let c = 0; c < n; c++) sum += rd(o + c) * rd(L.STATE + c);
+    wr(L.OPEN + r, sum);
+  }
+  if (tank) solveWithTank();
+  else {
+    forecast();
+    solve();
+  }
+  const e0 = rd(L.DRIVE), e1 = rd(L.DRIVE + 1);
+  const P = L.PAST;
   const i0 = rd(L.CURRENT), i1 = rd(L.CURRENT + 1), i2 = rd(L.CURRENT + 2), i3 = rd(L.CURRENT + 3);
   for (let r = 0; r < n; r++) {
     let sum = rd(L.CONSTANT + r);
@@ -408,6 +516,19 @@ function envelope(third: f64, end: f64, tuned: bool): void {
   wr(L.ENVELOPE_STATE + 2, end);
 }
 
+// the same, left open for the detector's pull
+function envelopeAhead(third: f64, end: f64): void {
+  const re = rd(L.ENVELOPE_STATE), im = rd(L.ENVELOPE_STATE + 1), last = rd(L.ENVELOPE_STATE + 2);
+  for (let row = 0; row < 2; row++) {
+    const o = L.ENVELOPE + 8 * row;
+    const drive = rd(o + 1) * last + rd(o + 2) * third + rd(o + 3) * end;
+    const driveIm = rd(o + 5) * last + rd(o + 6) * third + rd(o + 7) * end;
+    wr(L.TANK_AHEAD + 2 * row, rd(o) * re - rd(o + 4) * im + drive);
+    wr(L.TANK_AHEAD + 2 * row + 1, rd(o) * im + rd(o + 4) * re + driveIm);
+  }
+  wr(L.ENVELOPE_STATE + 2, end);
+}
+
 // sum of products of two runs of `taps` (even) f64
 // @ts-expect-error: decorator
 @inline function product(a: i32, b: i32, taps: i32): f64 {
@@ -443,6 +564,7 @@ export function block(
   let fallAt = riseAt;
   let instantAt = at >> 16;
   const weight = rd(L.WEIGHT), restVolts = rd(L.REST_OUTPUT);
+  const tank = rd(L.TANK + 5) > 0;
   for (let f = 0; f < frames; f++) {
     const sample = rd(L.INPUT + f);
     store<f64>(rise + (riseAt << 3), sample);
@@ -454,8 +576,9 @@ export function block(
       const third = product(phases + ((2 * k * taps) << 3), window, taps);
       // the last instant of a sample falls on the clip's own: every other tap is zero
       const end = last ? load<f64>(window + (half << 3)) : product(phases + (((2 * k + 1) * taps) << 3), window, taps);
-      envelope(1.0 + third, 1.0 + end, tuned);
-      step(n);
+      if (tank) envelopeAhead(1.0 + third, 1.0 + end);
+      else envelope(1.0 + third, 1.0 + end, tuned);
+      step(n, tank);
       const volts = rd(L.STATE + output) * weight - restVolts;
       const lane = fall + k * long;
       if (last) {
