@@ -195,6 +195,18 @@ describe('flags', () => {
   });
 });
 
+describe('a circuit that cannot be', () => {
+  it('is told with the name of its variant', async () => {
+    // an inductive plate drives the grid through the grid-plate capacitance: a tuned-grid, tuned-plate oscillator
+    const load = 'plate.load: choke 1 mH, plate.load.self capacitance: 0, plate.bypass: 0';
+    const wrong = `${load}, output.load capacitance: 0, tuned circuit.unloaded Q: 300`;
+    const list = saved(folder, 'wrong.yaml', `variants:\n  good: {}\n  bad one: { ${wrong} }\n`);
+    await refused(['respond', list], '"bad one"', 'oscillate');
+    await refused(['render', clip, list, ...out()], '"bad one"', 'oscillate');
+    rmSync(list);
+  });
+});
+
 describe('a place for results that is none', () => {
   it.each([
     ['through a file', () => join(clip, 'out'), 'through a file'],
