@@ -3,8 +3,11 @@ import { curveDecibels, type HearingCurve } from './hearing-curves.ts';
 
 /** Frequency to which curves are referred, Hz: what is heard through keeps the level there. */
 const REFERENCE_HERTZ = 400;
-/** Longest ringing that is kept, s: the sharpest curve's resonance has died away by 60 dB. */
-const RINGING_SECONDS = 0.04;
+/**
+ * Ringing that is kept, s. The sharpest known curve has died away by 60 dB after a quarter of it; the rest is for curves
+ * by points, whose bends ring longer: one of 20 dB in an octave and a half at 100 Hz is then met within 0.06 dB.
+ */
+const RINGING_SECONDS = 0.16;
 
 /**
  * A clip heard through a curve, minimum phase, level kept at 400 Hz: a new array of the same length, in time with it.
