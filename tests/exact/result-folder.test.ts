@@ -5,6 +5,9 @@ import { checkFolder, folderName, writeResults } from '../../src/cli/result-fold
 import { InputError } from '../../src/engine/errors.ts';
 import { freshFolder, listing, ran, saved, shortClip } from './command-run.ts';
 
+/** A stiff source, whose analysis is the quickest. */
+const STIFF = 'tuned circuit: { loaded Q: 40 }\n';
+
 let folder = '';
 let place = '';
 beforeEach(() => {
@@ -194,7 +197,7 @@ describe('the folder named after what is read', () => {
   });
 
   it('lies under out, in the folder one works in', async () => {
-    const [clip, list] = [saved(folder, 'clip.wav', shortClip(0.02)), saved(folder, 'my set.yaml', '')];
+    const [clip, list] = [saved(folder, 'clip.wav', shortClip(0.02)), saved(folder, 'my set.yaml', STIFF)];
     const here = process.cwd();
     process.chdir(folder);
     try {
@@ -208,7 +211,7 @@ describe('the folder named after what is read', () => {
 });
 
 describe('a stop', () => {
-  const LIST = 'variants:\n  a: {}\n  b: { plate.bypass: 1n }\n';
+  const LIST = `${STIFF}variants:\n  a: {}\n  b: { plate.bypass: 1n }\n`;
 
   it('at any moment leaves the earlier set whole, nothing else, and status 130', async () => {
     const clip = saved(folder, 'clip.wav', shortClip(0.3));
@@ -249,7 +252,7 @@ describe('names that some file system takes ill', () => {
     const names = ['CON', '../x', 'mix: a', 'MIX? A', 'result', '日'.repeat(80), `${'日'.repeat(79)}x`];
     const list = names.map((name, n) => `  ${JSON.stringify(name)}: { station.level: ${n + 1} mV }\n`).join('');
     const clip = saved(folder, 'clip.wav', shortClip(0.02));
-    const set = saved(folder, 'set.yaml', `variants:\n${list}`);
+    const set = saved(folder, 'set.yaml', `${STIFF}variants:\n${list}`);
     expect((await ran(['render', clip, set, '--out', place])).status).toBe(0);
     const result = JSON.parse(readFileSync(join(place, 'result.json'), 'utf8')) as {
       variants: { name: string; sound: { file: string } }[];
