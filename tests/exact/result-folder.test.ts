@@ -1,9 +1,23 @@
 import { existsSync, mkdirSync, readdirSync, readFileSync, rmSync, symlinkSync, utimesSync } from 'node:fs';
 import { join } from 'node:path';
-import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import { checkFolder, folderName, writeResults } from '../../src/cli/result-folder.ts';
 import { InputError } from '../../src/engine/errors.ts';
 import { freshFolder, listing, ran, saved, shortClip } from './command-run.ts';
+import { plainWav } from './wav-crafting.ts';
+
+/** A stand-in for a file system that refuses one renaming, as a folder in use does on Windows; 0: none. */
+const renaming = vi.hoisted(() => ({ refused: 0, done: 0 }));
+vi.mock('node:fs/promises', async (original) => {
+  const real = await original<typeof import('node:fs/promises')>();
+  return {
+    ...real,
+    rename: async (from: string, to: string): Promise<void> => {
+      if (++renaming.done === renaming.refused) throw Object.assign(new Error('in use'), { code: 'EBUSY' });
+      return real.rename(from, to);
+    },
+  };
+});
 
 /** A stiff source, whose analysis is the quickest. */
 const STIFF = 'tuned circuit: { loaded Q: 40 }\n';
@@ -11,6 +25,7 @@ const STIFF = 'tuned circuit: { loaded Q: 40 }\n';
 let folder = '';
 let place = '';
 beforeEach(() => {
+  Object.assign(renaming, { refused: 0, done: 0 });
   folder = freshFolder();
   place = join(folder, 'out', 'set');
 });
@@ -143,6 +158,31 @@ describe('a failure in the middle', () => {
     expect(listing(folder)).toEqual(['out/', 'out/set/']);
   });
 
+  it.each([
+    ['of the old set away', 1],
+    ['of the new set into its place', 2],
+  ])('a renaming %s that is refused leaves the old set whole and nothing else', async (_, nth) => {
+    await writeResults(place, OLD);
+    const before = listing(folder);
+    Object.assign(renaming, { refused: nth, done: 0 });
+    expect(await codeOf(writeResults(place, NEW))).toBe('out-ebusy');
+    expect(listing(folder)).toEqual(before);
+  });
+
+  it('a renaming into an empty folder that is refused leaves it empty', async () => {
+    mkdirSync(place, { recursive: true });
+    Object.assign(renaming, { refused: 1, done: 0 });
+    expect(await codeOf(writeResults(place, NEW))).toBe('out-ebusy');
+    expect(listing(folder)).toEqual(['out/', 'out/set/']);
+  });
+
+  it('an old set that something holds open does not undo the new one', async () => {
+    await writeResults(place, OLD);
+    Object.assign(renaming, { refused: 3, done: 0 });
+    expect(await writeResults(place, NEW)).toEqual({ replaced: true });
+    expect(readdirSync(place).sort()).toEqual(['c.wav', 'result.json']);
+  });
+
   it('a fault of the program comes through as it is', async () => {
     const broken = { name: 'x.wav', contents: Symbol('no contents') as never };
     await expect(writeResults(place, [broken])).rejects.toThrow(TypeError);
@@ -231,6 +271,15 @@ describe('a stop', () => {
       expect([status, out, err]).toEqual([130, '', 'Stopped; nothing was written.\n']);
       expect(listing(folder)).toEqual(before);
     }
+  });
+
+  it('at the last moment before writing is heard', async () => {
+    // silence needs no rendering, so that this moment is the only one
+    const clip = saved(folder, 'silent.wav', plainWav({}, Array(200).fill(0)));
+    const before = listing(folder);
+    const { status, out } = await ran(['render', clip, '--out', place], () => true);
+    expect([status, out]).toEqual([130, '']);
+    expect(listing(folder)).toEqual(before);
   });
 
   it('of the other commands too', async () => {
