@@ -135,7 +135,8 @@ Example:
     .option('--source <R>', 'resistance of generator and added resistor')
     .option('--low-corner <F>', 'frequency at which the output is 3 dB down')
     .option('--resonance <F>', 'frequency of the highest output')
-    .option('--height <DB>', 'its height over mid frequencies')
+    .option('--height <DB>', 'its height over mid frequencies, halfway in octaves between corner and resonance')
+    .option('--mid-loss <DB>', 'primary volts below those of the open generator there: tells the core loss')
     .option('--primary-dc <R>', 'DC resistance of the primary')
     .option('--secondary-dc <R>', 'DC resistance of the secondary')
     .option('--load <R>', 'load of the secondary while reading, if any')
@@ -143,7 +144,7 @@ Example:
     .option('--json', 'print it as JSON, nothing else')
     .addHelpText(
       'after',
-      '\nExamples:\n  presolder stock\n  presolder stock tubes 6SL7-GT --supply 250V\n  presolder stock transformers --ratio 1:3 --source 10k --low-corner 40Hz --resonance 9.6kHz --height 4dB --primary-dc 1k --secondary-dc 8k',
+      '\nExamples:\n  presolder stock\n  presolder stock tubes 6SL7-GT --supply 250V\n  presolder stock transformers --ratio 1:3 --source 10k --low-corner 40Hz --resonance 9.6kHz --height 4dB --mid-loss 0.4dB --primary-dc 1k --secondary-dc 8k',
     )
     .action((kind: string | undefined, name: string | undefined, options: Record<string, unknown>) =>
       finish(import('./commands/stock.ts').then((module) => module.stock(kind ?? null, name ?? null, options, io))),

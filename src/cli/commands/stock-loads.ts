@@ -138,7 +138,8 @@ export function printReadTransformer(options: RawOptions, json: boolean, io: Io)
         'a reading; all of --ratio, --source, --low-corner, --resonance, --height, --primary-dc, --secondary-dc are needed',
     });
   };
-  const height = (text(options, 'height') ?? '').replace(/\s*dB$/i, '');
+  const decibels = (name: string, flag: string): number =>
+    parseQuantity((text(options, name) ?? '').replace(/\s*dB$/i, '') || 'nothing', 'number', flag);
   const readings = {
     ratio: need('ratio', '--ratio', 'ratio'),
     sourceOhms: need('source', '--source', 'resistance'),
@@ -146,7 +147,8 @@ export function printReadTransformer(options: RawOptions, json: boolean, io: Io)
     meterFarads: text(options, 'meter') === null ? 0 : need('meter', '--meter', 'capacitance'),
     lowCornerHertz: need('lowCorner', '--low-corner', 'frequency'),
     peakHertz: need('resonance', '--resonance', 'frequency'),
-    peakDecibels: parseQuantity(height === '' ? 'nothing' : height, 'number', '--height'),
+    peakDecibels: decibels('height', '--height'),
+    midLossDecibels: text(options, 'midLoss') === null ? null : decibels('midLoss', '--mid-loss'),
     primaryDcOhms: need('primaryDc', '--primary-dc', 'resistance'),
     secondaryDcOhms: need('secondaryDc', '--secondary-dc', 'resistance'),
   };
@@ -156,6 +158,9 @@ export function printReadTransformer(options: RawOptions, json: boolean, io: Io)
     return;
   }
   const show = (value: number, kind: QuantityKind): string => formatQuantity(value, kind, 3);
+  const coreOhms = found.coreLossOhms === null ? 'none' : show(found.coreLossOhms, 'resistance');
+  const core =
+    readings.midLossDecibels === null ? `${coreOhms}   # not read but assumed: --mid-loss tells it` : coreOhms;
   io.out(`plate:
   load:
     kind: transformer
@@ -163,8 +168,8 @@ export function printReadTransformer(options: RawOptions, json: boolean, io: Io)
     primary inductance: ${show(found.primaryHenries, 'inductance')}   # as read, without direct current
     primary dc resistance: ${show(readings.primaryDcOhms, 'resistance')}
     leakage: ${show(found.leakageHenries, 'inductance')}
-    core loss: none
-    primary capacitance: 0 pF   # counted with the secondary's
+    core loss: ${core}
+    primary capacitance: ${show(found.primaryFarads, 'capacitance')}   # typical: it hardly shows
     secondary dc resistance: ${show(readings.secondaryDcOhms, 'resistance')}
     secondary capacitance: ${show(found.secondaryFarads, 'capacitance')}
 `);
