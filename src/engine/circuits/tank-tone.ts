@@ -9,8 +9,6 @@ export interface PeriodicEnvelope {
   readonly im: Float64Array;
 }
 
-/** Largest change of an envelope, as a share of its mean, at which the coil and the detector agree. */
-const AGREED_SHARE = 1e-8;
 const MOST_ROUNDS = 40;
 /**
  * The coil's envelope for a tone when the detector's admittance is known at every instant: the periodic solution of
@@ -48,6 +46,7 @@ export function envelopeUnder(tank: Tank, hertz: number, depth: number, y: Perio
 /**
  * Coil and detector brought to agreement over one period of a tone.
  *
+ * @param agreed    largest change of the envelope, as a share of its mean, at which they agree
  * @param detector  the detector under an envelope: its admittance less that at rest, at every instant
  * @returns         the envelope on which both agree, and what of a change was left, as a share
  */
@@ -56,13 +55,14 @@ export function agreedEnvelope(
   hertz: number,
   depth: number,
   start: PeriodicEnvelope,
+  agreed: number,
   detector: (envelope: PeriodicEnvelope) => PeriodicEnvelope,
 ): { envelope: PeriodicEnvelope; left: number } {
   const n = start.re.length;
   const mixer = new RoundMixer();
   let at: Float64Array = Float64Array.of(...start.re, ...start.im);
   let left = Number.POSITIVE_INFINITY;
-  for (let round = 0; round < MOST_ROUNDS && left > AGREED_SHARE; round++) {
+  for (let round = 0; round < MOST_ROUNDS && left > agreed; round++) {
     const next = envelopeUnder(tank, hertz, depth, detector({ re: at.slice(0, n), im: at.slice(n) }));
     left = 0;
     for (let k = 0; k < n; k++) {
