@@ -6,8 +6,8 @@ import { unitDescription } from '../engine/parts/units.ts';
 import { readTransconductance, SLOPE_EXPECTED } from './transconductance.ts';
 import { plainName, plainWords } from './words.ts';
 
-/** Which quantity a field holds, so that a variant can be named after its value. Filled where fields are defined. */
-export const quantityKinds = z.registry<{ kind: QuantityKind }>();
+/** Which quantity a field holds and between which limits, so that a value can be chosen. Filled where fields are defined. */
+export const quantityKinds = z.registry<{ kind: QuantityKind; limits: QuantityLimits }>();
 
 export type Written = string | number;
 export type Reading<T> = { readonly value: T } | { readonly fault: Fault };
@@ -41,7 +41,7 @@ export function quantity(kind: QuantityKind, limits: QuantityLimits, what: strin
     expectedOf(kind),
     `${what}; ${limitsText(kind, limits)}`,
   );
-  return field.register(quantityKinds, { kind });
+  return field.register(quantityKinds, { kind, limits });
 }
 
 /** A quantity with its default as written; the default goes through the same reading. */
@@ -51,7 +51,7 @@ export function quantityOr(
   limits: QuantityLimits,
   what: string,
 ): z.ZodType<number, Written | undefined> {
-  return quantity(kind, limits, what).prefault(standard).register(quantityKinds, { kind });
+  return quantity(kind, limits, what).prefault(standard).register(quantityKinds, { kind, limits });
 }
 
 /** A quantity or the word `none`, which gives null. */
@@ -70,8 +70,8 @@ export function quantityOrNone(
     },
     `${expectedOf(kind)}, or none`,
     `${what}; ${limitsText(kind, limits)}, or none`,
-  );
-  return field.prefault(standard).register(quantityKinds, { kind });
+  ).register(quantityKinds, { kind, limits });
+  return field.prefault(standard).register(quantityKinds, { kind, limits });
 }
 
 /** One of a few words; `also` maps other spellings to them. */

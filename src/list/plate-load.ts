@@ -64,7 +64,7 @@ const phones = z.strictObject({
 });
 
 /** The value that stands behind each kind of load when it is written on one line. */
-const MAIN_VALUE: Readonly<Record<string, string>> = {
+export const MAIN_VALUE: Readonly<Record<string, string>> = {
   resistor: 'resistance',
   choke: 'inductance',
   transformer: 'ratio',
@@ -76,6 +76,14 @@ const KINDS = Object.keys(MAIN_VALUE);
 export const LOAD_EXPECTED =
   'a load such as resistor 220 kΩ, choke 250 H, transformer 1:3, phones 2 kΩ, a part of the catalogue such as ' +
   'transformer plain 1:3, or a mapping such as { kind: resistor, resistance: 220 kΩ }';
+
+/** The values that each kind of load has. */
+export const LOAD_KEYS: Readonly<Record<WrittenLoad['kind'], readonly string[]>> = {
+  resistor: Object.keys(resistor.shape),
+  choke: Object.keys(choke.shape),
+  transformer: Object.keys(transformer.shape),
+  phones: Object.keys(phones.shape),
+};
 
 /** What stands between plate and supply, with the load's own values. */
 export const plateLoad = z

@@ -26,7 +26,8 @@ export const MOST_VARIANTS = 24;
 const MOST_FAULTS = 50;
 const NO_PLACE = { line: 0, column: 0 } as const;
 
-interface Drafted {
+/** A circuit of a run as written: its layers over the list's own keys. */
+export interface Drafted {
   readonly name: string;
   /** Flag whose comma list made it, if one did. */
   readonly flag?: string;
@@ -45,12 +46,7 @@ interface Drafted {
  * @throws InputError with every fault found, each with its place in the list or its flag
  */
 export function listVariants(text: string, fileName: string, settings: readonly Setting[] = []): ListedVariant[] {
-  const inFile = (fault: Fault): Fault => (fault.line === undefined ? fault : { ...fault, file: fileName });
-  const list = writtenList(text);
-  const flags = settings.map(readSetting);
-  const faults: Fault[] = [...list.faults, ...flags.flatMap((flag) => ('fault' in flag ? [flag.fault] : []))];
-  if (faults.length > 0) throw new InputError(faults.slice(0, MOST_FAULTS).map(inFile));
-  const drafts = draftVariants(list, flags as readonly FlagValues[], fileName);
+  const { base, drafts, inFile } = draftedVariants(text, fileName, settings);
   const found = new Map<string, Fault>();
   const note = (fault: Fault): void => {
     found.set(`${fault.code} ${fault.where} ${fault.line} ${fault.column} ${fault.got}`, inFile(fault));
@@ -58,14 +54,13 @@ export function listVariants(text: string, fileName: string, settings: readonly 
   for (const fault of sameNames(drafts)) note(fault);
   const variants: ListedVariant[] = [];
   for (const draft of drafts) {
-    const read = readLayers([{ keys: list.base }, ...draft.layers]);
+    const read = readLayers([{ keys: base }, ...draft.layers]);
     if ('faults' in read) {
       read.faults.forEach(note);
       continue;
     }
     try {
-      const changes = Object.fromEntries([...draft.changes].map(([key, { value }]) => [key, asText(value)]));
-      variants.push({ name: draft.name, changes, ...buildCircuit(read.list) });
+      variants.push({ name: draft.name, changes: changesText(draft), ...buildCircuit(read.list) });
     } catch (error) {
       if (!(error instanceof InputError)) throw error;
       for (const fault of error.faults) note(placed(fault, read.places));
@@ -73,6 +68,25 @@ export function listVariants(text: string, fileName: string, settings: readonly 
   }
   if (found.size > 0) throw new InputError([...found.values()].slice(0, MOST_FAULTS));
   return variants;
+}
+
+/** The variants of a list with the flags over it, as written: no value has been read. Throws InputError. */
+export function draftedVariants(
+  text: string,
+  fileName: string,
+  settings: readonly Setting[],
+): { readonly base: WrittenKeys; readonly drafts: readonly Drafted[]; readonly inFile: (fault: Fault) => Fault } {
+  const inFile = (fault: Fault): Fault => (fault.line === undefined ? fault : { ...fault, file: fileName });
+  const list = writtenList(text);
+  const flags = settings.map(readSetting);
+  const faults: Fault[] = [...list.faults, ...flags.flatMap((flag) => ('fault' in flag ? [flag.fault] : []))];
+  if (faults.length > 0) throw new InputError(faults.slice(0, MOST_FAULTS).map(inFile));
+  return { base: list.base, drafts: draftVariants(list, flags as readonly FlagValues[], fileName), inFile };
+}
+
+/** Dotted key to the value as written, for all that a variant changes. */
+export function changesText(draft: Drafted): Record<string, string> {
+  return Object.fromEntries([...draft.changes].map(([key, { value }]) => [key, asText(value)]));
 }
 
 interface FlagValues {
