@@ -141,6 +141,8 @@ export interface Plate {
   readonly supplyVolts: number;
   /** Bypass from plate to cathode, F; 0 is allowed (strays stay). */
   readonly bypassFarads: number;
+  /** Leakage of a failing bypass, ohms; absent or null: none. */
+  readonly bypassLeakOhms?: number | null;
   readonly load: PlateLoad;
   /** Absent or null: none. */
   readonly carrierChoke?: CarrierChoke | null;
@@ -151,6 +153,8 @@ export interface Plate {
 export interface Output {
   /** F; null: none, straight on (after a transformer, or with the phones in the plate lead). */
   readonly couplingFarads: number | null;
+  /** Leakage of a failing coupling capacitor, ohms; absent or null: none. */
+  readonly couplingLeakOhms?: number | null;
   /** Ohms; null: open. */
   readonly loadOhms: number | null;
   readonly loadFarads: number;

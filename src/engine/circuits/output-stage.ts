@@ -18,6 +18,7 @@ export function stampOutput(network: Network, from: number, output: Output, perf
   if (output.couplingFarads !== null && !perfect) {
     end = network.node();
     network.capacitor(from, end, output.couplingFarads);
+    if (output.couplingLeakOhms) network.resistor(from, end, output.couplingLeakOhms);
   }
   if (output.matching) end = stampTransformer(network, end, CATHODE, output.matching, perfect);
   if (output.loadOhms !== null) network.resistor(end, CATHODE, output.loadOhms);

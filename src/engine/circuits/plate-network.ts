@@ -36,9 +36,11 @@ export function stampPlateSide(
   circuit: DetectorCircuit,
   ideal: IdealParts = {},
 ): Heard {
-  const { load, supplyVolts, bypassFarads, carrierChoke, dropping } = circuit.plate;
+  const { load, supplyVolts, bypassFarads, bypassLeakOhms, carrierChoke, dropping } = circuit.plate;
   const bypass = ideal.plateBypass ? 0 : bypassFarads;
   network.capacitor(plate, CATHODE, bypass + circuit.tube.plateCathodeFarads);
+  // a leak moves the rest point, which the cost by part holds: it stays where the bypass is taken as ideal
+  if (bypassLeakOhms) network.resistor(plate, CATHODE, bypassLeakOhms);
   let top = plate;
   if (carrierChoke) {
     top = network.node();

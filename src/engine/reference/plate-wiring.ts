@@ -13,6 +13,7 @@ export function wirePlate(network: LinearNetwork, plate: number, circuit: Detect
   const { cathode } = network;
   const { load, supplyVolts, bypassFarads, carrierChoke, dropping } = circuit.plate;
   network.capacitor(plate, cathode, circuit.tube.plateCathodeFarads + bypassFarads);
+  network.resistor(plate, cathode, circuit.plate.bypassLeakOhms ?? Number.POSITIVE_INFINITY);
   let feed = network.held(supplyVolts);
   if (dropping) {
     const held = feed;
@@ -45,6 +46,7 @@ function wireOutput(network: LinearNetwork, live: number, output: Output): Liste
   if (output.couplingFarads !== null) {
     end = network.free();
     network.capacitor(live, end, output.couplingFarads);
+    network.resistor(live, end, output.couplingLeakOhms ?? Number.POSITIVE_INFINITY);
   }
   if (output.matching) end = wireTransformer(network, end, cathode, output.matching);
   network.resistor(end, cathode, output.loadOhms ?? Number.POSITIVE_INFINITY);
