@@ -15,6 +15,7 @@ export const PART_FLAGS = [
   ['modulation', 'station.modulation', 'M', 'peak modulation, e.g. 80%'],
   ['detector', 'detector.kind', 'KIND', "kind of detector, e.g. 'grid leak'"],
   ['law', 'detector.law', 'LAW', 'tube, square or linear'],
+  ['fault', 'fault', 'FAULT', "a part that has failed, e.g. 'weak tube 60 %' or 'leaky coupling 2M'"],
 ] as const;
 
 /** One key set by a flag; a comma list in the value makes variants. */

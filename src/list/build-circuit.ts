@@ -1,5 +1,6 @@
 import type { Caution, Ratings } from '../engine/circuits/cautions.ts';
 import type { DetectorCircuit, GridLeakDetector, TunedCircuit } from '../engine/circuits/circuit.ts';
+import { withFaults } from '../engine/circuits/part-faults.ts';
 import { type Fault, InputError } from '../engine/errors.ts';
 import type { BandLimit, PreEmphasis } from '../engine/station/pre-emphasis.ts';
 import type { CathodeKind } from '../engine/tubes/fitting.ts';
@@ -24,8 +25,13 @@ export interface BuiltCircuit {
   readonly cautions: readonly Caution[];
 }
 
-/** The circuit a read list describes. Throws InputError whose faults name dotted keys. */
+/** The circuit a read list describes, its failed part in it. Throws InputError whose faults name dotted keys. */
 export function buildCircuit(list: CircuitList): BuiltCircuit {
+  const drawn = asDrawn(list);
+  return { ...drawn, circuit: withFaults(drawn.circuit, list.fault) };
+}
+
+function asDrawn(list: CircuitList): BuiltCircuit {
   const { station, plate } = list;
   const { tube, cathode, filamentVolts, ratings, cautions } = socketedTube(list);
   return {

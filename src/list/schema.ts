@@ -3,7 +3,8 @@ import { HEARING_NAMES } from '../engine/hearing/hearing-curves.ts';
 import { formatQuantity } from '../engine/parts/format-quantity.ts';
 import { SOCKET_STRAYS } from '../engine/tubes/socketed-tube.ts';
 import { dottedFields } from './dotted-keys.ts';
-import { choiceOr, quantity, quantityOr, quantityOrNone, words } from './fields.ts';
+import { choiceOr, quantity, quantityOr, quantityOrNone, readField, words } from './fields.ts';
+import { PART_FAULT_EXPECTED, readPartFaults } from './part-fault-words.ts';
 import { plateLoad, transformerKeys } from './plate-load.ts';
 import { tubeSection } from './tube-section.ts';
 
@@ -108,6 +109,8 @@ const strays = z.strictObject({
   'grid to plate': quantityOr(picofarads(SOCKET_STRAYS.gridPlateFarads), 'capacitance', STRAY, 'Grid to plate'),
 });
 
+const FAULT = 'A part that has failed, for comparing voltages and sound: leaky coupling 2 MΩ, weak tube 60 %';
+
 /** Stands for a section left out. Every key of one has its default, which the types of the fields cannot say. */
 const EMPTY = {} as never;
 
@@ -120,6 +123,7 @@ export const circuitShape = {
   output: output.prefault(EMPTY),
   strays: strays.prefault(EMPTY),
   tube: tubeSection.prefault(EMPTY),
+  fault: readField(readPartFaults, PART_FAULT_EXPECTED, FAULT).prefault('none'),
 };
 
 /** One circuit of a parts list, without its variants. */

@@ -136,7 +136,7 @@ function draftVariants(list: WrittenList, flags: readonly FlagValues[], fileName
     drafts = drafts.flatMap((draft) =>
       values.map((value): Drafted => {
         const keys: WrittenKeys = new Map([[key, { value, place: NO_PLACE }]]);
-        const part = values.length > 1 ? `${shortKey(key)} ${plainName(value)}` : '';
+        const part = values.length > 1 ? variantPart(key, value) : '';
         return {
           ...draft,
           ...(part === '' ? {} : { flag: where }),
@@ -181,6 +181,12 @@ function sameNames(drafts: readonly Drafted[]): Fault[] {
     const expected = `a name of its own (there is already ${JSON.stringify(other)})`;
     return [{ code: 'same-name', where: draft.flag ?? 'variants', got: JSON.stringify(draft.name), expected, ...at }];
   });
+}
+
+/** What a value of a comma list adds to its variant's name; a fault speaks for itself. */
+function variantPart(key: string, value: string): string {
+  if (key === 'fault') return /^none$/i.test(value) ? 'no fault' : plainName(value);
+  return `${shortKey(key)} ${plainName(value)}`;
 }
 
 function shortKey(key: string): string {

@@ -72,6 +72,7 @@ class Reader {
         for (const [key, node, place] of this.pairs(root, Object.keys(partsList.shape), '')) {
           if (key === 'name') name = this.readName(node, 'name', place);
           else if (key === 'variants') variants.push(...this.readVariants(node, place));
+          else if (CHANGEABLE.has(key)) this.keep(key, node, place, base);
           else {
             const shape = mappingShape((circuitShape as Shape)[key] as z.core.$ZodType) ?? {};
             this.section(key, node, place, shape, base);
