@@ -1,7 +1,9 @@
+import type { CarrierPorts } from './carrier-path.ts';
+import { portsAt } from './carrier-ports.ts';
 import type { DetectorCircuit } from './circuit.ts';
-import { type Complex, complex, plus } from './complex.ts';
 import { CATHODE, type LinearSystem, Network } from './network.ts';
-import { type IdealParts, type Probe, plateAdmittance, probeOf, stampPlateSide } from './plate-network.ts';
+import type { Heard } from './output-stage.ts';
+import { type IdealParts, type Probe, probeOf, stampPlateSide } from './plate-network.ts';
 
 /** The grid-leak stage for audio: linear network with two ports, grid and plate, where the tube draws its currents. */
 export interface AudioStage {
@@ -23,47 +25,39 @@ export function leakOhmsAtAudio(circuit: DetectorCircuit): number {
  * coil's foot carries the return voltage and the capacitor's own leakage goes there too.
  */
 export function gridLeakAudio(circuit: DetectorCircuit, ideal: IdealParts = {}): AudioStage {
-  const { detector, tube } = circuit;
+  const { detector } = circuit;
   const network = new Network();
-  const grid = network.node();
-  const plate = network.node();
-  network.capacitor(grid, CATHODE, (ideal.gridCapacitor ? 0 : detector.gridCapacitorFarads) + tube.gridCathodeFarads);
-  network.capacitor(grid, plate, tube.gridPlateFarads);
-  network.resistor(grid, network.fixed(detector.leakReturnVolts), detector.leakOhms);
-  if (detector.capacitorLeakageOhms !== null) {
-    const foot = detector.leakPosition === 'across capacitor' ? detector.leakReturnVolts : 0;
-    network.resistor(grid, network.fixed(foot), detector.capacitorLeakageOhms);
-  }
-  const heard = stampPlateSide(network, plate, circuit, ideal);
+  const across = detector.leakPosition === 'across capacitor';
+  const foot = network.fixed(across ? detector.leakReturnVolts : 0);
+  const { grid, plate, heard } = stampStage(network, circuit, ideal, foot, network.fixed(detector.leakReturnVolts));
   return { system: network.assemble(), gridNode: grid, plateNode: plate, output: probeOf(network, heard) };
 }
 
-/** The constant admittances of the stage at the carrier, S. */
-export interface CarrierAdmittances {
-  /** Between tuned circuit and grid: grid capacitor, and what lies across it. */
-  readonly series: Complex;
-  /** All that hangs on the grid node but the tube's conduction. */
-  readonly grid: Complex;
-  /** Grid to plate. */
-  readonly gridPlate: Complex;
-  /** All that hangs on the plate node but the tube's conduction. */
-  readonly plate: Complex;
+/** Stamps the stage from its tap on; `leakEnd` is where a leak to the cathode ends. */
+function stampStage(
+  network: Network,
+  circuit: DetectorCircuit,
+  ideal: IdealParts,
+  tap: number,
+  leakEnd: number,
+): { grid: number; plate: number; heard: Heard } {
+  const { detector, tube } = circuit;
+  const grid = network.node();
+  const plate = network.node();
+  network.capacitor(tap, grid, ideal.gridCapacitor ? 0 : detector.gridCapacitorFarads);
+  if (detector.capacitorLeakageOhms !== null) network.resistor(tap, grid, detector.capacitorLeakageOhms);
+  network.resistor(grid, detector.leakPosition === 'across capacitor' ? tap : leakEnd, detector.leakOhms);
+  network.capacitor(grid, CATHODE, tube.gridCathodeFarads);
+  network.capacitor(grid, plate, tube.gridPlateFarads);
+  const heard = stampPlateSide(network, plate, circuit, ideal);
+  return { grid, plate, heard };
 }
 
-/** Works out the stage's admittances at the station's carrier. */
-export function carrierAdmittances(circuit: DetectorCircuit): CarrierAdmittances {
-  const { detector, tube, station } = circuit;
-  const omega = 2 * Math.PI * station.carrierHertz;
-  const leak = 1 / detector.leakOhms;
-  const across = detector.leakPosition === 'across capacitor';
-  const leakage = detector.capacitorLeakageOhms === null ? 0 : 1 / detector.capacitorLeakageOhms;
-  const series = complex((across ? leak : 0) + leakage, omega * detector.gridCapacitorFarads);
-  const gridPlate = complex(0, omega * tube.gridPlateFarads);
-  const toCathode = complex(across ? 0 : leak, omega * tube.gridCathodeFarads);
-  return {
-    series,
-    grid: plus(plus(series, toCathode), gridPlate),
-    gridPlate,
-    plate: plus(plateAdmittance(circuit, station.carrierHertz), gridPlate),
-  };
+/** What the stage's linear part does at the station's carrier. */
+export function gridLeakCarrier(circuit: DetectorCircuit): CarrierPorts {
+  const network = new Network();
+  const tap = network.node();
+  const { grid, plate } = stampStage(network, circuit, {}, tap, CATHODE);
+  const source = network.source(tap, CATHODE);
+  return portsAt(network, source, grid, plate, circuit.station.carrierHertz);
 }

@@ -16,6 +16,9 @@ export class Network {
   private readonly inductors: [number, number, number, number][] = [];
   private readonly transformers: [number, number, number, number, number][] = [];
   private readonly fixedVolts: number[] = [0];
+  /** Free node that a fixed voltage stands on, or the cathode. */
+  private readonly fixedOn: number[] = [CATHODE];
+  private readonly sources: [number, number][] = [];
   private nodes = 0;
 
   /** A new node; returns its number. */
@@ -23,9 +26,20 @@ export class Network {
     return this.nodes++;
   }
 
-  /** A point of fixed voltage against the cathode, such as the supply. */
-  fixed(volts: number): number {
+  /** A point of fixed voltage against the cathode, such as the supply, or against a free node. */
+  fixed(volts: number, on = CATHODE): number {
+    this.fixedOn.push(on);
     return -this.fixedVolts.push(volts);
+  }
+
+  /** A voltage source, dead here, from b to a: its current is the last kind of unknown. Returns its number. */
+  source(a: number, b: number): number {
+    return this.sources.push([a, b]) - 1;
+  }
+
+  /** Place of a source's current among the unknowns, once everything is there. */
+  sourceIndex(source: number): number {
+    return this.nodes + this.inductors.length + this.transformers.length + source;
   }
 
   /** C (F) between two nodes; 0 is left out. */
@@ -58,7 +72,7 @@ export class Network {
    * Raises InputError `empty-network` when there is no node.
    */
   assemble(): LinearSystem {
-    const n = this.nodes + this.inductors.length + this.transformers.length;
+    const n = this.nodes + this.inductors.length + this.transformers.length + this.sources.length;
     if (this.nodes === 0) {
       throw new InputError({ code: 'empty-network', where: 'circuit', got: 'no node', expected: 'at least one node' });
     }
@@ -66,10 +80,16 @@ export class Network {
     const f = new Float64Array(n * n);
     const b = new Float64Array(n);
     const add = (m: Float64Array, row: number, col: number, value: number): void => {
-      if (row < 0) return;
-      if (col >= 0) m[row * n + col] = (m[row * n + col] as number) + value;
-      // a fixed voltage has no rate of change, so it matters to F alone
-      else if (m === f) b[row] = (b[row] as number) - value * (this.fixedVolts[-1 - col] as number);
+      // what happens at a point of fixed voltage happens at the node it stands on
+      const r = row >= 0 ? row : (this.fixedOn[-1 - row] as number);
+      if (r < 0) return;
+      if (col >= 0) m[r * n + col] = (m[r * n + col] as number) + value;
+      else {
+        const on = this.fixedOn[-1 - col] as number;
+        if (on >= 0) m[r * n + on] = (m[r * n + on] as number) + value;
+        // a fixed voltage has no rate of change, so it matters to F alone
+        if (m === f) b[r] = (b[r] as number) - value * (this.fixedVolts[-1 - col] as number);
+      }
     };
     const pair = (m: Float64Array, p: number, q: number, value: number): void => {
       add(m, p, p, value);
@@ -100,6 +120,14 @@ export class Network {
       add(f, row, s, -1);
       add(f, row, p, -ratio);
       add(f, row, q, ratio);
+      row++;
+    }
+    for (const [p, q] of this.sources) {
+      // current i leaves p through the source; v_p − v_q = 0
+      add(f, p, row, 1);
+      add(f, q, row, -1);
+      add(f, row, p, 1);
+      add(f, row, q, -1);
       row++;
     }
     return { size: n, storage: e, conductance: f, drive: b };

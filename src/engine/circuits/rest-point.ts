@@ -3,7 +3,7 @@ import { CarrierPath } from './carrier-path.ts';
 import type { DetectorCircuit, PlateLoad } from './circuit.ts';
 import type { Complex } from './complex.ts';
 import { solveReal } from './dense-solve.ts';
-import { type AudioStage, carrierAdmittances, gridLeakAudio } from './grid-leak.ts';
+import { type AudioStage, gridLeakAudio, gridLeakCarrier } from './grid-leak.ts';
 import { loadAtCurrent } from './load-transformer.ts';
 import { emptyCurrents, Stage, type StageCurrents, type StageLaws } from './stage-currents.ts';
 import { linearGrid, type QuietPoint, squareGrid, straightPlate, tubeStageLaws } from './stage-laws.ts';
@@ -156,7 +156,7 @@ function withLoad(circuit: DetectorCircuit, load: PlateLoad): DetectorCircuit {
 function solveRest(circuit: DetectorCircuit): RestPoint {
   const audio = gridLeakAudio(circuit);
   const direct = directPath(audio);
-  const path = new CarrierPath(carrierAdmittances(circuit), circuit.tube.law.mu);
+  const path = new CarrierPath(gridLeakCarrier(circuit), circuit.tube.law.mu);
   const tubeLaws = tubeStageLaws(circuit.tube.law);
   const w: [number, number] = [Math.min(direct.open[0], 0), 0.5 * direct.open[1]];
   const currents = emptyCurrents();

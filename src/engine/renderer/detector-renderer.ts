@@ -8,16 +8,18 @@ import { Decimator, filterDelay, Interpolator } from './resampling.ts';
 import { StageStepper } from './stage-stepper.ts';
 import type { TableLaws } from './table-store.ts';
 
-/** Circuit solutions a second at least, Hz: 4 × a 48 kHz clip. Two stages a step. */
-export const LEAST_SOLUTIONS_HERTZ = 176_000;
+/**
+ * Steps a second at least, Hz: one a sample of a 44.1 or 48 kHz clip. Each solves the circuit at three instants, 144,000 a
+ * second at 48 kHz, and tells the output at two.
+ */
+export const LEAST_STEPS_HERTZ = 44_000;
 
-/** `normal` solves the circuit at least 176,000 times a second, `fine` twice that. */
+/** `normal` takes at least 44,000 steps a second, `fine` twice that. */
 export type Quality = 'normal' | 'fine';
 
 /** Steps to a clip sample at a quality. */
 export function stepsPerSample(clipRateHertz: number, quality: Quality): number {
-  const stages = STAGE_TIMES.length;
-  const base = Math.max(1, Math.ceil(LEAST_SOLUTIONS_HERTZ / (stages * clipRateHertz)));
+  const base = Math.max(1, Math.ceil(LEAST_STEPS_HERTZ / clipRateHertz));
   return quality === 'fine' ? 2 * base : base;
 }
 
@@ -59,17 +61,13 @@ export class DetectorRenderer {
     const fractions: number[] = [];
     for (let k = 0; k < this.steps; k++) for (const t of STAGE_TIMES) fractions.push((k + t) / this.steps);
     this.interpolator = new Interpolator(clipRateHertz, fractions);
-    this.decimator = new Decimator(clipRateHertz, this.steps);
+    this.decimator = new Decimator(clipRateHertz, 2 * this.steps);
     const { station } = rest.circuit;
     this.envelope = new TunedEnvelope(station.carrierHertz, rest.tuned.loadedQ, rest.tuned.detuneHertz, stepSeconds);
     this.stepper = new StageStepper(rest, laws, stepSeconds);
-    const { tank } = this.stepper;
-    if (tank) {
-      tank.weights.set(this.envelope.sourceWeights);
-      tank.reach = Math.max(...tank.weights.map(Math.abs));
-    }
+    this.stepper.tank?.setWeights(this.envelope.sourceWeights);
     this.drives = new Float64Array(fractions.length);
-    this.volts = new Float64Array(this.steps);
+    this.volts = new Float64Array(2 * this.steps);
     this.delaySamples = 2 * filterDelay(clipRateHertz) - 1;
     this.restVolts = (rest.unknowns[rest.audio.output.index] as number) * rest.audio.output.weight;
     const { interpolator, decimator, envelope, stepper, restVolts } = this;
@@ -126,24 +124,24 @@ export class DetectorRenderer {
     const { interpolator, decimator, envelope, stepper, drives, steps, restVolts } = this;
     const peak = this.rest.tuned.carrierPeakVolts;
     const { magnitudes } = envelope;
-    const { drive, state } = stepper;
-    const { index: place, weight } = this.rest.audio.output;
+    const { drive, heard, tank } = stepper;
     const { volts } = this;
+    const stages = drive.length;
     for (let n = 0; n < frames; n++) {
       interpolator.process(input, n, drives);
       for (let k = 0; k < steps; k++) {
-        if (stepper.tank) {
-          envelope.open(drives, 2 * k);
-          stepper.tank.ahead.set(envelope.ahead);
+        if (tank) {
+          envelope.open(drives, stages * k);
+          tank.ahead.set(envelope.ahead);
           stepper.step();
-          envelope.finish(stepper.tank.envelope[2] as number, stepper.tank.envelope[3] as number);
+          envelope.finish(tank.envelope[2 * stages - 2] as number, tank.envelope[2 * stages - 1] as number);
         } else {
-          envelope.step(drives, 2 * k);
-          drive[0] = peak * (magnitudes[0] as number);
-          drive[1] = peak * (magnitudes[1] as number);
+          envelope.step(drives, stages * k);
+          for (let s = 0; s < stages; s++) drive[s] = peak * (magnitudes[s] as number);
           stepper.step();
         }
-        volts[k] = (state[place] as number) * weight - restVolts;
+        volts[2 * k] = (heard[0] as number) - restVolts;
+        volts[2 * k + 1] = (heard[1] as number) - restVolts;
       }
       decimator.process(volts, output, n);
     }

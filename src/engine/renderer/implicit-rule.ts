@@ -1,23 +1,27 @@
 import { solveReal } from '../circuits/dense-solve.ts';
 import type { LinearSystem } from '../circuits/network.ts';
-import { impedanceAt } from '../circuits/plate-network.ts';
+import { impedanceAt, type Probe } from '../circuits/plate-network.ts';
 
-/** Fractions of a step at which the two stages stand. */
-export const STAGE_TIMES = [1 / 3, 1] as const;
+/** Fractions of a step at which the three stages stand: the Radau points. */
+export const STAGE_TIMES = [(4 - Math.sqrt(6)) / 10, (4 + Math.sqrt(6)) / 10, 1] as const;
+export const STAGES = STAGE_TIMES.length;
+const PORTS = 2;
+const DRIVES = STAGES * PORTS;
 
 /**
  * One step of the stage for E·dz/dt + F·z = b − B·i, worked out once for a step length and a network.
  *
- *   stage port volts  w = W·z + w0 − Z·i      (4: grid and plate at 1/3, grid and plate at 1)
- *   next state        z' = P·z + p0 − R·i     (i: port currents at both stages, in the order of w)
+ *   stage port volts    w = W·z + w0 − Z·i      (6: grid and plate at each of the three stages)
+ *   next state          z' = P·z + p0 − R·i     (i: port currents at the stages, in the order of w)
+ *   output at half      v  = H·z + h0 − h·i
  *
- * Collocation at the two Radau IIA points: the port currents are the straight line through their values at 1/3 and 1 of
- * the step, and the network answers that line exactly. Where the network is pure capacitance this is the two-stage Radau
- * IIA rule itself (order 3, L-stable: a stiff circuit does not ring when the carrier steps); coils, windings and slow
- * capacitors then cost no accuracy at all, however near the step they resonate.
+ * Collocation at the Radau points: the port currents are the parabola through their values at the three stages, and the
+ * network answers that parabola exactly. Where the network is pure capacitance this is the three-stage Radau IIA rule
+ * itself (order 5, L-stable: a stiff circuit does not ring when the carrier steps); coils, windings and slow capacitors
+ * then cost no accuracy at all, however near the step they resonate.
  *
  * Source of the Radau points: E. Hairer and G. Wanner, Solving Ordinary Differential Equations II, 2nd edition, 1996,
- * section IV.5, table 5.5 (from memory); checked by its order and by a linear network's exact response.
+ * section IV.5, table 5.6 (from memory); checked by its order and by a linear network's exact response.
  */
 export interface StepPlan {
   readonly size: number;
@@ -27,124 +31,151 @@ export interface StepPlan {
   readonly portFromState: Float64Array;
   readonly portConstant: Float64Array;
   readonly portFromCurrent: Float64Array;
+  readonly halfFromState: Float64Array;
+  readonly halfConstant: number;
+  readonly halfFromCurrent: Float64Array;
 }
 
-const RULE = [5 / 12, -1 / 12, 3 / 4, 1 / 4] as const;
-/**
- * Parts of a step in which the network's own answer is worked out by the same rule, a multiple of 3. Its error falls as
- * the cube: below 1e-4 of the rule's own at a whole step.
- */
-const PARTS = 24;
+/** The two-stage Radau IIA rule, with which the network's own answer is worked out between the points. */
+const INNER_TIMES = [1 / 3, 1] as const;
+const INNER_RULE = [5 / 12, -1 / 12, 3 / 4, 1 / 4] as const;
+/** Parts between two points; the inner rule's error falls as the cube of their number and is far below the rule's own. */
+const PARTS = 10;
 /** Frequencies from whose least conductance that kept with the port currents is taken, Hz. */
 const ASIDE_HERTZ = [10_000, 20_000, 40_000] as const;
 
 /**
  * @param system       the audio network
- * @param ports        nodes from which port currents are drawn
+ * @param ports        nodes of grid and plate
+ * @param heard        what is read at half a step besides the state
  * @param stepSeconds  above 0
  */
-export function planStep(system: LinearSystem, ports: readonly number[], stepSeconds: number): StepPlan {
+export function planStep(
+  system: LinearSystem,
+  ports: readonly [number, number],
+  heard: Probe,
+  stepSeconds: number,
+): StepPlan {
   const n = system.size;
-  const portCount = ports.length;
-  const drives = 2 * portCount;
-  const columns = n + 1 + drives;
+  const columns = n + 1 + DRIVES;
   const aside = conductancesAt(system, ports);
   const conductance = system.conductance.slice();
   ports.forEach((node, k) => {
     conductance[node * n + node] = (conductance[node * n + node] as number) - (aside[k] as number);
   });
-  const part = planPart({ ...system, conductance }, ports, stepSeconds / PARTS);
+  const network = { ...system, conductance };
   // the state as a sum of the step's first state, the constant and the stage currents
   let state = new Float64Array(n * columns);
   for (let r = 0; r < n; r++) state[r * columns + r] = 1;
-  let third = state;
-  for (let k = 0; k < PARTS; k++) {
-    const next = new Float64Array(n * columns);
-    const lines = STAGE_TIMES.map((c) => currentLine((k + c) / PARTS));
-    for (let r = 0; r < n; r++) {
-      for (let q = 0; q < n; q++) {
-        const factor = part[r * columns + q] as number;
-        if (factor === 0) continue;
-        for (let c = 0; c < columns; c++) {
-          next[r * columns + c] = (next[r * columns + c] as number) + factor * (state[q * columns + c] as number);
-        }
-      }
-      next[r * columns + n] = (next[r * columns + n] as number) + (part[r * columns + n] as number);
-      for (let sub = 0; sub < 2; sub++) {
-        for (let port = 0; port < portCount; port++) {
-          const effect = part[r * columns + n + 1 + sub * portCount + port] as number;
-          for (let stage = 0; stage < 2; stage++) {
-            const at = r * columns + n + 1 + stage * portCount + port;
-            next[at] = (next[at] as number) + effect * ((lines[sub] as readonly number[])[stage] as number);
-          }
-        }
+  const points: Float64Array[] = [];
+  let half = state;
+  let from = 0;
+  for (const to of [STAGE_TIMES[0], 0.5, STAGE_TIMES[1], 1]) {
+    const part = planPart(network, ports, (stepSeconds * (to - from)) / PARTS);
+    for (let k = 0; k < PARTS; k++) {
+      const fractions = INNER_TIMES.map((c) => from + ((to - from) * (k + c)) / PARTS);
+      state = carried(state, part, n, fractions.map(currentParabola));
+    }
+    if (to === 0.5) half = state;
+    else points.push(state);
+    from = to;
+  }
+  return recombined(n, ports, aside, points, half, heard);
+}
+
+/** A state, as a sum of first state, constant and stage currents, one part further. */
+function carried(
+  state: Float64Array,
+  part: Float64Array,
+  n: number,
+  parabolas: readonly (readonly number[])[],
+): Float64Array<ArrayBuffer> {
+  const columns = n + 1 + DRIVES;
+  const partColumns = n + 1 + INNER_TIMES.length * PORTS;
+  const next = new Float64Array(n * columns);
+  for (let r = 0; r < n; r++) {
+    for (let q = 0; q < n; q++) {
+      const factor = part[r * partColumns + q] as number;
+      if (factor === 0) continue;
+      for (let c = 0; c < columns; c++) {
+        next[r * columns + c] = (next[r * columns + c] as number) + factor * (state[q * columns + c] as number);
       }
     }
-    state = next;
-    if (k === PARTS / 3 - 1) third = next;
+    next[r * columns + n] = (next[r * columns + n] as number) + (part[r * partColumns + n] as number);
+    parabolas.forEach((weights, inner) => {
+      for (let port = 0; port < PORTS; port++) {
+        const effect = part[r * partColumns + n + 1 + inner * PORTS + port] as number;
+        weights.forEach((weight, stage) => {
+          const at = r * columns + n + 1 + stage * PORTS + port;
+          next[at] = (next[at] as number) + effect * weight;
+        });
+      }
+    });
   }
-  return recombined(n, ports, aside, third, state, columns);
+  return next;
 }
 
 /**
- * Puts the conductances that were kept aside back: the line then stands for the currents drawn with theirs included,
- * i + G·w, and w at the two points is known in terms of i.
+ * Puts the conductances that were kept aside back: the parabola then stands for the currents drawn with theirs included,
+ * i + G·w, and w at the points is known in terms of i.
  */
 function recombined(
   n: number,
   ports: readonly number[],
   aside: Float64Array,
-  third: Float64Array,
-  end: Float64Array,
-  columns: number,
+  points: readonly Float64Array[],
+  half: Float64Array,
+  heard: Probe,
 ): StepPlan {
-  const count = ports.length;
-  const drives = 2 * count;
-  // (1 + Z·G)·w = W·z + w0 − Z·i, where third and end hold −Z in their last columns
-  const matrix = new Float64Array(drives * drives);
-  const right = new Float64Array(drives * columns);
-  [third, end].forEach((from, stage) => {
+  const columns = n + 1 + DRIVES;
+  // (1 + Z·G)·w = W·z + w0 − Z·i, where the points hold −Z in their last columns
+  const matrix = new Float64Array(DRIVES * DRIVES);
+  const right = new Float64Array(DRIVES * columns);
+  points.forEach((from, stage) => {
     ports.forEach((node, port) => {
-      const row = stage * count + port;
+      const row = stage * PORTS + port;
       for (let c = 0; c < columns; c++) right[row * columns + c] = from[node * columns + c] as number;
-      for (let c = 0; c < drives; c++) {
+      for (let c = 0; c < DRIVES; c++) {
         const ohms = -(from[node * columns + n + 1 + c] as number);
-        matrix[row * drives + c] = (row === c ? 1 : 0) + ohms * (aside[c % count] as number);
+        matrix[row * DRIVES + c] = (row === c ? 1 : 0) + ohms * (aside[c % PORTS] as number);
       }
     });
   });
-  if (!solveReal(matrix, drives, right, columns)) throw new Error('the port equations of the network are singular');
-  const state = new Float64Array(n * columns);
-  for (let r = 0; r < n; r++) {
-    for (let c = 0; c < columns; c++) {
-      let sum = end[r * columns + c] as number;
-      for (let q = 0; q < drives; q++) {
-        const effect = (end[r * columns + n + 1 + q] as number) * (aside[q % count] as number);
+  if (!solveReal(matrix, DRIVES, right, columns)) throw new Error('the port equations of the network are singular');
+  const withAside = (from: Float64Array, row: number): Float64Array =>
+    Float64Array.from({ length: columns }, (_, c) => {
+      let sum = from[row * columns + c] as number;
+      for (let q = 0; q < DRIVES; q++) {
+        const effect = (from[row * columns + n + 1 + q] as number) * (aside[q % PORTS] as number);
         sum += effect * (right[q * columns + c] as number);
       }
-      state[r * columns + c] = sum;
-    }
-  }
-  const pick = (from: Float64Array, rows: number, first: number, width: number, sign = 1): Float64Array => {
-    const out = new Float64Array(rows * width);
-    for (let r = 0; r < rows; r++) {
-      for (let c = 0; c < width; c++) out[r * width + c] = sign * (from[r * columns + first + c] as number);
-    }
-    return out;
-  };
+      return sum;
+    });
+  const end = points[points.length - 1] as Float64Array;
+  const state = Array.from({ length: n }, (_, r) => withAside(end, r));
+  const rows = Array.from({ length: DRIVES }, (_, r) => right.slice(r * columns, (r + 1) * columns));
+  const middle = withAside(half, heard.index);
+  const part = (from: readonly Float64Array[], first: number, width: number, sign = 1): Float64Array =>
+    Float64Array.from({ length: from.length * width }, (_, at) => {
+      const row = from[Math.floor(at / width)] as Float64Array;
+      return sign * (row[first + (at % width)] as number);
+    });
   return {
     size: n,
-    stateFromState: pick(state, n, 0, n),
-    stateConstant: pick(state, n, n, 1),
-    stateFromCurrent: pick(state, n, n + 1, drives, -1),
-    portFromState: pick(right, drives, 0, n),
-    portConstant: pick(right, drives, n, 1),
-    portFromCurrent: pick(right, drives, n + 1, drives, -1),
+    stateFromState: part(state, 0, n),
+    stateConstant: part(state, n, 1),
+    stateFromCurrent: part(state, n + 1, DRIVES, -1),
+    portFromState: part(rows, 0, n),
+    portConstant: part(rows, n, 1),
+    portFromCurrent: part(rows, n + 1, DRIVES, -1),
+    halfFromState: part([middle], 0, n),
+    halfConstant: middle[n] as number,
+    halfFromCurrent: part([middle], n + 1, DRIVES, -1),
   };
 }
 
 /**
- * Conductance that each port's node meets at the top of the audio band and above, S. A line stands better for the net
+ * Conductance that each port's node meets at the top of the audio band and above, S. A parabola stands better for the net
  * current of a resistance and the tube together than for the tube's alone, which is why it goes with the port currents;
  * the least of three frequencies passes over resonances, whose conductance is no resistance.
  */
@@ -158,12 +189,19 @@ function conductancesAt(system: LinearSystem, ports: readonly number[]): Float64
   });
 }
 
-/** Weights of the currents at 1/3 and 1 for the straight line through them at a fraction of the step. */
-function currentLine(fraction: number): readonly [number, number] {
-  return [1.5 * (1 - fraction), 1.5 * fraction - 0.5];
+/** Weights of the currents at the stages for the parabola through them, at a fraction of the step. */
+function currentParabola(fraction: number): number[] {
+  return lagrangeWeights(STAGE_TIMES, fraction);
 }
 
-/** One Radau IIA step of the network alone: next state from state (n), constant (1) and port currents at its stages. */
+/** Weights of values at `times` for the polynomial through them at `t`. */
+export function lagrangeWeights(times: readonly number[], t: number): number[] {
+  return times.map((tj, j) =>
+    times.reduce((product, tk, k) => (k === j ? product : (product * (t - tk)) / (tj - tk)), 1),
+  );
+}
+
+/** One inner step of the network alone: next state from state (n), constant (1) and port currents at its two stages. */
 function planPart(system: LinearSystem, ports: readonly number[], seconds: number): Float64Array {
   const n = system.size;
   const both = 2 * n;
@@ -172,7 +210,7 @@ function planPart(system: LinearSystem, ports: readonly number[], seconds: numbe
   const right = new Float64Array(both * columns);
   for (let si = 0; si < 2; si++) {
     for (let sj = 0; sj < 2; sj++) {
-      const a = seconds * (RULE[2 * si + sj] as number);
+      const a = seconds * (INNER_RULE[2 * si + sj] as number);
       for (let r = 0; r < n; r++) {
         const row = si * n + r;
         for (let c = 0; c < n; c++) {
@@ -193,21 +231,10 @@ function planPart(system: LinearSystem, ports: readonly number[], seconds: numbe
   return right.slice(n * columns);
 }
 
-/**
- * Weights that carry the last four stage points (at 0, −2/3, −1, −5/3 of a step) on to the next two (1/3 and 1) by
- * the cubic through them; row-major 2 × 4.
- */
+/** Past stage points that a forecast is drawn from: the last step's three, newest first, and the end of the one before. */
+export const PAST_TIMES = [0, STAGE_TIMES[1] - 1, STAGE_TIMES[0] - 1, -1] as const;
+
+/** Weights that carry the past stage points on to the next three by the polynomial through them; a stage a row. */
 export function forecastWeights(): Float64Array {
-  const past = [0, -2 / 3, -1, -5 / 3];
-  const weights = new Float64Array(8);
-  STAGE_TIMES.forEach((t, row) => {
-    past.forEach((tj, j) => {
-      let w = 1;
-      past.forEach((tk, k) => {
-        if (k !== j) w *= (t - tk) / (tj - tk);
-      });
-      weights[4 * row + j] = w;
-    });
-  });
-  return weights;
+  return Float64Array.from(STAGE_TIMES.flatMap((t) => lagrangeWeights(PAST_TIMES, t)));
 }

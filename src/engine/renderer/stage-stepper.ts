@@ -1,10 +1,10 @@
 import type { CarrierPath } from '../circuits/carrier-path.ts';
 import type { RestPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
-import type { Tank } from '../circuits/tuned-circuit.ts';
 import { CHORD, CHORD_BY_A, CHORD_BY_X, MEAN, MEAN_BY_A, MEAN_BY_X } from '../tubes/cycle-average.ts';
 import { PLATE_KNEE_VOLTS } from '../tubes/tube.ts';
-import { forecastWeights, planStep, type StepPlan } from './implicit-rule.ts';
+import { forecastWeights, planStep, STAGES, type StepPlan } from './implicit-rule.ts';
+import { TankStep } from './tank-step.ts';
 
 /** Past this plate voltage the knee factor is 1 to the last bit. */
 const KNEE_DONE_VOLTS = 19 * PLATE_KNEE_VOLTS;
@@ -26,6 +26,10 @@ const ROUSED_PASSES = 12;
 const LEAST_PLATE_SHARE = 0.1;
 /** Slopes are taken anew when the stage has moved this far, V: a third of the shortest e-fold of a grid law. */
 const STALE_VOLTS = 0.03;
+/** Most rounds of stage and coil in one step; one is the rule, two or three where a strong carrier swings widely. */
+const MOST_ROUNDS = 12;
+/** Equations of a step: grid and plate at every stage. */
+const SIZE = 2 * STAGES;
 
 /** Limits of a circuit: largest moves that end a step, and largest product of move and staleness of a quick pass. */
 interface MoveLimits {
@@ -43,66 +47,20 @@ function moveLimits(rest: RestPoint): MoveLimits {
   return { grid, plate: 0.5 * grid * rest.laws.mu, peak: grid, quick: SHORTEST_EFOLD_VOLTS * left };
 }
 
-/** Most rounds of stage and coil in one step; one is the rule, two or three where a strong carrier swings widely. */
-const MOST_ROUNDS = 12;
-/** Change of the envelope, re its rest value, that ends the rounds: far below the error limits of what is heard. */
-export const ENVELOPE_SHARE = 2e-6;
-
-/** What a coil as built needs in a step. */
-export interface TankStep {
-  /** Envelope at both stages without the detector's pull, set by the caller: real, imaginary, 4. */
-  readonly ahead: Float64Array;
-  /** Envelope at both stages as it came out, 4. */
-  readonly envelope: Float64Array;
-  /** The detector's pull −κ·(Y − Y_rest)·E at both stages, 1/s, 4, and its last four points, real then imaginary, 8. */
-  readonly pull: Float64Array;
-  readonly past: Float64Array;
-  /** Weights of the pull for the envelope, s: set by the caller, 8. */
-  readonly weights: Float64Array;
-  readonly perSiemensSecond: number;
-  readonly peak: number;
-  readonly input: { readonly re: number; readonly im: number };
-  /** Largest effect of a pull on the envelope within a step, s. */
-  reach: number;
-}
-
-function tankStep(rest: RestPoint, tank: Tank): TankStep {
-  return {
-    ahead: Float64Array.of(1, 0, 1, 0),
-    envelope: Float64Array.of(1, 0, 1, 0),
-    pull: new Float64Array(4),
-    past: new Float64Array(8),
-    weights: new Float64Array(8),
-    perSiemensSecond: tank.perSiemensSecond,
-    peak: rest.tuned.carrierPeakVolts,
-    input: rest.phasors.input,
-    reach: 0,
-  };
-}
-
-/** One part (0 real, 1 imaginary) of the envelope at a stage: what comes anyway and both pulls by their complex weights. */
-function tankSum(ahead: number, b: Float64Array, o: number, pull: Float64Array, part: 0 | 1): number {
-  const p0 = pull[0] as number;
-  const p1 = pull[1] as number;
-  const p2 = pull[2] as number;
-  const p3 = pull[3] as number;
-  const r1 = b[o] as number;
-  const i1 = b[o + 1] as number;
-  const r2 = b[o + 2] as number;
-  const i2 = b[o + 3] as number;
-  return part === 0 ? ahead + r1 * p0 - i1 * p1 + r2 * p2 - i2 * p3 : ahead + r1 * p1 + i1 * p0 + r2 * p3 + i2 * p2;
-}
-
 /**
- * The grid-leak stage at audio rate: one implicit step a call, no memory taken.
+ * The stage at audio rate: one implicit step a call, no memory taken.
  *
- * Unknowns at each of the two stages of a step are grid and plate volts and the carrier's peaks at grid and tube;
- * the peaks are eliminated stage by stage, then four equations give the volts. A forecast from the last two steps
- * makes one pass enough for most programme.
+ * Unknowns at each of the three stages of a step are grid and plate volts and the carrier's peaks at grid and tube; the
+ * peaks are eliminated stage by stage, then six equations give the volts. A forecast from the last stage points makes one
+ * pass enough for most programme.
  */
 export class StageStepper {
-  /** Carrier's peak at the tuned circuit a third into the coming step and at its end, V, 0 or more: set by the caller. */
-  readonly drive = new Float64Array(2);
+  /** Carrier's peak at the tuned circuit at the three stages of the coming step, V, 0 or more: set by the caller. */
+  readonly drive = new Float64Array(STAGES);
+  /** Coil as built; null for a stiff source. */
+  readonly tank: TankStep | null;
+  /** What is heard at half of the last step, V, weighted; and at its end. */
+  readonly heard = new Float64Array(2);
   private readonly laws: StageLaws;
   private readonly rest: RestPoint;
   private readonly path: CarrierPath;
@@ -113,41 +71,37 @@ export class StageStepper {
   /** Network unknowns now. */
   private readonly z: Float64Array;
   private readonly zNext: Float64Array;
-  /** Last four stage points, newest first: grid volts, plate volts, grid ratio, tube ratio, 4 of each. */
+  /** Past stage points, newest first: grid volts, plate volts, grid ratio, tube ratio, 4 of each. */
   private readonly past = new Float64Array(16);
-  private readonly w = new Float64Array(4);
-  private readonly ag = new Float64Array(2);
-  private readonly au = new Float64Array(2);
-  private readonly open = new Float64Array(4);
-  private readonly i0 = new Float64Array(4);
-  /** Slopes of grid and plate current by grid and plate volts, a stage: 8. */
-  private readonly slope = new Float64Array(8);
-  /** Peaks' own moves: constant part and slopes by grid and plate volts, a stage: 2 × 6. */
-  private readonly peak = new Float64Array(12);
-  private readonly m = new Float64Array(20);
+  private readonly w = new Float64Array(SIZE);
+  private readonly ag = new Float64Array(STAGES);
+  private readonly au = new Float64Array(STAGES);
+  private readonly open = new Float64Array(SIZE);
+  private readonly i0 = new Float64Array(SIZE);
+  private readonly iQuick = new Float64Array(SIZE);
+  private readonly move = new Float64Array(SIZE);
+  private readonly right = new Float64Array(SIZE);
+  /** Slopes of grid and plate current by grid and plate volts, 4 a stage. */
+  private readonly slope = new Float64Array(4 * STAGES);
+  /** Peaks' own moves: constant part and slopes by grid and plate volts, of grid and tube, 6 a stage. */
+  private readonly peak = new Float64Array(6 * STAGES);
   /** For quick passes: inverse of the peaks' 2 × 2 and the means' slopes by peak, 6 a stage; inverse port equations. */
-  private readonly blend = new Float64Array(12);
-  private readonly square = new Float64Array(16);
-  private readonly inverse = new Float64Array(16);
-  private readonly iQuick = new Float64Array(4);
+  private readonly blend = new Float64Array(6 * STAGES);
+  private readonly inverse = new Float64Array(SIZE * SIZE);
   /** Where the kept slopes were taken: grid volts, u less phi, peaks. */
   private readonly kept = new Float64Array(4);
   private readonly g = new Float64Array(6);
   private readonly k = new Float64Array(6);
   private readonly t = new Float64Array(6);
-  /** Coil as built: what it needs in a step; null for a stiff source. */
-  readonly tank: TankStep | null;
-  /** Chords of grid and tube a stage, S: 4; and their slopes by grid volts, peak, then tube's by volts, plate, peak: 5 a stage. */
-  private readonly chord = new Float64Array(4);
-  private readonly chordSlope = new Float64Array(10);
-  private readonly move = new Float64Array(4);
-  private readonly two = new Float64Array(2);
   private readonly y = new Float64Array(2);
+  /** Chords of grid and tube, 2 a stage, S; and their slopes: grid's by volts and peak, tube's by both volts and peak. */
+  private readonly chord = new Float64Array(2 * STAGES);
+  private readonly chordSlope = new Float64Array(5 * STAGES);
   /** Newton passes taken, steps that did not settle, and steps, since reset. */
   passes = 0;
   unsettled = 0;
   steps = 0;
-  /** Steps that the kept slopes settled. */
+  /** Solutions that the kept slopes settled. */
   quick = 0;
 
   /**
@@ -159,10 +113,11 @@ export class StageStepper {
     this.laws = laws;
     this.path = rest.path;
     this.limits = moveLimits(rest);
-    this.plan = planStep(rest.audio.system, [rest.audio.gridNode, rest.audio.plateNode], stepSeconds);
+    const { system, gridNode, plateNode, output } = rest.audio;
+    this.plan = planStep(system, [gridNode, plateNode], output, stepSeconds);
     this.z = new Float64Array(this.plan.size);
     this.zNext = new Float64Array(this.plan.size);
-    this.tank = rest.tuned.tank === null ? null : tankStep(rest, rest.tuned.tank);
+    this.tank = rest.tuned.tank === null ? null : new TankStep(rest, rest.tuned.tank);
     this.reset();
   }
 
@@ -184,8 +139,7 @@ export class StageStepper {
     const { rest, past } = this;
     this.z.set(rest.unknowns);
     const peak = rest.tuned.carrierPeakVolts;
-    const ratio = rest.path;
-    ratio.ratios(rest.currents.gridChord, rest.currents.tubeChord, this.t);
+    rest.path.ratios(rest.currents.gridChord, rest.currents.tubeChord, this.t);
     for (let j = 0; j < 4; j++) {
       past[j] = rest.gridVolts;
       past[4 + j] = rest.plateVolts;
@@ -197,7 +151,7 @@ export class StageStepper {
     this.steps = 0;
     this.quick = 0;
     this.kept.fill(Number.POSITIVE_INFINITY);
-    this.tank?.past.fill(0);
+    this.tank?.reset();
   }
 
   /** Network unknowns at the end of the last step: node volts, then branch amperes. Read only. */
@@ -218,7 +172,7 @@ export class StageStepper {
     const { plan, z, open } = this;
     const n = plan.size;
     this.steps++;
-    for (let r = 0; r < 4; r++) {
+    for (let r = 0; r < SIZE; r++) {
       let sum = plan.portConstant[r] as number;
       for (let c = 0; c < n; c++) sum += (plan.portFromState[r * n + c] as number) * (z[c] as number);
       open[r] = sum;
@@ -236,8 +190,7 @@ export class StageStepper {
     let settled = this.quickPass();
     for (let pass = 0; pass < MOST_PASSES && !settled; pass++) {
       this.passes++;
-      this.linearise(0);
-      this.linearise(1);
+      for (let s = 0; s < STAGES; s++) this.linearise(s);
       this.keepSlopes();
       settled = this.solvePorts(pass);
     }
@@ -245,69 +198,51 @@ export class StageStepper {
   }
 
   /**
-   * Stage and coil together: the detector's pull on the coil is forecast, the stage solved under the envelope that
-   * follows, and both repeated while the pull that comes out still moves the envelope.
+   * Stage and coil together: the detector's admittance is forecast, the stage solved under the envelope that follows, and
+   * both repeated while the admittance that comes out still moves the envelope.
    */
   private solveWithTank(tank: TankStep): void {
-    const { ahead, envelope, pull, past, weights: b, perSiemensSecond, peak, input } = tank;
-    const { drive, weights } = this;
-    for (let s = 0; s < 2; s++) {
-      for (let part = 0; part < 2; part++) {
-        let sum = 0;
-        for (let q = 0; q < 4; q++) sum += (weights[4 * s + q] as number) * (past[4 * part + q] as number);
-        pull[2 * s + part] = sum;
-      }
-    }
+    const { envelope, admittance, input, peak } = tank;
+    const { drive, ag, au, y, chord, at } = this;
+    tank.forecast(this.weights);
+    tank.solve();
     for (let round = 0; round < MOST_ROUNDS; round++) {
-      for (let s = 0; s < 2; s++) {
-        const o = 4 * s;
-        const re = tankSum(ahead[2 * s] as number, b, o, pull, 0);
-        const im = tankSum(ahead[2 * s + 1] as number, b, o, pull, 1);
+      for (let s = 0; s < STAGES; s++) {
+        const re = envelope[2 * s] as number;
+        const im = envelope[2 * s + 1] as number;
         const before = drive[s] as number;
-        envelope[2 * s] = re;
-        envelope[2 * s + 1] = im;
-        drive[s] = peak * Math.sqrt(re * re + im * im);
+        const now = peak * Math.sqrt(re * re + im * im);
+        drive[s] = now;
         if (round > 0 && before > 0) {
-          const share = (drive[s] as number) / before;
-          this.ag[s] = (this.ag[s] as number) * share;
-          this.au[s] = (this.au[s] as number) * share;
+          ag[s] = ((ag[s] as number) * now) / before;
+          au[s] = ((au[s] as number) * now) / before;
         }
       }
       if (round === 0) this.forecast();
       this.solve();
       let moved = 0;
-      for (let s = 0; s < 2; s++) {
-        this.two[0] = this.chord[2 * s] as number;
-        this.two[1] = this.chord[2 * s + 1] as number;
-        this.path.inputAt(this.two, this.y);
-        const yRe = perSiemensSecond * ((this.y[0] as number) - input.re);
-        const yIm = perSiemensSecond * ((this.y[1] as number) - input.im);
-        const re = envelope[2 * s] as number;
-        const im = envelope[2 * s + 1] as number;
-        const nRe = yIm * im - yRe * re;
-        const nIm = -yRe * im - yIm * re;
-        moved += Math.abs(nRe - (pull[2 * s] as number)) + Math.abs(nIm - (pull[2 * s + 1] as number));
-        pull[2 * s] = nRe;
-        pull[2 * s + 1] = nIm;
+      for (let s = 0; s < STAGES; s++) {
+        at[0] = chord[2 * s] as number;
+        at[1] = chord[2 * s + 1] as number;
+        this.path.inputAt(at, y);
+        const yRe = (y[0] as number) - input.re;
+        const yIm = (y[1] as number) - input.im;
+        const change =
+          Math.abs(yRe - (admittance[2 * s] as number)) + Math.abs(yIm - (admittance[2 * s + 1] as number));
+        moved = Math.max(moved, change * (drive[s] as number));
+        admittance[2 * s] = yRe;
+        admittance[2 * s + 1] = yIm;
       }
-      if (moved * tank.reach < ENVELOPE_SHARE) break;
+      tank.solve();
+      if (moved < tank.most) break;
     }
-    // the step ends with the pull as it came out
-    envelope[2] = tankSum(ahead[2] as number, b, 4, pull, 0);
-    envelope[3] = tankSum(ahead[3] as number, b, 4, pull, 1);
-    for (let part = 0; part < 2; part++) {
-      const o = 4 * part;
-      past[o + 3] = past[o + 1] as number;
-      past[o + 2] = past[o] as number;
-      past[o + 1] = pull[part] as number;
-      past[o] = pull[2 + part] as number;
-    }
+    tank.advance();
   }
 
-  /** Carries the last four stage points on to the next two. */
+  /** Carries the past stage points on to the coming ones. */
   private forecast(): void {
     const { past, weights, w, ag, au } = this;
-    for (let s = 0; s < 2; s++) {
+    for (let s = 0; s < STAGES; s++) {
       const w0 = weights[4 * s] as number;
       const w1 = weights[4 * s + 1] as number;
       const w2 = weights[4 * s + 2] as number;
@@ -326,38 +261,33 @@ export class StageStepper {
     }
   }
 
-  /** The network's next state from the stage currents; the stage points become the past. */
+  /** The network's next state from the stage currents, and what is heard; the stage points become the past. */
   private advance(): void {
-    const { plan, z, past, w, ag, au, i0, zNext } = this;
-    const e0 = this.drive[0] as number;
-    const e1 = this.drive[1] as number;
+    const { plan, z, zNext, past, w, ag, au, i0, drive, heard } = this;
+    const { index, weight } = this.rest.audio.output;
     const n = plan.size;
     for (let r = 0; r < n; r++) {
       let sum = plan.stateConstant[r] as number;
       for (let c = 0; c < n; c++) sum += (plan.stateFromState[r * n + c] as number) * (z[c] as number);
-      for (let c = 0; c < 4; c++) sum -= (plan.stateFromCurrent[4 * r + c] as number) * (i0[c] as number);
+      for (let c = 0; c < SIZE; c++) sum -= (plan.stateFromCurrent[SIZE * r + c] as number) * (i0[c] as number);
       zNext[r] = sum;
     }
+    let half = plan.halfConstant;
+    for (let c = 0; c < n; c++) half += (plan.halfFromState[c] as number) * (z[c] as number);
+    for (let c = 0; c < SIZE; c++) half -= (plan.halfFromCurrent[c] as number) * (i0[c] as number);
     z.set(zNext);
-    past[3] = past[1] as number;
-    past[7] = past[5] as number;
-    past[11] = past[9] as number;
-    past[15] = past[13] as number;
-    past[2] = past[0] as number;
-    past[6] = past[4] as number;
-    past[10] = past[8] as number;
-    past[14] = past[12] as number;
-    past[1] = w[0] as number;
-    past[5] = w[1] as number;
-    past[0] = w[2] as number;
-    past[4] = w[3] as number;
-    if (e0 > 0) {
-      past[9] = (ag[0] as number) / e0;
-      past[13] = (au[0] as number) / e0;
-    }
-    if (e1 > 0) {
-      past[8] = (ag[1] as number) / e1;
-      past[12] = (au[1] as number) / e1;
+    heard[0] = weight * half;
+    heard[1] = weight * (z[index] as number);
+    for (let q = 0; q < 16; q += 4) past[q + 3] = past[q] as number;
+    for (let s = 0; s < STAGES; s++) {
+      const to = STAGES - 1 - s;
+      past[to] = w[2 * s] as number;
+      past[4 + to] = w[2 * s + 1] as number;
+      const e = drive[s] as number;
+      if (e > 0) {
+        past[8 + to] = (ag[s] as number) / e;
+        past[12 + to] = (au[s] as number) / e;
+      }
     }
   }
 
@@ -366,22 +296,21 @@ export class StageStepper {
    * slopes can have left is far below what is heard; else the estimate stays as forecast and the full passes follow.
    */
   private quickPass(): boolean {
-    const { laws, g, k, t, w, ag, au, open, i0, iQuick, slope, peak, blend, inverse, kept, at, path, chord } = this;
+    const { laws, g, k, t, w, ag, au, i0, iQuick, slope, peak, blend, kept, at, path, chord, move, drive } = this;
     const { grid, cathode, phi, mu } = laws;
     const perMu = 1 / mu;
-    const e0 = this.drive[0] as number;
-    const e1 = this.drive[1] as number;
-    const u1 = (w[2] as number) + (w[3] as number) * perMu;
+    const last = STAGES - 1;
+    const u1 = (w[2 * last] as number) + (w[2 * last + 1] as number) * perMu;
     const stale =
-      Math.abs((w[2] as number) - (kept[0] as number)) +
+      Math.abs((w[2 * last] as number) - (kept[0] as number)) +
       Math.abs(u1 - (kept[1] as number)) +
-      Math.abs((ag[1] as number) - (kept[2] as number)) +
-      Math.abs((au[1] as number) - (kept[3] as number));
+      Math.abs((ag[last] as number) - (kept[2] as number)) +
+      Math.abs((au[last] as number) - (kept[3] as number));
     if (!(stale < STALE_VOLTS)) return false;
-    for (let s = 0; s < 2; s++) {
+    for (let s = 0; s < STAGES; s++) {
       const v = w[2 * s] as number;
       const p = w[2 * s + 1] as number;
-      const e = s === 0 ? e0 : e1;
+      const e = drive[s] as number;
       const knee = laws.knee && p < KNEE_DONE_VOLTS ? (p > 0 ? Math.tanh(p / PLATE_KNEE_VOLTS) : 0) : 1;
       const gridPeak = ag[s] as number;
       const tubePeak = au[s] as number;
@@ -411,141 +340,99 @@ export class StageStepper {
         drawn +
         laws.extraPlateSiemens * (p - laws.restPlateVolts);
     }
-    const zz = this.plan.portFromCurrent;
-    const c0 = iQuick[0] as number;
-    const c1 = iQuick[1] as number;
-    const c2 = iQuick[2] as number;
-    const c3 = iQuick[3] as number;
-    const r0 =
-      (open[0] as number) -
-      (w[0] as number) -
-      (zz[0] as number) * c0 -
-      (zz[1] as number) * c1 -
-      (zz[2] as number) * c2 -
-      (zz[3] as number) * c3;
-    const r1 =
-      (open[1] as number) -
-      (w[1] as number) -
-      (zz[4] as number) * c0 -
-      (zz[5] as number) * c1 -
-      (zz[6] as number) * c2 -
-      (zz[7] as number) * c3;
-    const r2 =
-      (open[2] as number) -
-      (w[2] as number) -
-      (zz[8] as number) * c0 -
-      (zz[9] as number) * c1 -
-      (zz[10] as number) * c2 -
-      (zz[11] as number) * c3;
-    const r3 =
-      (open[3] as number) -
-      (w[3] as number) -
-      (zz[12] as number) * c0 -
-      (zz[13] as number) * c1 -
-      (zz[14] as number) * c2 -
-      (zz[15] as number) * c3;
-    const d0 =
-      (inverse[0] as number) * r0 +
-      (inverse[1] as number) * r1 +
-      (inverse[2] as number) * r2 +
-      (inverse[3] as number) * r3;
-    const d1 =
-      (inverse[4] as number) * r0 +
-      (inverse[5] as number) * r1 +
-      (inverse[6] as number) * r2 +
-      (inverse[7] as number) * r3;
-    const d2 =
-      (inverse[8] as number) * r0 +
-      (inverse[9] as number) * r1 +
-      (inverse[10] as number) * r2 +
-      (inverse[11] as number) * r3;
-    const d3 =
-      (inverse[12] as number) * r0 +
-      (inverse[13] as number) * r1 +
-      (inverse[14] as number) * r2 +
-      (inverse[15] as number) * r3;
-    const dg0 = (peak[0] as number) + (peak[1] as number) * d0 + (peak[2] as number) * d1;
-    const du0 = (peak[3] as number) + (peak[4] as number) * d0 + (peak[5] as number) * d1;
-    const dg1 = (peak[6] as number) + (peak[7] as number) * d2 + (peak[8] as number) * d3;
-    const du1 = (peak[9] as number) + (peak[10] as number) * d2 + (peak[11] as number) * d3;
-    const size =
-      Math.abs(d0) +
-      Math.abs(d2) +
-      (Math.abs(d1) + Math.abs(d3)) / mu +
-      Math.abs(dg0) +
-      Math.abs(dg1) +
-      Math.abs(du0) +
-      Math.abs(du1);
+    this.portMoves(iQuick);
+    let size = 0;
+    for (let s = 0; s < STAGES; s++) {
+      const dv = move[2 * s] as number;
+      const dp = move[2 * s + 1] as number;
+      const o = 6 * s;
+      const dg = (peak[o] as number) + (peak[o + 1] as number) * dv + (peak[o + 2] as number) * dp;
+      const du = (peak[o + 3] as number) + (peak[o + 4] as number) * dv + (peak[o + 5] as number) * dp;
+      size += Math.abs(dv) + Math.abs(dp) * perMu + Math.abs(dg) + Math.abs(du);
+    }
     if (!(size * (stale + size) < this.limits.quick)) return false;
-    w[0] = (w[0] as number) + d0;
-    w[1] = (w[1] as number) + d1;
-    w[2] = (w[2] as number) + d2;
-    w[3] = (w[3] as number) + d3;
-    ag[0] = (ag[0] as number) + dg0;
-    ag[1] = (ag[1] as number) + dg1;
-    au[0] = (au[0] as number) + du0;
-    au[1] = (au[1] as number) + du1;
-    i0[0] = c0 + (slope[0] as number) * d0 + (slope[1] as number) * d1;
-    i0[1] = c1 + (slope[2] as number) * d0 + (slope[3] as number) * d1;
-    i0[2] = c2 + (slope[4] as number) * d2 + (slope[5] as number) * d3;
-    i0[3] = c3 + (slope[6] as number) * d2 + (slope[7] as number) * d3;
-    const { move } = this;
-    move[0] = d0;
-    move[1] = d1;
-    move[2] = dg0;
-    move[3] = du0;
-    this.moveChords(0);
-    move[0] = d2;
-    move[1] = d3;
-    move[2] = dg1;
-    move[3] = du1;
+    for (let s = 0; s < STAGES; s++) {
+      const dv = move[2 * s] as number;
+      const dp = move[2 * s + 1] as number;
+      const o = 6 * s;
+      const q = 4 * s;
+      const dg = (peak[o] as number) + (peak[o + 1] as number) * dv + (peak[o + 2] as number) * dp;
+      const du = (peak[o + 3] as number) + (peak[o + 4] as number) * dv + (peak[o + 5] as number) * dp;
+      w[2 * s] = (w[2 * s] as number) + dv;
+      w[2 * s + 1] = (w[2 * s + 1] as number) + dp;
+      ag[s] = (ag[s] as number) + dg;
+      au[s] = (au[s] as number) + du;
+      i0[2 * s] = (iQuick[2 * s] as number) + (slope[q] as number) * dv + (slope[q + 1] as number) * dp;
+      i0[2 * s + 1] = (iQuick[2 * s + 1] as number) + (slope[q + 2] as number) * dv + (slope[q + 3] as number) * dp;
+    }
     this.moveChords(1);
     this.quick++;
     return true;
   }
 
-  /** Takes the chords of a stage along with its last move: grid volts, plate volts, grid peak, tube peak in `move`. */
-  private moveChords(s: number): void {
-    const { chord, chordSlope, move } = this;
-    const o = 5 * s;
-    chord[2 * s] =
-      (chord[2 * s] as number) +
-      (chordSlope[o] as number) * (move[0] as number) +
-      (chordSlope[o + 1] as number) * (move[2] as number);
-    chord[2 * s + 1] =
-      (chord[2 * s + 1] as number) +
-      (chordSlope[o + 2] as number) * (move[0] as number) +
-      (chordSlope[o + 3] as number) * (move[1] as number) +
-      (chordSlope[o + 4] as number) * (move[3] as number);
+  /** `move` = inverse · (open − w − Z·currents). */
+  private portMoves(currents: Float64Array): void {
+    const { plan, open, w, right, inverse, move } = this;
+    const zz = plan.portFromCurrent;
+    for (let r = 0; r < SIZE; r++) {
+      let sum = (open[r] as number) - (w[r] as number);
+      for (let c = 0; c < SIZE; c++) sum -= (zz[SIZE * r + c] as number) * (currents[c] as number);
+      right[r] = sum;
+    }
+    for (let r = 0; r < SIZE; r++) {
+      let sum = 0;
+      for (let c = 0; c < SIZE; c++) sum += (inverse[SIZE * r + c] as number) * (right[c] as number);
+      move[r] = sum;
+    }
   }
 
-  /** Keeps the slopes of a full pass, and the inverse of its port equations, for the quick passes that follow. */
-  private keepSlopes(): void {
-    const { plan, laws, slope, w, ag, au, kept, inverse, square } = this;
-    const zz = plan.portFromCurrent;
-    for (let r = 0; r < 4; r++) {
-      const o = 4 * r;
-      const z0 = zz[o] as number;
-      const z1 = zz[o + 1] as number;
-      const z2 = zz[o + 2] as number;
-      const z3 = zz[o + 3] as number;
-      square[o] = z0 * (slope[0] as number) + z1 * (slope[2] as number);
-      square[o + 1] = z0 * (slope[1] as number) + z1 * (slope[3] as number);
-      square[o + 2] = z2 * (slope[4] as number) + z3 * (slope[6] as number);
-      square[o + 3] = z2 * (slope[5] as number) + z3 * (slope[7] as number);
-      square[o + r] = (square[o + r] as number) + 1;
+  /** Takes the chords of all stages along with a share of the last move. */
+  private moveChords(share: number): void {
+    const { chord, chordSlope, move, peak } = this;
+    for (let s = 0; s < STAGES; s++) {
+      const dv = move[2 * s] as number;
+      const dp = move[2 * s + 1] as number;
+      const p = 6 * s;
+      const o = 5 * s;
+      const dg = (peak[p] as number) + (peak[p + 1] as number) * dv + (peak[p + 2] as number) * dp;
+      const du = (peak[p + 3] as number) + (peak[p + 4] as number) * dv + (peak[p + 5] as number) * dp;
+      chord[2 * s] =
+        (chord[2 * s] as number) + share * ((chordSlope[o] as number) * dv + (chordSlope[o + 1] as number) * dg);
+      chord[2 * s + 1] =
+        (chord[2 * s + 1] as number) +
+        share *
+          ((chordSlope[o + 2] as number) * dv +
+            (chordSlope[o + 3] as number) * dp +
+            (chordSlope[o + 4] as number) * du);
     }
-    invertFour(square, inverse);
-    kept[0] = w[2] as number;
-    kept[1] = (w[2] as number) + (w[3] as number) / laws.mu;
-    kept[2] = ag[1] as number;
-    kept[3] = au[1] as number;
+  }
+
+  /** Keeps the inverse of a full pass's port equations, 1 + Z·J, for this pass and the quick ones that follow. */
+  private keepSlopes(): void {
+    const { plan, laws, slope, w, ag, au, kept, inverse } = this;
+    const zz = plan.portFromCurrent;
+    for (let r = 0; r < SIZE; r++) {
+      for (let s = 0; s < STAGES; s++) {
+        const z0 = zz[SIZE * r + 2 * s] as number;
+        const z1 = zz[SIZE * r + 2 * s + 1] as number;
+        const q = 4 * s;
+        inverse[SIZE * r + 2 * s] = z0 * (slope[q] as number) + z1 * (slope[q + 2] as number);
+        inverse[SIZE * r + 2 * s + 1] = z0 * (slope[q + 1] as number) + z1 * (slope[q + 3] as number);
+      }
+      inverse[(SIZE + 1) * r] = (inverse[(SIZE + 1) * r] as number) + 1;
+    }
+    invertInPlace(inverse);
+    const last = STAGES - 1;
+    kept[0] = w[2 * last] as number;
+    kept[1] = (w[2 * last] as number) + (w[2 * last + 1] as number) / laws.mu;
+    kept[2] = ag[last] as number;
+    kept[3] = au[last] as number;
   }
 
   /** Currents and their slopes at one stage about the present estimate, the peaks eliminated. */
   private linearise(s: number): void {
     const e = this.drive[s] as number;
-    const { laws, g, k, t, w, ag, au, i0, slope, peak, blend, at } = this;
+    const { laws, g, k, t, w, ag, au, i0, slope, peak, blend, at, chord, chordSlope } = this;
     const v = w[2 * s] as number;
     const p = w[2 * s + 1] as number;
     const mu = laws.mu;
@@ -566,6 +453,8 @@ export class StageStepper {
     const chordK = k[CHORD] as number;
     at[0] = g[CHORD] as number;
     at[1] = knee * chordK;
+    chord[2 * s] = at[0];
+    chord[2 * s + 1] = at[1];
     this.path.ratiosAt(at, t);
     const rg = (t[0] as number) * e;
     const ru = (t[1] as number) * e;
@@ -574,14 +463,12 @@ export class StageStepper {
     const cgx = g[CHORD_BY_X] as number;
     const ckx = knee * (k[CHORD_BY_X] as number);
     const ckp = ckx / mu + kneeSlope * chordK;
-    const chords = this.chordSlope;
-    this.chord[2 * s] = g[CHORD] as number;
-    this.chord[2 * s + 1] = knee * chordK;
-    chords[5 * s] = cgx;
-    chords[5 * s + 1] = cga;
-    chords[5 * s + 2] = ckx;
-    chords[5 * s + 3] = ckp;
-    chords[5 * s + 4] = cka;
+    const cs = 5 * s;
+    chordSlope[cs] = cgx;
+    chordSlope[cs + 1] = cga;
+    chordSlope[cs + 2] = ckx;
+    chordSlope[cs + 3] = ckp;
+    chordSlope[cs + 4] = cka;
     const tgg = rg * (t[2] as number);
     const tgk = rg * (t[3] as number);
     const tug = ru * (t[4] as number);
@@ -614,10 +501,10 @@ export class StageStepper {
     blend[o + 1] = -m12 * inverse;
     blend[o + 2] = -m21 * inverse;
     blend[o + 3] = m11 * inverse;
-    blend[o + 4] = g[MEAN_BY_A] as number;
-    blend[o + 5] = knee * (k[MEAN_BY_A] as number);
     const ga = g[MEAN_BY_A] as number;
     const ka = knee * (k[MEAN_BY_A] as number);
+    blend[o + 4] = ga;
+    blend[o + 5] = ka;
     const kx = knee * (k[MEAN_BY_X] as number);
     const mean = k[MEAN] as number;
     const grid = (g[MEAN] as number) + ga * g0;
@@ -632,51 +519,24 @@ export class StageStepper {
     slope[4 * s + 3] = kx / mu + kneeSlope * mean + ka * up - gridByP + extra;
   }
 
-  /** Solves the four port volts with the stage currents taken as straight; moves the estimates. True when settled. */
+  /** Solves the port volts with the stage currents taken as straight; moves the estimates. True when settled. */
   private solvePorts(pass: number): boolean {
-    const { plan, w, ag, au, open, i0, slope, peak, m, move } = this;
-    const zz = plan.portFromCurrent;
-    // (1 + Z·J)·d = open − Z·i0 − w, 4 × 5 augmented in m
-    for (let r = 0; r < 4; r++) {
-      const z0 = zz[4 * r] as number;
-      const z1 = zz[4 * r + 1] as number;
-      const z2 = zz[4 * r + 2] as number;
-      const z3 = zz[4 * r + 3] as number;
-      const o = 5 * r;
-      m[o] = z0 * (slope[0] as number) + z1 * (slope[2] as number);
-      m[o + 1] = z0 * (slope[1] as number) + z1 * (slope[3] as number);
-      m[o + 2] = z2 * (slope[4] as number) + z3 * (slope[6] as number);
-      m[o + 3] = z2 * (slope[5] as number) + z3 * (slope[7] as number);
-      m[o + r] = (m[o + r] as number) + 1;
-      m[o + 4] =
-        (open[r] as number) -
-        (w[r] as number) -
-        z0 * (i0[0] as number) -
-        z1 * (i0[1] as number) -
-        z2 * (i0[2] as number) -
-        z3 * (i0[3] as number);
+    const { w, ag, au, i0, slope, peak, move, rest } = this;
+    this.portMoves(i0);
+    let grid = 0;
+    let plate = 0;
+    for (let s = 0; s < STAGES; s++) {
+      grid = Math.max(grid, Math.abs(move[2 * s] as number));
+      plate = Math.max(plate, Math.abs(move[2 * s + 1] as number));
     }
-    // conductances are positive and the diagonal leads, so elimination needs no pivoting
-    for (let c = 0; c < 3; c++) {
-      const inverse = 1 / (m[6 * c] as number);
-      for (let r = c + 1; r < 4; r++) {
-        const f = (m[5 * r + c] as number) * inverse;
-        for (let q = c + 1; q < 5; q++) m[5 * r + q] = (m[5 * r + q] as number) - f * (m[5 * c + q] as number);
-      }
-    }
-    const d3 = (m[19] as number) / (m[18] as number);
-    const d2 = ((m[14] as number) - (m[13] as number) * d3) / (m[12] as number);
-    const d1 = ((m[9] as number) - (m[8] as number) * d3 - (m[7] as number) * d2) / (m[6] as number);
-    const d0 =
-      ((m[4] as number) - (m[3] as number) * d3 - (m[2] as number) * d2 - (m[1] as number) * d1) / (m[0] as number);
-    const grid = Math.max(Math.abs(d0), Math.abs(d2));
-    const plate = Math.max(Math.abs(d1), Math.abs(d3));
     if (!(grid < 1e6) || !(plate < 1e9)) {
       // lost: start this step again from the rest point's neighbourhood
-      w[0] = this.rest.gridVolts;
-      w[1] = this.rest.plateVolts;
-      w[2] = this.rest.gridVolts;
-      w[3] = this.rest.plateVolts;
+      for (let s = 0; s < STAGES; s++) {
+        w[2 * s] = rest.gridVolts;
+        w[2 * s + 1] = rest.plateVolts;
+        ag[s] = 0;
+        au[s] = 0;
+      }
       return false;
     }
     const near = grid < this.limits.grid && plate < this.limits.plate;
@@ -685,9 +545,9 @@ export class StageStepper {
     if (pass > ROUSED_PASSES && !near) share *= 0.5;
     let whole = share === 1;
     let largest = 0;
-    for (let s = 0; s < 2; s++) {
-      const dv = s === 0 ? d0 : d2;
-      const dp = s === 0 ? d1 : d3;
+    for (let s = 0; s < STAGES; s++) {
+      const dv = move[2 * s] as number;
+      const dp = move[2 * s + 1] as number;
       const o = 6 * s;
       const dg = (peak[o] as number) + (peak[o + 1] as number) * dv + (peak[o + 2] as number) * dp;
       const du = (peak[o + 3] as number) + (peak[o + 4] as number) * dv + (peak[o + 5] as number) * dp;
@@ -705,33 +565,26 @@ export class StageStepper {
       au[s] = Math.max(b + share * du, 0.2 * b);
       i0[2 * s] = (i0[2 * s] as number) + (slope[4 * s] as number) * dv + (slope[4 * s + 1] as number) * dp;
       i0[2 * s + 1] = (i0[2 * s + 1] as number) + (slope[4 * s + 2] as number) * dv + (slope[4 * s + 3] as number) * dp;
-      move[0] = share * dv;
-      move[1] = share * dp;
-      move[2] = share * dg;
-      move[3] = share * du;
-      this.moveChords(s);
       largest = Math.max(largest, Math.abs(dg), Math.abs(du));
     }
+    this.moveChords(share);
     return whole && near && largest < this.limits.peak;
   }
 }
 
-/** Inverse of a 4 × 4 matrix with a leading diagonal; `m` is used up. */
-function invertFour(m: Float64Array, out: Float64Array): void {
-  for (let k = 0; k < 16; k++) out[k] = k % 5 === 0 ? 1 : 0;
-  for (let c = 0; c < 4; c++) {
-    const scale = 1 / (m[5 * c] as number);
-    for (let q = 0; q < 4; q++) {
-      m[4 * c + q] = (m[4 * c + q] as number) * scale;
-      out[4 * c + q] = (out[4 * c + q] as number) * scale;
-    }
-    for (let r = 0; r < 4; r++) {
-      if (r === c) continue;
-      const f = m[4 * r + c] as number;
-      for (let q = 0; q < 4; q++) {
-        m[4 * r + q] = (m[4 * r + q] as number) - f * (m[4 * c + q] as number);
-        out[4 * r + q] = (out[4 * r + q] as number) - f * (out[4 * c + q] as number);
-      }
+/** Inverse of a square matrix of `SIZE` rows with a leading diagonal, where it stands; no pivoting. */
+function invertInPlace(m: Float64Array): void {
+  for (let k = 0; k < SIZE; k++) {
+    const row = SIZE * k;
+    const scale = 1 / (m[row + k] as number);
+    m[row + k] = 1;
+    for (let c = 0; c < SIZE; c++) m[row + c] = (m[row + c] as number) * scale;
+    for (let r = 0; r < SIZE; r++) {
+      if (r === k) continue;
+      const other = SIZE * r;
+      const factor = m[other + k] as number;
+      m[other + k] = 0;
+      for (let c = 0; c < SIZE; c++) m[other + c] = (m[other + c] as number) - factor * (m[row + c] as number);
     }
   }
 }

@@ -1,24 +1,29 @@
+/** Fractions of a step at which the envelope is wanted: the circuit's own stage times, the Radau points. */
+const POINTS = [(4 - Math.sqrt(6)) / 10, (4 + Math.sqrt(6)) / 10, 1] as const;
+/** Where the station's envelope is known within a step: at its start and at those points. */
+const KNOWN = [0, ...POINTS] as const;
+
 /**
  * The tuned circuit on the envelope: one complex pole, E' = p·(E − s) with p = −(π·f0/Q)·(1 + j·2Qδ/f0), so that the
- * unmodulated carrier stands at 1. Solved exactly over a step for an envelope taken as the parabola through its
- * values at 0, 1/3 and 1 of the step, the stage times of the circuit's own rule.
+ * unmodulated carrier stands at 1. Solved exactly over a step for an envelope taken as the cubic through its values at
+ * the start and the three points of the step.
+ *
+ * A coil that the detector pulls has a source besides: E' = p·(E − s) + n. Then a step is opened, the source found with
+ * the rest of the circuit, and the step finished with what E came to.
  */
 export class TunedEnvelope {
-  /** Weights of E, s(0), s(1/3), s(1) for the values at 1/3 and 1: real then imaginary, 16. */
-  readonly weights: Float64Array;
+  /** A row a point: weights of E, s at the start, s at the points; five real, then five imaginary. */
+  readonly weights = new Float64Array(10 * POINTS.length);
+  /** A row a point: complex weights of a source that is the parabola through its values at the points, 6; seconds. */
+  readonly sourceWeights = new Float64Array(6 * POINTS.length);
   /** Whether station and resonance coincide, so that the envelope stays real. */
   readonly tuned: boolean;
+  /** E at the points of the last step, real and imaginary, before any source. */
+  readonly ahead = Float64Array.of(1, 0, 1, 0, 1, 0);
+  /** |E| at the points of the last step. */
+  readonly magnitudes = new Float64Array([1, 1, 1]);
   /** E (real, imaginary) and the last envelope. */
   private readonly state = Float64Array.of(1, 0, 1);
-  /**
-   * Weights of a source n, dE/dt = … + n, straight through its values at 1/3 and 1: for E at 1/3 from both, then at 1, each
-   * as real and imaginary, 8; seconds.
-   */
-  readonly sourceWeights = new Float64Array(8);
-  /** E at a third of the last step and at its end, real and imaginary, before any source. */
-  readonly ahead = Float64Array.of(1, 0, 1, 0);
-  /** |E| at a third of the last step and at its end. */
-  readonly magnitudes = new Float64Array([1, 1]);
 
   /**
    * @param carrierHertz  Hz
@@ -30,14 +35,20 @@ export class TunedEnvelope {
     const p = (-Math.PI * carrierHertz) / loadedQ;
     const slant = (2 * loadedQ * detuneHertz) / carrierHertz;
     this.tuned = slant === 0;
-    this.weights = new Float64Array(16);
-    [1 / 3, 1].forEach((c, row) => {
-      const weights = stepWeights(c * p * stepSeconds, c * p * stepSeconds * slant, c);
-      weights.forEach(([re, im], k) => {
-        this.weights[8 * row + k] = re;
-        this.weights[8 * row + 4 + k] = im;
+    POINTS.forEach((c, row) => {
+      const z: Pair = [c * p * stepSeconds, c * p * stepSeconds * slant];
+      const brought = broughtByPowers(z, c);
+      // −z: the source of the envelope is −p·s
+      const drive = brought.map((power) => product([-z[0] / c, -z[1] / c], power));
+      const parts = [[Math.exp(z[0]) * Math.cos(z[1]), Math.exp(z[0]) * Math.sin(z[1])], ...mixed(KNOWN, drive)];
+      parts.forEach(([re, im], k) => {
+        this.weights[10 * row + k] = re as number;
+        this.weights[10 * row + 5 + k] = im as number;
       });
-      this.sourceWeights.set(lineWeights(c * p * stepSeconds, c * p * stepSeconds * slant, c, stepSeconds), 4 * row);
+      mixed(POINTS, brought).forEach(([re, im], k) => {
+        this.sourceWeights[6 * row + 2 * k] = re * stepSeconds;
+        this.sourceWeights[6 * row + 2 * k + 1] = im * stepSeconds;
+      });
     });
   }
 
@@ -46,54 +57,41 @@ export class TunedEnvelope {
     this.state[1] = 0;
     this.state[2] = 1;
     this.magnitudes.fill(1);
-    this.ahead.set([1, 0, 1, 0]);
+    for (let k = 0; k < this.ahead.length; k++) this.ahead[k] = k % 2 === 0 ? 1 : 0;
   }
 
-  /** Takes the envelope at a third of the step and at its end, re the carrier: 1 + `modulation[from]` and the next. */
+  /** Takes the envelope at the three points, re the carrier: 1 + `modulation[from]` and the next two. */
   step(modulation: Float64Array, from: number): void {
-    const third = 1 + (modulation[from] as number);
-    const end = 1 + (modulation[from + 1] as number);
-    const { weights: w, state } = this;
-    const re = state[0] as number;
-    const im = state[1] as number;
-    const last = state[2] as number;
-    for (let row = 0; row < 2; row++) {
-      const o = 8 * row;
-      const drive = (w[o + 1] as number) * last + (w[o + 2] as number) * third + (w[o + 3] as number) * end;
-      if (this.tuned) {
-        const value = (w[o] as number) * re + drive;
-        this.magnitudes[row] = Math.abs(value);
-        if (row === 1) state[0] = value;
-        continue;
-      }
-      const driveIm = (w[o + 5] as number) * last + (w[o + 6] as number) * third + (w[o + 7] as number) * end;
-      const nextRe = (w[o] as number) * re - (w[o + 4] as number) * im + drive;
-      const nextIm = (w[o] as number) * im + (w[o + 4] as number) * re + driveIm;
-      this.magnitudes[row] = Math.sqrt(nextRe * nextRe + nextIm * nextIm);
-      if (row === 1) {
-        state[0] = nextRe;
-        state[1] = nextIm;
-      }
+    this.open(modulation, from);
+    const { ahead, magnitudes } = this;
+    for (let row = 0; row < magnitudes.length; row++) {
+      const re = ahead[2 * row] as number;
+      const im = ahead[2 * row + 1] as number;
+      magnitudes[row] = this.tuned ? Math.abs(re) : Math.sqrt(re * re + im * im);
     }
-    state[2] = end;
+    this.state[0] = ahead[4] as number;
+    this.state[1] = ahead[5] as number;
   }
 
-  /** As `step`, but the step is left open for a source: E without it goes to `ahead`, and `finish` ends the step. */
+  /** As `step`, but left open for a source: E without it goes to `ahead`, and `finish` ends the step. */
   open(modulation: Float64Array, from: number): void {
-    const third = 1 + (modulation[from] as number);
-    const end = 1 + (modulation[from + 1] as number);
     const { weights: w, state, ahead } = this;
     const re = state[0] as number;
     const im = state[1] as number;
-    const last = state[2] as number;
-    for (let row = 0; row < 2; row++) {
-      const o = 8 * row;
-      const drive = (w[o + 1] as number) * last + (w[o + 2] as number) * third + (w[o + 3] as number) * end;
-      const driveIm = (w[o + 5] as number) * last + (w[o + 6] as number) * third + (w[o + 7] as number) * end;
-      ahead[2 * row] = (w[o] as number) * re - (w[o + 4] as number) * im + drive;
-      ahead[2 * row + 1] = (w[o] as number) * im + (w[o + 4] as number) * re + driveIm;
+    const s0 = state[2] as number;
+    const s1 = 1 + (modulation[from] as number);
+    const s2 = 1 + (modulation[from + 1] as number);
+    const s3 = 1 + (modulation[from + 2] as number);
+    for (let row = 0; row < POINTS.length; row++) {
+      const o = 10 * row;
+      const drive =
+        (w[o + 1] as number) * s0 + (w[o + 2] as number) * s1 + (w[o + 3] as number) * s2 + (w[o + 4] as number) * s3;
+      const driveIm =
+        (w[o + 6] as number) * s0 + (w[o + 7] as number) * s1 + (w[o + 8] as number) * s2 + (w[o + 9] as number) * s3;
+      ahead[2 * row] = (w[o] as number) * re - (w[o + 5] as number) * im + drive;
+      ahead[2 * row + 1] = (w[o] as number) * im + (w[o + 5] as number) * re + driveIm;
     }
-    state[2] = end;
+    state[2] = s3;
   }
 
   /** Ends an open step with E as it came out under the source. */
@@ -105,16 +103,21 @@ export class TunedEnvelope {
 
 type Pair = [number, number];
 
-/** φ₁, φ₂, φ₃ of z: by series near zero, where the recursion φ_{k+1} = (φ_k − 1/k!)/z would lose its digits. */
-function phiFunctions(re: number, im: number): [Pair, Pair, Pair] {
+function product(a: Pair, b: Pair): Pair {
+  return [a[0] * b[0] - a[1] * b[1], a[0] * b[1] + a[1] * b[0]];
+}
+
+/** φ₁ to φ₄ of z: by series near zero, where the recursion φ_{k+1} = (φ_k − 1/k!)/z would lose its digits. */
+function phiFunctions(re: number, im: number): Pair[] {
   const phis: Pair[] = [];
-  for (let k = 1; k <= 3; k++) {
-    if (Math.hypot(re, im) < 2) {
+  const reciprocal = [1, 1, 0.5, 1 / 6];
+  for (let k = 1; k <= 4; k++) {
+    if (Math.hypot(re, im) < 3) {
       let factor = 1;
       for (let j = 2; j <= k; j++) factor /= j;
       let term: Pair = [factor, 0];
       let sum: Pair = [factor, 0];
-      for (let j = 1; j < 40; j++) {
+      for (let j = 1; j < 60; j++) {
         term = [(term[0] * re - term[1] * im) / (k + j), (term[0] * im + term[1] * re) / (k + j)];
         sum = [sum[0] + term[0], sum[1] + term[1]];
       }
@@ -122,46 +125,42 @@ function phiFunctions(re: number, im: number): [Pair, Pair, Pair] {
       continue;
     }
     const before: Pair = k === 1 ? [Math.exp(re) * Math.cos(im), Math.exp(re) * Math.sin(im)] : (phis[k - 2] as Pair);
-    const rest: Pair = [before[0] - (k === 3 ? 0.5 : 1), before[1]];
+    const rest: Pair = [before[0] - (reciprocal[k - 1] as number), before[1]];
     const size = re * re + im * im;
     phis.push([(rest[0] * re + rest[1] * im) / size, (rest[1] * re - rest[0] * im) / size]);
   }
-  return phis as [Pair, Pair, Pair];
+  return phis;
 }
 
-/** Weights of E and of s at 0, 1/3, 1 for the value at fraction c of the step, z = c·p·h. */
-function stepWeights(re: number, im: number, c: number): Pair[] {
-  const [phi1, phi2, phi3] = phiFunctions(re, im);
-  // −z·c^k·k!·φ_{k+1}: what a unit coefficient of (τ/h)^k brings
-  const power = (phi: Pair, factor: number): Pair => [
-    -(phi[0] * re - phi[1] * im) * factor,
-    -(phi[0] * im + phi[1] * re) * factor,
-  ];
-  const constant = power(phi1, 1);
-  const linear = power(phi2, c);
-  const square = power(phi3, 2 * c * c);
-  // parabola through s0, s1, s2 at 0, 1/3, 1: a1 = (9·s1 − s2 − 8·s0)/2, a2 = s2 − s0 − a1
-  const mix = (a: number, b: number, d: number): Pair => [
-    a * constant[0] + b * linear[0] + d * square[0],
-    a * constant[1] + b * linear[1] + d * square[1],
-  ];
-  return [
-    [Math.exp(re) * Math.cos(im), Math.exp(re) * Math.sin(im)],
-    mix(1, -4, 3),
-    mix(0, 4.5, -4.5),
-    mix(0, -0.5, 1.5),
-  ];
+/** What a source (τ/h)^m, m = 0 to 3, has brought E to at fraction c of a step of length h, per h; z = c·p·h. */
+function broughtByPowers([re, im]: Pair, c: number): Pair[] {
+  const factorial = [1, 1, 2, 6];
+  return phiFunctions(re, im).map((phi, m): Pair => {
+    const factor = c ** (m + 1) * (factorial[m] as number);
+    return [phi[0] * factor, phi[1] * factor];
+  });
 }
 
-/** Weights for E at fraction c of the step of a source that is the straight line through its values at 1/3 and 1. */
-function lineWeights(re: number, im: number, c: number, stepSeconds: number): number[] {
-  const [phi1, phi2] = phiFunctions(re, im);
-  const constant = phi1.map((value) => value * c * stepSeconds) as Pair;
-  const linear = phi2.map((value) => value * c * c * stepSeconds) as Pair;
-  return [
-    1.5 * (constant[0] - linear[0]),
-    1.5 * (constant[1] - linear[1]),
-    1.5 * linear[0] - 0.5 * constant[0],
-    1.5 * linear[1] - 0.5 * constant[1],
-  ];
+/** Weights of values at `times` for the polynomial through them, when its powers bring what is stated. */
+function mixed(times: readonly number[], brought: readonly Pair[]): Pair[] {
+  return times.map((tj, j) => {
+    // coefficients of the Lagrange polynomial of point j, by powers
+    let coefficients = [1];
+    times.forEach((tk, k) => {
+      if (k === j) return;
+      const next = new Array<number>(coefficients.length + 1).fill(0);
+      coefficients.forEach((value, m) => {
+        next[m + 1] = (next[m + 1] as number) + value / (tj - tk);
+        next[m] = (next[m] as number) - (value * tk) / (tj - tk);
+      });
+      coefficients = next;
+    });
+    return coefficients.reduce<Pair>(
+      (sum, value, m) => {
+        const power = brought[m] as Pair;
+        return [sum[0] + value * power[0], sum[1] + value * power[1]];
+      },
+      [0, 0],
+    );
+  });
 }

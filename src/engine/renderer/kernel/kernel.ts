@@ -1,7 +1,7 @@
 import type { RestPoint } from '../../circuits/rest-point.ts';
 import type { CycleTable } from '../../tubes/cycle-table.ts';
 import type { FilterBank } from '../resampling.ts';
-import { ENVELOPE_SHARE, type StageStepper } from '../stage-stepper.ts';
+import type { StageStepper } from '../stage-stepper.ts';
 import { bytesFromBase64 } from './base64.ts';
 import { KERNEL_BASE64 } from './code.ts';
 import * as L from './layout.ts';
@@ -10,11 +10,12 @@ interface Exports {
   block(
     frames: number,
     unknowns: number,
+    rows: number,
     output: number,
     steps: number,
     half: number,
     phases: number,
-    rows: number,
+    lanes: number,
     rise: number,
     fall: number,
     at: number,
@@ -72,12 +73,15 @@ export class Kernel {
   private readonly setup: KernelSetup;
   private readonly addresses: { phases: number; rows: number; rise: number; fall: number; windows: number };
   private place = 0;
+  /** Rows of the state's matrix: unknowns and the output at half a step, even. */
+  private readonly rows: number;
 
   constructor(setup: KernelSetup) {
     this.setup = setup;
+    this.rows = 2 * Math.ceil((setup.rest.audio.system.size + 1) / 2);
     const { filters, grid, cathode, stepper } = setup;
     const taps = 2 * filters.half;
-    const windows = 8 * 2 * taps * (filters.steps + 1);
+    const windows = 8 * 2 * taps * (2 * filters.steps + 1);
     const shelf = new Shelf(8 * L.FREE);
     const phases = shelf.take(8 * filters.phases.length);
     const rows = shelf.take(8 * filters.rows.length);
@@ -104,6 +108,8 @@ export class Kernel {
     const { numbers: m } = this;
     const { rest, stepper, envelopeWeights, restVolts } = this.setup;
     const { plan, limits, weights, laws } = stepper.internals();
+    const n = plan.size;
+    const rows = this.rows;
     m[L.PER_MU] = 1 / laws.mu;
     m[L.PHI] = laws.phi;
     m[L.REST_PEAK] = rest.tuned.carrierPeakVolts;
@@ -115,18 +121,22 @@ export class Kernel {
     m[L.REST_PLATE] = rest.plateVolts;
     m.set(weights, L.FORECAST);
     m.set(plan.portConstant, L.PORT_CONSTANT);
-    m.set(plan.portFromCurrent, L.PORT_FROM_CURRENT);
+    m.set(byColumns(plan.portFromCurrent, 6, 6), L.PORT_FROM_CURRENT);
     m.set(envelopeWeights, L.ENVELOPE);
     const { tank } = stepper;
     if (tank) {
-      const { input, perSiemensSecond, reach } = tank;
-      m.set([perSiemensSecond, input.re, input.im, reach, ENVELOPE_SHARE, 1], L.TANK);
+      const { input, perSiemensSecond, most } = tank;
+      m.set([perSiemensSecond, input.re, input.im, most, 0, 1], L.TANK);
       m.set(tank.weights, L.TANK_WEIGHTS);
     }
+    m.set(byColumns(plan.portFromState, 6, n), L.PORT_FROM_STATE);
     m.set(plan.stateConstant, L.CONSTANT);
-    m.set(plan.stateFromState, L.FROM_STATE);
-    m.set(plan.stateFromCurrent, L.FROM_CURRENT);
-    m.set(plan.portFromState, L.PORT_FROM_STATE);
+    m[L.CONSTANT + n] = plan.halfConstant;
+    // unknowns, then the output at half a step; columns of the state, then of the currents drawn
+    const fromState = Float64Array.of(...plan.stateFromState, ...plan.halfFromState);
+    const fromCurrent = Float64Array.of(...plan.stateFromCurrent, ...plan.halfFromCurrent).map((value) => -value);
+    m.set(byColumns(fromState, n + 1, n, rows), L.FROM_ALL);
+    m.set(byColumns(fromCurrent, n + 1, 6, rows), L.FROM_ALL + n * rows);
   }
 
   private putTable(head: number, table: CycleTable, shelf: Shelf): void {
@@ -193,6 +203,7 @@ export class Kernel {
       this.place = this.run(
         count,
         rest.audio.system.size,
+        this.rows,
         rest.audio.output.index,
         filters.steps,
         filters.half,
@@ -213,4 +224,13 @@ export class Kernel {
     const at = (k: number): number => this.numbers[L.COUNTS + k] as number;
     return { passes: at(0), unsettled: at(1), steps: at(2), quick: at(3) };
   }
+}
+
+/** A row-major matrix column by column, each column padded to `height`. */
+function byColumns(matrix: Float64Array, rows: number, columns: number, height = rows): Float64Array {
+  const out = new Float64Array(columns * height);
+  for (let r = 0; r < rows; r++) {
+    for (let c = 0; c < columns; c++) out[c * height + r] = matrix[r * columns + c] as number;
+  }
+  return out;
 }

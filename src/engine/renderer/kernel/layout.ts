@@ -1,78 +1,86 @@
 /**
  * Where the kernel's numbers stand in its memory, as f64 indices (the address is 8 times that). The kernel and the
- * code that loads it read this one file.
+ * code that loads it read this one file. Everything that is read two at a time stands on an even index.
  */
 
 /** Largest network the kernel takes, unknowns. */
 export const MOST_UNKNOWNS = 24;
+/** Rows of the state's matrix: the unknowns and the output at half a step, rounded up to an even number. */
+export const MOST_ROWS = MOST_UNKNOWNS + 2;
 /** Largest block, clip samples. */
 export const BLOCK = 2048;
+/** Past points that a forecast is drawn from. */
+export const PAST_POINTS = 4;
 
-// tube: 1/mu, phi, carrier's rest peak, output rest volts, output weight, and the carrier path's twelve numbers
+// tube: 1/mu, phi, carrier's rest peak, output rest volts, output weight
 export const PER_MU = 1;
 export const PHI = 2;
 export const REST_PEAK = 3;
 export const REST_OUTPUT = 4;
 export const WEIGHT = 5;
-export const PATH = 8;
-// limits: staleness, quick product, grid, plate and peak moves, longest grid move
-export const STALE = 20;
-export const QUICK = 21;
-export const GRID_MOVE = 22;
-export const PLATE_MOVE = 23;
-export const PEAK_MOVE = 24;
-export const LONGEST_MOVE = 25;
-export const REST_GRID = 26;
-export const REST_PLATE = 27;
+// limits: staleness, quick product, grid, plate and peak moves, longest grid move; rest volts
+export const STALE = 6;
+export const QUICK = 7;
+export const GRID_MOVE = 8;
+export const PLATE_MOVE = 9;
+export const PEAK_MOVE = 10;
+export const LONGEST_MOVE = 11;
+export const REST_GRID = 12;
+export const REST_PLATE = 13;
+/** The carrier path's eleven complex numbers. */
+export const PATH = 14;
 // two tables' heads: lowest, highest, widest, crest cells per volt, peak cells per volt, last crest cell, peak cells,
 // then byte addresses of crest knots, inverse widths, index, peak knots, inverse widths, index, cells
-export const GRID_TABLE = 32;
-export const TUBE_TABLE = 48;
-// forecast weights 8, port constants 4, ports from currents 16
-export const FORECAST = 64;
-export const PORT_CONSTANT = 72;
-export const PORT_FROM_CURRENT = 76;
-// envelope: weights 16, state 3
-export const ENVELOPE = 96;
-export const ENVELOPE_STATE = 112;
-// working: drive 2, w 4, ag 2, au 2, open 4, i0 4, slopes 8, peaks 12, blend 12, inverse 16, kept 4, past 16
-export const DRIVE = 120;
-export const W = 124;
-export const AG = 128;
-export const AU = 130;
-export const OPEN = 132;
-export const CURRENT = 136;
-export const QUICK_CURRENT = 140;
-export const SLOPE = 144;
-export const PEAKS = 152;
-export const BLEND = 164;
-export const INVERSE = 176;
-export const SQUARE = 192;
-export const KEPT = 208;
-export const PAST = 212;
-export const RESULT = 228;
-export const AUGMENTED = 240;
+export const GRID_TABLE = 36;
+export const TUBE_TABLE = 52;
+/** Forecast weights, a stage after another. */
+export const FORECAST = 68;
+/** Port constants, and ports from currents column by column. */
+export const PORT_CONSTANT = 80;
+export const PORT_FROM_CURRENT = 86;
+// envelope: weights a stage after another (five, real then imaginary), state: E and the last instant's value
+export const ENVELOPE = 122;
+export const ENVELOPE_STATE = 152;
+// working: three stages of drive, volts, peaks, port volts with no current, currents, quick currents, slopes by column,
+// moves of the peaks, blends, inverse by column, where slopes were kept, past points of four quantities, results of a table
+export const DRIVE = 156;
+export const W = 160;
+export const AG = 166;
+export const AU = 169;
+export const OPEN = 172;
+export const CURRENT = 178;
+export const QUICK_CURRENT = 184;
+export const MOVE = 190;
+export const SLOPE = 196;
+export const PEAKS = 208;
+export const BLEND = 226;
+export const INVERSE = 244;
+export const KEPT = 280;
+export const PAST = 284;
+export const RESULT = 300;
 /** Counts: passes, unsettled, steps, quick. */
-export const COUNTS = 262;
-// coil as built: chords 4, their slopes 5 a stage; κ, rest admittance 2, reach and share of the envelope, whether there is one;
-// weights of the pull 8, envelope without it 4, pull 4, its past 8, envelope with it 4
-export const CHORD = 272;
-export const CHORD_SLOPE = 276;
-export const TANK = 286;
-export const TANK_WEIGHTS = 292;
-export const TANK_AHEAD = 300;
-export const TANK_ENVELOPE = 304;
-export const PULL = 308;
-export const PULL_PAST = 312;
-// network: state, next state, constants, then n × n, n × 4 and 4 × n matrices
-export const STATE = 320;
-export const NEXT = STATE + MOST_UNKNOWNS;
-export const CONSTANT = NEXT + MOST_UNKNOWNS;
-export const FROM_STATE = CONSTANT + MOST_UNKNOWNS;
-export const FROM_CURRENT = FROM_STATE + MOST_UNKNOWNS * MOST_UNKNOWNS;
-export const PORT_FROM_STATE = FROM_CURRENT + 4 * MOST_UNKNOWNS;
+export const COUNTS = 306;
+// coil as built: chords 6, their slopes 5 a stage; κ, rest admittance, share that ends the rounds, reach, whether there is one;
+// weights of the pull 18, envelope without it 6, with it 6, admittance less that at rest 6 and its past points
+export const CHORD = 310;
+export const CHORD_SLOPE = 316;
+export const TANK = 332;
+export const TANK_WEIGHTS = 338;
+export const TANK_AHEAD = 356;
+export const TANK_ENVELOPE = 362;
+export const PULL = 368;
+export const PULL_PAST = 374;
+/** Scratch for the coil's three complex equations, rows of four complex numbers. */
+export const TANK_ROWS = 382;
+// network: state followed by currents, next state, constants; matrices column by column: ports from state 6 × n, next
+// state with the output at half a step from state and currents
+export const STATE = 408;
+export const NEXT = STATE + MOST_UNKNOWNS + 6;
+export const CONSTANT = NEXT + MOST_ROWS;
+export const PORT_FROM_STATE = CONSTANT + MOST_ROWS;
+export const FROM_ALL = PORT_FROM_STATE + 6 * MOST_UNKNOWNS;
 /** Clip-rate buffers: modulation in, volts out. */
-export const INPUT = PORT_FROM_STATE + 4 * MOST_UNKNOWNS;
+export const INPUT = FROM_ALL + MOST_ROWS * (MOST_UNKNOWNS + 6);
 export const OUTPUT = INPUT + BLOCK;
 /** First free f64: drives, step outputs, filters, then the tables. */
 export const FREE = OUTPUT + BLOCK;

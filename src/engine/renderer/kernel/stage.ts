@@ -102,6 +102,29 @@ let kneeSlope: f64 = 0;
   }
 }
 
+// @ts-expect-error: decorator
+@inline function pair(i: i32): v128 { return v128.load(i << 3); }
+// @ts-expect-error: decorator
+@inline function keep(i: i32, v: v128): void { v128.store(i << 3, v); }
+// @ts-expect-error: decorator
+@inline function size2(v: v128): f64 {
+  const squares = f64x2.mul(v, v);
+  return f64x2.extract_lane(squares, 0) + f64x2.extract_lane(squares, 1);
+}
+// real part of a·conj(b)
+// @ts-expect-error: decorator
+@inline function along(a: v128, b: v128): f64 {
+  const product = f64x2.mul(a, b);
+  return f64x2.extract_lane(product, 0) + f64x2.extract_lane(product, 1);
+}
+
+// the carrier path's determinant for chords g, k
+// @ts-expect-error: decorator
+@inline function determinant(g: f64, k: f64): v128 {
+  const byG = f64x2.add(pair(L.PATH), f64x2.mul(f64x2.splat(k), pair(L.PATH + 4)));
+  return f64x2.add(f64x2.add(f64x2(1.0, 0.0), f64x2.mul(f64x2.splat(g), byG)), f64x2.mul(f64x2.splat(k), pair(L.PATH + 2)));
+}
+
 // takes the chords of stage st along with its last move
 // @ts-expect-error: decorator
 @inline function moveChords(st: i32, dv: f64, dp: f64, dg: f64, du: f64): void {
@@ -111,14 +134,45 @@ let kneeSlope: f64 = 0;
   wr(c + 1, rd(c + 1) + rd(o + 2) * dv + rd(o + 3) * dp + rd(o + 4) * du);
 }
 
+// MOVE = inverse · (OPEN − W − Z·currents)
+function portMoves(currents: i32): void {
+  let r0 = f64x2.sub(pair(L.OPEN), pair(L.W));
+  let r1 = f64x2.sub(pair(L.OPEN + 2), pair(L.W + 2));
+  let r2 = f64x2.sub(pair(L.OPEN + 4), pair(L.W + 4));
+  for (let c = 0; c < 6; c++) {
+    const z = L.PORT_FROM_CURRENT + 6 * c;
+    const i = f64x2.splat(rd(currents + c));
+    r0 = f64x2.sub(r0, f64x2.mul(pair(z), i));
+    r1 = f64x2.sub(r1, f64x2.mul(pair(z + 2), i));
+    r2 = f64x2.sub(r2, f64x2.mul(pair(z + 4), i));
+  }
+  let d0 = f64x2.splat(0), d1 = f64x2.splat(0), d2 = f64x2.splat(0);
+  const I = L.INVERSE;
+  let r = f64x2.splat(f64x2.extract_lane(r0, 0));
+  d0 = f64x2.mul(pair(I), r); d1 = f64x2.mul(pair(I + 2), r); d2 = f64x2.mul(pair(I + 4), r);
+  r = f64x2.splat(f64x2.extract_lane(r0, 1));
+  d0 = f64x2.add(d0, f64x2.mul(pair(I + 6), r)); d1 = f64x2.add(d1, f64x2.mul(pair(I + 8), r)); d2 = f64x2.add(d2, f64x2.mul(pair(I + 10), r));
+  r = f64x2.splat(f64x2.extract_lane(r1, 0));
+  d0 = f64x2.add(d0, f64x2.mul(pair(I + 12), r)); d1 = f64x2.add(d1, f64x2.mul(pair(I + 14), r)); d2 = f64x2.add(d2, f64x2.mul(pair(I + 16), r));
+  r = f64x2.splat(f64x2.extract_lane(r1, 1));
+  d0 = f64x2.add(d0, f64x2.mul(pair(I + 18), r)); d1 = f64x2.add(d1, f64x2.mul(pair(I + 20), r)); d2 = f64x2.add(d2, f64x2.mul(pair(I + 22), r));
+  r = f64x2.splat(f64x2.extract_lane(r2, 0));
+  d0 = f64x2.add(d0, f64x2.mul(pair(I + 24), r)); d1 = f64x2.add(d1, f64x2.mul(pair(I + 26), r)); d2 = f64x2.add(d2, f64x2.mul(pair(I + 28), r));
+  r = f64x2.splat(f64x2.extract_lane(r2, 1));
+  d0 = f64x2.add(d0, f64x2.mul(pair(I + 30), r)); d1 = f64x2.add(d1, f64x2.mul(pair(I + 32), r)); d2 = f64x2.add(d2, f64x2.mul(pair(I + 34), r));
+  keep(L.MOVE, d0);
+  keep(L.MOVE + 2, d1);
+  keep(L.MOVE + 4, d2);
+}
+
 // one pass with kept slopes; true when it settled
 function quickPass(): bool {
   const perMu = rd(L.PER_MU);
   const phi = rd(L.PHI);
-  const u1 = rd(L.W + 2) + rd(L.W + 3) * perMu;
-  const stale = abs(rd(L.W + 2) - rd(L.KEPT)) + abs(u1 - rd(L.KEPT + 1)) + abs(rd(L.AG + 1) - rd(L.KEPT + 2)) + abs(rd(L.AU + 1) - rd(L.KEPT + 3));
+  const u1 = rd(L.W + 4) + rd(L.W + 5) * perMu;
+  const stale = abs(rd(L.W + 4) - rd(L.KEPT)) + abs(u1 - rd(L.KEPT + 1)) + abs(rd(L.AG + 2) - rd(L.KEPT + 2)) + abs(rd(L.AU + 2) - rd(L.KEPT + 3));
   if (!(stale < rd(L.STALE))) return false;
-  for (let st = 0; st < 2; st++) {
+  for (let st = 0; st < 3; st++) {
     const v = rd(L.W + 2 * st);
     const p = rd(L.W + 1 + 2 * st);
     const e = rd(L.DRIVE + st);
@@ -126,23 +180,19 @@ function quickPass(): bool {
     const gridPeak = rd(L.AG + st);
     const tubePeak = rd(L.AU + st);
     const fromGrid = levels(L.GRID_TABLE, v, gridPeak);
-    const fromTube = levels(L.TUBE_TABLE, v + p * perMu + phi, tubePeak);
+    const fromTube = f64x2.mul(levels(L.TUBE_TABLE, v + p * perMu + phi, tubePeak), f64x2.splat(knee));
     const gm = f64x2.extract_lane(fromGrid, 0);
     const g = f64x2.extract_lane(fromGrid, 1);
-    const km = knee * f64x2.extract_lane(fromTube, 0);
-    const k = knee * f64x2.extract_lane(fromTube, 1);
+    const km = f64x2.extract_lane(fromTube, 0);
+    const k = f64x2.extract_lane(fromTube, 1);
     wr(L.CHORD + 2 * st, g);
     wr(L.CHORD + 1 + 2 * st, k);
-    const gpRe = rd(L.PATH + 3), gpIm = rd(L.PATH + 4);
-    const alphaRe = rd(L.PATH + 1) + g, alphaIm = rd(L.PATH + 2);
-    const betaRe = rd(L.PATH + 5) + k * perMu, betaIm = rd(L.PATH + 6);
-    const etaRe = rd(L.PATH + 7) + g * perMu, etaIm = rd(L.PATH + 8);
-    const gammaRe = k - g - gpRe;
-    const detRe = alphaRe * betaRe - alphaIm * betaIm + gpRe * gammaRe + gpIm * gpIm;
-    const detIm = alphaRe * betaIm + alphaIm * betaRe - gpRe * gpIm + gpIm * gammaRe;
-    const scale = rd(L.PATH + 9) / sqrt(detRe * detRe + detIm * detIm);
-    const fg = scale * sqrt(betaRe * betaRe + betaIm * betaIm) * e - gridPeak;
-    const fu = scale * sqrt(etaRe * etaRe + etaIm * etaIm) * e - tubePeak;
+    const d = determinant(g, k);
+    const n = f64x2.add(pair(L.PATH + 6), f64x2.mul(f64x2.splat(k), pair(L.PATH + 8)));
+    const u = f64x2.add(pair(L.PATH + 10), f64x2.mul(f64x2.splat(g), pair(L.PATH + 12)));
+    const levelsNow = f64x2.mul(f64x2.sqrt(f64x2.mul(f64x2(size2(n), size2(u)), f64x2.splat(1.0 / size2(d)))), f64x2.splat(e));
+    const fg = f64x2.extract_lane(levelsNow, 0) - gridPeak;
+    const fu = f64x2.extract_lane(levelsNow, 1) - tubePeak;
     const b = L.BLEND + 6 * st;
     const g0 = rd(b) * fg + rd(b + 1) * fu;
     const u0 = rd(b + 2) * fg + rd(b + 3) * fu;
@@ -153,39 +203,28 @@ function quickPass(): bool {
     wr(L.QUICK_CURRENT + 2 * st, drawn);
     wr(L.QUICK_CURRENT + 1 + 2 * st, km + rd(b + 5) * u0 - drawn);
   }
-  const c0 = rd(L.QUICK_CURRENT), c1 = rd(L.QUICK_CURRENT + 1), c2 = rd(L.QUICK_CURRENT + 2), c3 = rd(L.QUICK_CURRENT + 3);
-  const Z = L.PORT_FROM_CURRENT;
-  const r0 = rd(L.OPEN) - rd(L.W) - rd(Z) * c0 - rd(Z + 1) * c1 - rd(Z + 2) * c2 - rd(Z + 3) * c3;
-  const r1 = rd(L.OPEN + 1) - rd(L.W + 1) - rd(Z + 4) * c0 - rd(Z + 5) * c1 - rd(Z + 6) * c2 - rd(Z + 7) * c3;
-  const r2 = rd(L.OPEN + 2) - rd(L.W + 2) - rd(Z + 8) * c0 - rd(Z + 9) * c1 - rd(Z + 10) * c2 - rd(Z + 11) * c3;
-  const r3 = rd(L.OPEN + 3) - rd(L.W + 3) - rd(Z + 12) * c0 - rd(Z + 13) * c1 - rd(Z + 14) * c2 - rd(Z + 15) * c3;
-  const I = L.INVERSE;
-  const d0 = rd(I) * r0 + rd(I + 1) * r1 + rd(I + 2) * r2 + rd(I + 3) * r3;
-  const d1 = rd(I + 4) * r0 + rd(I + 5) * r1 + rd(I + 6) * r2 + rd(I + 7) * r3;
-  const d2 = rd(I + 8) * r0 + rd(I + 9) * r1 + rd(I + 10) * r2 + rd(I + 11) * r3;
-  const d3 = rd(I + 12) * r0 + rd(I + 13) * r1 + rd(I + 14) * r2 + rd(I + 15) * r3;
-  const P = L.PEAKS;
-  const dg0 = rd(P) + rd(P + 1) * d0 + rd(P + 2) * d1;
-  const du0 = rd(P + 3) + rd(P + 4) * d0 + rd(P + 5) * d1;
-  const dg1 = rd(P + 6) + rd(P + 7) * d2 + rd(P + 8) * d3;
-  const du1 = rd(P + 9) + rd(P + 10) * d2 + rd(P + 11) * d3;
-  const size = abs(d0) + abs(d2) + (abs(d1) + abs(d3)) * perMu + abs(dg0) + abs(dg1) + abs(du0) + abs(du1);
+  portMoves(L.QUICK_CURRENT);
+  let size: f64 = 0;
+  for (let st = 0; st < 3; st++) {
+    const dv = rd(L.MOVE + 2 * st), dp = rd(L.MOVE + 1 + 2 * st);
+    const o = L.PEAKS + 6 * st;
+    size += abs(dv) + abs(dp) * perMu + abs(rd(o) + rd(o + 1) * dv + rd(o + 2) * dp) + abs(rd(o + 3) + rd(o + 4) * dv + rd(o + 5) * dp);
+  }
   if (!(size * (stale + size) < rd(L.QUICK))) return false;
-  wr(L.W, rd(L.W) + d0);
-  wr(L.W + 1, rd(L.W + 1) + d1);
-  wr(L.W + 2, rd(L.W + 2) + d2);
-  wr(L.W + 3, rd(L.W + 3) + d3);
-  wr(L.AG, rd(L.AG) + dg0);
-  wr(L.AG + 1, rd(L.AG + 1) + dg1);
-  wr(L.AU, rd(L.AU) + du0);
-  wr(L.AU + 1, rd(L.AU + 1) + du1);
-  const S = L.SLOPE;
-  wr(L.CURRENT, c0 + rd(S) * d0 + rd(S + 1) * d1);
-  wr(L.CURRENT + 1, c1 + rd(S + 2) * d0 + rd(S + 3) * d1);
-  wr(L.CURRENT + 2, c2 + rd(S + 4) * d2 + rd(S + 5) * d3);
-  wr(L.CURRENT + 3, c3 + rd(S + 6) * d2 + rd(S + 7) * d3);
-  moveChords(0, d0, d1, dg0, du0);
-  moveChords(1, d2, d3, dg1, du1);
+  for (let st = 0; st < 3; st++) {
+    const dv = rd(L.MOVE + 2 * st), dp = rd(L.MOVE + 1 + 2 * st);
+    const o = L.PEAKS + 6 * st;
+    const dg = rd(o) + rd(o + 1) * dv + rd(o + 2) * dp;
+    const du = rd(o + 3) + rd(o + 4) * dv + rd(o + 5) * dp;
+    wr(L.W + 2 * st, rd(L.W + 2 * st) + dv);
+    wr(L.W + 1 + 2 * st, rd(L.W + 1 + 2 * st) + dp);
+    wr(L.AG + st, rd(L.AG + st) + dg);
+    wr(L.AU + st, rd(L.AU + st) + du);
+    const q = L.SLOPE + 4 * st;
+    wr(L.CURRENT + 2 * st, rd(L.QUICK_CURRENT + 2 * st) + rd(q) * dv + rd(q + 1) * dp);
+    wr(L.CURRENT + 1 + 2 * st, rd(L.QUICK_CURRENT + 1 + 2 * st) + rd(q + 2) * dv + rd(q + 3) * dp);
+    moveChords(st, dv, dp, dg, du);
+  }
   wr(L.COUNTS + 3, rd(L.COUNTS + 3) + 1);
   return true;
 }
@@ -206,28 +245,22 @@ function linearise(st: i32): void {
   const mean = rd(L.RESULT), kx = knee * rd(L.RESULT + 1), ka = knee * rd(L.RESULT + 2);
   const chordK = rd(L.RESULT + 3), ckx = knee * rd(L.RESULT + 4), cka = knee * rd(L.RESULT + 5);
   const k = knee * chordK;
-  const gpRe = rd(L.PATH + 3), gpIm = rd(L.PATH + 4);
-  const alphaRe = rd(L.PATH + 1) + g, alphaIm = rd(L.PATH + 2);
-  const betaRe = rd(L.PATH + 5) + k * perMu, betaIm = rd(L.PATH + 6);
-  const etaRe = rd(L.PATH + 7) + g * perMu, etaIm = rd(L.PATH + 8);
-  const gammaRe = k - g - gpRe;
-  const detRe = alphaRe * betaRe - alphaIm * betaIm + gpRe * gammaRe + gpIm * gpIm;
-  const detIm = alphaRe * betaIm + alphaIm * betaRe - gpRe * gpIm + gpIm * gammaRe;
-  const det2 = 1.0 / (detRe * detRe + detIm * detIm);
-  const beta2 = betaRe * betaRe + betaIm * betaIm;
-  const eta2 = etaRe * etaRe + etaIm * etaIm;
-  const rg = rd(L.PATH + 9) * sqrt(beta2 * det2) * e;
-  const ru = rd(L.PATH + 9) * sqrt(eta2 * det2) * e;
-  const byG = ((betaRe - gpRe) * detRe + (betaIm - gpIm) * detIm) * det2;
-  const byK = ((alphaRe * perMu + gpRe) * detRe + (alphaIm * perMu + gpIm) * detIm) * det2;
+  const d = determinant(g, k);
+  const n = f64x2.add(pair(L.PATH + 6), f64x2.mul(f64x2.splat(k), pair(L.PATH + 8)));
+  const u = f64x2.add(pair(L.PATH + 10), f64x2.mul(f64x2.splat(g), pair(L.PATH + 12)));
+  const d2 = 1.0 / size2(d), n2 = size2(n), u2 = size2(u);
+  const rg = sqrt(n2 * d2) * e;
+  const ru = sqrt(u2 * d2) * e;
+  const byG = along(f64x2.add(pair(L.PATH), f64x2.mul(f64x2.splat(k), pair(L.PATH + 4))), d) * d2;
+  const byK = along(f64x2.add(pair(L.PATH + 2), f64x2.mul(f64x2.splat(g), pair(L.PATH + 4))), d) * d2;
   const ckp = ckx * perMu + kneeSlope * chordK;
   wr(L.CHORD + 2 * st, g);
   wr(L.CHORD + 1 + 2 * st, k);
   const cs = L.CHORD_SLOPE + 5 * st;
   wr(cs, cgx); wr(cs + 1, cga); wr(cs + 2, ckx); wr(cs + 3, ckp); wr(cs + 4, cka);
   const tgg = -rg * byG;
-  const tgk = rg * ((betaRe * perMu) / beta2 - byK);
-  const tug = ru * ((etaRe * perMu) / eta2 - byG);
+  const tgk = rg * ((n2 > 0 ? along(pair(L.PATH + 8), n) / n2 : 0.0) - byK);
+  const tug = ru * ((u2 > 0 ? along(pair(L.PATH + 12), u) / u2 : 0.0) - byG);
   const tuk = -ru * byK;
   const m11 = 1.0 - tgg * cga, m12 = -tgk * cka, m21 = -tug * cga, m22 = 1.0 - tuk * cka;
   const inverse = 1.0 / (m11 * m22 - m12 * m21);
@@ -253,66 +286,56 @@ function linearise(st: i32): void {
   wr(q + 3, kx * perMu + kneeSlope * mean + ka * up - byP);
 }
 
-// the port equations' matrix 1 + Z·J at row-major `to` with the given row length
-function portMatrix(to: i32, width: i32): void {
-  const S = L.SLOPE;
-  for (let r = 0; r < 4; r++) {
-    const z = L.PORT_FROM_CURRENT + 4 * r;
-    const o = to + width * r;
-    wr(o, rd(z) * rd(S) + rd(z + 1) * rd(S + 2));
-    wr(o + 1, rd(z) * rd(S + 1) + rd(z + 1) * rd(S + 3));
-    wr(o + 2, rd(z + 2) * rd(S + 4) + rd(z + 3) * rd(S + 6));
-    wr(o + 3, rd(z + 2) * rd(S + 5) + rd(z + 3) * rd(S + 7));
-    wr(o + r, rd(o + r) + 1.0);
-  }
-}
-
+// the inverse of 1 + Z·J, column by column: the transposed matrix is built row by row and inverted where it stands;
+// its diagonal leads, so no pivoting
 function keepSlopes(perMu: f64): void {
-  portMatrix(L.SQUARE, 4);
-  const m = L.SQUARE, out = L.INVERSE;
-  for (let k = 0; k < 16; k++) wr(out + k, k % 5 == 0 ? 1.0 : 0.0);
-  for (let c = 0; c < 4; c++) {
-    const scale = 1.0 / rd(m + 5 * c);
-    for (let q = 0; q < 4; q++) {
-      wr(m + 4 * c + q, rd(m + 4 * c + q) * scale);
-      wr(out + 4 * c + q, rd(out + 4 * c + q) * scale);
-    }
-    for (let r = 0; r < 4; r++) {
-      if (r == c) continue;
-      const f = rd(m + 4 * r + c);
-      for (let q = 0; q < 4; q++) {
-        wr(m + 4 * r + q, rd(m + 4 * r + q) - f * rd(m + 4 * c + q));
-        wr(out + 4 * r + q, rd(out + 4 * r + q) - f * rd(out + 4 * c + q));
-      }
+  const m = L.INVERSE;
+  for (let c = 0; c < 6; c++) {
+    const st = c >> 1;
+    const j0 = f64x2.splat(rd(L.SLOPE + 4 * st + (c & 1)));
+    const j1 = f64x2.splat(rd(L.SLOPE + 4 * st + 2 + (c & 1)));
+    const z = L.PORT_FROM_CURRENT + 12 * st;
+    for (let q = 0; q < 6; q += 2) keep(m + 6 * c + q, f64x2.add(f64x2.mul(pair(z + q), j0), f64x2.mul(pair(z + 6 + q), j1)));
+    wr(m + 7 * c, rd(m + 7 * c) + 1.0);
+  }
+  for (let k = 0; k < 6; k++) {
+    const row = m + 6 * k;
+    const p = f64x2.splat(1.0 / rd(row + k));
+    wr(row + k, 1.0);
+    const a = f64x2.mul(pair(row), p), b = f64x2.mul(pair(row + 2), p), c = f64x2.mul(pair(row + 4), p);
+    keep(row, a); keep(row + 2, b); keep(row + 4, c);
+    for (let r = 0; r < 6; r++) {
+      if (r == k) continue;
+      const other = m + 6 * r;
+      const f = f64x2.splat(rd(other + k));
+      wr(other + k, 0.0);
+      keep(other, f64x2.sub(pair(other), f64x2.mul(f, a)));
+      keep(other + 2, f64x2.sub(pair(other + 2), f64x2.mul(f, b)));
+      keep(other + 4, f64x2.sub(pair(other + 4), f64x2.mul(f, c)));
     }
   }
-  wr(L.KEPT, rd(L.W + 2));
-  wr(L.KEPT + 1, rd(L.W + 2) + rd(L.W + 3) * perMu);
-  wr(L.KEPT + 2, rd(L.AG + 1));
-  wr(L.KEPT + 3, rd(L.AU + 1));
+  wr(L.KEPT, rd(L.W + 4));
+  wr(L.KEPT + 1, rd(L.W + 4) + rd(L.W + 5) * perMu);
+  wr(L.KEPT + 2, rd(L.AG + 2));
+  wr(L.KEPT + 3, rd(L.AU + 2));
 }
 
 // a full pass: true when settled
 function fullPass(pass: i32): bool {
   linearise(0);
   linearise(1);
+  linearise(2);
   keepSlopes(rd(L.PER_MU));
-  const Z = L.PORT_FROM_CURRENT;
-  const c0 = rd(L.CURRENT), c1 = rd(L.CURRENT + 1), c2 = rd(L.CURRENT + 2), c3 = rd(L.CURRENT + 3);
-  const r0 = rd(L.OPEN) - rd(L.W) - rd(Z) * c0 - rd(Z + 1) * c1 - rd(Z + 2) * c2 - rd(Z + 3) * c3;
-  const r1 = rd(L.OPEN + 1) - rd(L.W + 1) - rd(Z + 4) * c0 - rd(Z + 5) * c1 - rd(Z + 6) * c2 - rd(Z + 7) * c3;
-  const r2 = rd(L.OPEN + 2) - rd(L.W + 2) - rd(Z + 8) * c0 - rd(Z + 9) * c1 - rd(Z + 10) * c2 - rd(Z + 11) * c3;
-  const r3 = rd(L.OPEN + 3) - rd(L.W + 3) - rd(Z + 12) * c0 - rd(Z + 13) * c1 - rd(Z + 14) * c2 - rd(Z + 15) * c3;
-  const I = L.INVERSE;
-  const d0 = rd(I) * r0 + rd(I + 1) * r1 + rd(I + 2) * r2 + rd(I + 3) * r3;
-  const d1 = rd(I + 4) * r0 + rd(I + 5) * r1 + rd(I + 6) * r2 + rd(I + 7) * r3;
-  const d2 = rd(I + 8) * r0 + rd(I + 9) * r1 + rd(I + 10) * r2 + rd(I + 11) * r3;
-  const d3 = rd(I + 12) * r0 + rd(I + 13) * r1 + rd(I + 14) * r2 + rd(I + 15) * r3;
-  const grid = max(abs(d0), abs(d2));
-  const plate = max(abs(d1), abs(d3));
+  portMoves(L.CURRENT);
+  const grid = max(max(abs(rd(L.MOVE)), abs(rd(L.MOVE + 2))), abs(rd(L.MOVE + 4)));
+  const plate = max(max(abs(rd(L.MOVE + 1)), abs(rd(L.MOVE + 3))), abs(rd(L.MOVE + 5)));
   if (!(grid < 1e6) || !(plate < 1e9)) {
-    wr(L.W, rd(L.REST_GRID)); wr(L.W + 1, rd(L.REST_PLATE));
-    wr(L.W + 2, rd(L.REST_GRID)); wr(L.W + 3, rd(L.REST_PLATE));
+    for (let st = 0; st < 3; st++) {
+      wr(L.W + 2 * st, rd(L.REST_GRID));
+      wr(L.W + 1 + 2 * st, rd(L.REST_PLATE));
+      wr(L.AG + st, 0);
+      wr(L.AU + st, 0);
+    }
     return false;
   }
   const near = grid < rd(L.GRID_MOVE) && plate < rd(L.PLATE_MOVE);
@@ -321,9 +344,9 @@ function fullPass(pass: i32): bool {
   if (pass > 12 && !near) share *= 0.5;
   let whole = share == 1.0;
   let largest: f64 = 0;
-  for (let st = 0; st < 2; st++) {
-    const dv = st == 0 ? d0 : d2;
-    const dp = st == 0 ? d1 : d3;
+  for (let st = 0; st < 3; st++) {
+    const dv = rd(L.MOVE + 2 * st);
+    const dp = rd(L.MOVE + 1 + 2 * st);
     const o = L.PEAKS + 6 * st;
     const dg = rd(o) + rd(o + 1) * dv + rd(o + 2) * dp;
     const du = rd(o + 3) + rd(o + 4) * dv + rd(o + 5) * dp;
@@ -347,10 +370,10 @@ function fullPass(pass: i32): bool {
   return whole && near && largest < rd(L.PEAK_MOVE);
 }
 
-// carries the last four stage points on to the next two
+// carries the last stage points on to the next three
 function forecast(): void {
   const P = L.PAST;
-  for (let st = 0; st < 2; st++) {
+  for (let st = 0; st < 3; st++) {
     const f = L.FORECAST + 4 * st;
     const w0 = rd(f), w1 = rd(f + 1), w2 = rd(f + 2), w3 = rd(f + 3);
     const e = rd(L.DRIVE + st);
@@ -372,34 +395,64 @@ function solve(): void {
   if (!settled) wr(L.COUNTS + 1, rd(L.COUNTS + 1) + 1);
 }
 
-// envelope at stage st under the pull, to TANK_ENVELOPE
-// @ts-expect-error: decorator
-@inline function underPull(st: i32): void {
-  const o = L.TANK_WEIGHTS + 4 * st;
-  const r1 = rd(o), i1 = rd(o + 1), r2 = rd(o + 2), i2 = rd(o + 3);
-  const p0 = rd(L.PULL), p1 = rd(L.PULL + 1), p2 = rd(L.PULL + 2), p3 = rd(L.PULL + 3);
-  const a = L.TANK_AHEAD + 2 * st;
-  const e = L.TANK_ENVELOPE + 2 * st;
-  wr(e, rd(a) + r1 * p0 - i1 * p1 + r2 * p2 - i2 * p3);
-  wr(e + 1, rd(a + 1) + r1 * p1 + i1 * p0 + r2 * p3 + i2 * p2);
+// the envelope at the three stages for the admittance in PULL: (1 + B·κ·ΔY)·E = ahead, three complex equations
+function envelopeUnder(): void {
+  const kappa = rd(L.TANK);
+  const R = L.TANK_ROWS;
+  for (let r = 0; r < 3; r++) {
+    for (let c = 0; c < 3; c++) {
+      const b = L.TANK_WEIGHTS + 6 * r + 2 * c;
+      const yRe = kappa * rd(L.PULL + 2 * c), yIm = kappa * rd(L.PULL + 1 + 2 * c);
+      const o = R + 8 * r + 2 * c;
+      wr(o, rd(b) * yRe - rd(b + 1) * yIm + (r == c ? 1.0 : 0.0));
+      wr(o + 1, rd(b) * yIm + rd(b + 1) * yRe);
+    }
+    wr(R + 8 * r + 6, rd(L.TANK_AHEAD + 2 * r));
+    wr(R + 8 * r + 7, rd(L.TANK_AHEAD + 1 + 2 * r));
+  }
+  for (let k = 0; k < 2; k++) {
+    const p = R + 10 * k;
+    const scale = 1.0 / (rd(p) * rd(p) + rd(p + 1) * rd(p + 1));
+    for (let r = k + 1; r < 3; r++) {
+      const a = R + 8 * r + 2 * k;
+      const fRe = (rd(a) * rd(p) + rd(a + 1) * rd(p + 1)) * scale;
+      const fIm = (rd(a + 1) * rd(p) - rd(a) * rd(p + 1)) * scale;
+      for (let c = k + 1; c < 4; c++) {
+        const from = R + 8 * k + 2 * c, to = R + 8 * r + 2 * c;
+        wr(to, rd(to) - fRe * rd(from) + fIm * rd(from + 1));
+        wr(to + 1, rd(to + 1) - fRe * rd(from + 1) - fIm * rd(from));
+      }
+    }
+  }
+  for (let k = 2; k >= 0; k--) {
+    let re = rd(R + 8 * k + 6), im = rd(R + 8 * k + 7);
+    for (let c = k + 1; c < 3; c++) {
+      const o = R + 8 * k + 2 * c, e = L.TANK_ENVELOPE + 2 * c;
+      re -= rd(o) * rd(e) - rd(o + 1) * rd(e + 1);
+      im -= rd(o) * rd(e + 1) + rd(o + 1) * rd(e);
+    }
+    const p = R + 10 * k;
+    const scale = 1.0 / (rd(p) * rd(p) + rd(p + 1) * rd(p + 1));
+    wr(L.TANK_ENVELOPE + 2 * k, (re * rd(p) + im * rd(p + 1)) * scale);
+    wr(L.TANK_ENVELOPE + 1 + 2 * k, (im * rd(p) - re * rd(p + 1)) * scale);
+  }
 }
 
 // stage and coil together; the reasons stand in the plain stepper
 function solveWithTank(): void {
   const P = L.PULL_PAST;
-  for (let st = 0; st < 2; st++) {
+  for (let st = 0; st < 3; st++) {
     const f = L.FORECAST + 4 * st;
     for (let part = 0; part < 2; part++) {
       const o = P + 4 * part;
       wr(L.PULL + 2 * st + part, rd(f) * rd(o) + rd(f + 1) * rd(o + 1) + rd(f + 2) * rd(o + 2) + rd(f + 3) * rd(o + 3));
     }
   }
-  const peak = rd(L.REST_PEAK), kappa = rd(L.TANK), restRe = rd(L.TANK + 1), restIm = rd(L.TANK + 2);
-  const most = rd(L.TANK + 4) / rd(L.TANK + 3);
+  const peak = rd(L.REST_PEAK), restRe = rd(L.TANK + 1), restIm = rd(L.TANK + 2), most = rd(L.TANK + 3);
+  envelopeUnder();
   for (let round = 0; round < 12; round++) {
-    for (let st = 0; st < 2; st++) {
+    for (let st = 0; st < 3; st++) {
       const before = rd(L.DRIVE + st);
-      underPull(st);
       const re = rd(L.TANK_ENVELOPE + 2 * st), im = rd(L.TANK_ENVELOPE + 1 + 2 * st);
       const now = peak * sqrt(re * re + im * im);
       wr(L.DRIVE + st, now);
@@ -412,119 +465,109 @@ function solveWithTank(): void {
     if (round == 0) forecast();
     solve();
     let moved: f64 = 0;
-    for (let st = 0; st < 2; st++) {
+    for (let st = 0; st < 3; st++) {
       const g = rd(L.CHORD + 2 * st), k = rd(L.CHORD + 1 + 2 * st);
-      const perMu = rd(L.PATH);
-      const gpRe = rd(L.PATH + 3), gpIm = rd(L.PATH + 4);
-      const alphaRe = rd(L.PATH + 1) + g, alphaIm = rd(L.PATH + 2);
-      const betaRe = rd(L.PATH + 5) + k * perMu, betaIm = rd(L.PATH + 6);
-      const gammaRe = k - g - gpRe;
-      const detRe = alphaRe * betaRe - alphaIm * betaIm + gpRe * gammaRe + gpIm * gpIm;
-      const detIm = alphaRe * betaIm + alphaIm * betaRe - gpRe * gpIm + gpIm * gammaRe;
-      const sRe = rd(L.PATH + 10), sIm = rd(L.PATH + 11);
-      const bRe = sRe * betaRe - sIm * betaIm, bIm = sRe * betaIm + sIm * betaRe;
-      const scale = 1.0 / (detRe * detRe + detIm * detIm);
-      const leftRe = 1.0 - (bRe * detRe + bIm * detIm) * scale;
-      const leftIm = -(bIm * detRe - bRe * detIm) * scale;
-      const yRe = kappa * (sRe * leftRe - sIm * leftIm - restRe);
-      const yIm = kappa * (sRe * leftIm + sIm * leftRe - restIm);
-      const re = rd(L.TANK_ENVELOPE + 2 * st), im = rd(L.TANK_ENVELOPE + 1 + 2 * st);
-      const nRe = yIm * im - yRe * re;
-      const nIm = -yRe * im - yIm * re;
-      moved += abs(nRe - rd(L.PULL + 2 * st)) + abs(nIm - rd(L.PULL + 1 + 2 * st));
-      wr(L.PULL + 2 * st, nRe);
-      wr(L.PULL + 1 + 2 * st, nIm);
+      const d = determinant(g, k);
+      const q = f64x2.add(f64x2.add(f64x2.mul(f64x2.splat(g), pair(L.PATH + 14)), f64x2.mul(f64x2.splat(k), pair(L.PATH + 16))), f64x2.mul(f64x2.splat(g * k), pair(L.PATH + 18)));
+      const scale = 1.0 / size2(d);
+      const dRe = f64x2.extract_lane(d, 0), dIm = f64x2.extract_lane(d, 1);
+      const qRe = f64x2.extract_lane(q, 0), qIm = f64x2.extract_lane(q, 1);
+      const yRe = rd(L.PATH + 20) + (qRe * dRe + qIm * dIm) * scale - restRe;
+      const yIm = rd(L.PATH + 21) + (qIm * dRe - qRe * dIm) * scale - restIm;
+      moved = max(moved, (abs(yRe - rd(L.PULL + 2 * st)) + abs(yIm - rd(L.PULL + 1 + 2 * st))) * rd(L.DRIVE + st));
+      wr(L.PULL + 2 * st, yRe);
+      wr(L.PULL + 1 + 2 * st, yIm);
     }
+    envelopeUnder();
     if (moved < most) break;
   }
-  underPull(1);
   for (let part = 0; part < 2; part++) {
     const o = P + 4 * part;
-    wr(o + 3, rd(o + 1));
-    wr(o + 2, rd(o));
-    wr(o + 1, rd(L.PULL + part));
-    wr(o, rd(L.PULL + 2 + part));
+    wr(o + 3, rd(o));
+    wr(o + 2, rd(L.PULL + part));
+    wr(o + 1, rd(L.PULL + 2 + part));
+    wr(o, rd(L.PULL + 4 + part));
   }
-  wr(L.ENVELOPE_STATE, rd(L.TANK_ENVELOPE + 2));
-  wr(L.ENVELOPE_STATE + 1, rd(L.TANK_ENVELOPE + 3));
+  wr(L.ENVELOPE_STATE, rd(L.TANK_ENVELOPE + 4));
+  wr(L.ENVELOPE_STATE + 1, rd(L.TANK_ENVELOPE + 5));
 }
 
-function step(n: i32, tank: bool): void {
+// one step; the output at half of it is the row after the unknowns in NEXT
+function step(n: i32, rows: i32, tank: bool): void {
   wr(L.COUNTS + 2, rd(L.COUNTS + 2) + 1);
-  for (let r = 0; r < 4; r++) {
-    let sum = rd(L.PORT_CONSTANT + r);
-    const o = L.PORT_FROM_STATE + r * n;
-    for (let c = 0; c < n; c++) sum += rd(o + c) * rd(L.STATE + c);
-    wr(L.OPEN + r, sum);
+  let o0 = pair(L.PORT_CONSTANT), o1 = pair(L.PORT_CONSTANT + 2), o2 = pair(L.PORT_CONSTANT + 4);
+  let at = L.PORT_FROM_STATE;
+  for (let c = 0; c < n; c++) {
+    const z = f64x2.splat(rd(L.STATE + c));
+    o0 = f64x2.add(o0, f64x2.mul(pair(at), z));
+    o1 = f64x2.add(o1, f64x2.mul(pair(at + 2), z));
+    o2 = f64x2.add(o2, f64x2.mul(pair(at + 4), z));
+    at += 6;
   }
+  keep(L.OPEN, o0);
+  keep(L.OPEN + 2, o1);
+  keep(L.OPEN + 4, o2);
   if (tank) solveWithTank();
   else {
     forecast();
     solve();
   }
-  const e0 = rd(L.DRIVE), e1 = rd(L.DRIVE + 1);
-  const P = L.PAST;
-  const i0 = rd(L.CURRENT), i1 = rd(L.CURRENT + 1), i2 = rd(L.CURRENT + 2), i3 = rd(L.CURRENT + 3);
-  for (let r = 0; r < n; r++) {
-    let sum = rd(L.CONSTANT + r);
-    const o = L.FROM_STATE + r * n;
-    for (let c = 0; c < n; c++) sum += rd(o + c) * rd(L.STATE + c);
-    const q = L.FROM_CURRENT + 4 * r;
-    wr(L.NEXT + r, sum - rd(q) * i0 - rd(q + 1) * i1 - rd(q + 2) * i2 - rd(q + 3) * i3);
+  for (let k = 0; k < 6; k++) wr(L.STATE + n + k, rd(L.CURRENT + k));
+  const columns = n + 6;
+  for (let r = 0; r < rows; r += 2) {
+    let sum = pair(L.CONSTANT + r), other = f64x2.splat(0);
+    let from = L.FROM_ALL + r;
+    let c = 0;
+    for (; c + 1 < columns; c += 2) {
+      sum = f64x2.add(sum, f64x2.mul(pair(from), f64x2.splat(rd(L.STATE + c))));
+      other = f64x2.add(other, f64x2.mul(pair(from + rows), f64x2.splat(rd(L.STATE + c + 1))));
+      from += 2 * rows;
+    }
+    if (c < columns) sum = f64x2.add(sum, f64x2.mul(pair(from), f64x2.splat(rd(L.STATE + c))));
+    keep(L.NEXT + r, f64x2.add(sum, other));
   }
   for (let r = 0; r < n; r++) wr(L.STATE + r, rd(L.NEXT + r));
-  for (let k = 0; k < 16; k += 4) {
-    wr(P + k + 3, rd(P + k + 1));
-    wr(P + k + 2, rd(P + k));
-  }
-  wr(P + 1, rd(L.W));
-  wr(P + 5, rd(L.W + 1));
-  wr(P, rd(L.W + 2));
-  wr(P + 4, rd(L.W + 3));
-  if (e0 > 0) {
-    wr(P + 9, rd(L.AG) / e0);
-    wr(P + 13, rd(L.AU) / e0);
-  }
-  if (e1 > 0) {
-    wr(P + 8, rd(L.AG + 1) / e1);
-    wr(P + 12, rd(L.AU + 1) / e1);
-  }
-}
-
-// the tuned circuit on the envelope for one step; leaves the carrier's peaks in DRIVE
-function envelope(third: f64, end: f64, tuned: bool): void {
-  const re = rd(L.ENVELOPE_STATE), im = rd(L.ENVELOPE_STATE + 1), last = rd(L.ENVELOPE_STATE + 2);
-  const peak = rd(L.REST_PEAK);
-  for (let row = 0; row < 2; row++) {
-    const o = L.ENVELOPE + 8 * row;
-    const drive = rd(o + 1) * last + rd(o + 2) * third + rd(o + 3) * end;
-    if (tuned) {
-      const value = rd(o) * re + drive;
-      wr(L.DRIVE + row, peak * abs(value));
-      if (row == 1) wr(L.ENVELOPE_STATE, value);
-    } else {
-      const driveIm = rd(o + 5) * last + rd(o + 6) * third + rd(o + 7) * end;
-      const nextRe = rd(o) * re - rd(o + 4) * im + drive;
-      const nextIm = rd(o) * im + rd(o + 4) * re + driveIm;
-      wr(L.DRIVE + row, peak * sqrt(nextRe * nextRe + nextIm * nextIm));
-      if (row == 1) {
-        wr(L.ENVELOPE_STATE, nextRe);
-        wr(L.ENVELOPE_STATE + 1, nextIm);
-      }
+  const P = L.PAST;
+  for (let k = 0; k < 16; k += 4) wr(P + k + 3, rd(P + k));
+  for (let st = 0; st < 3; st++) {
+    const to = P + 2 - st;
+    wr(to, rd(L.W + 2 * st));
+    wr(to + 4, rd(L.W + 1 + 2 * st));
+    const e = rd(L.DRIVE + st);
+    if (e > 0) {
+      wr(to + 8, rd(L.AG + st) / e);
+      wr(to + 12, rd(L.AU + st) / e);
     }
   }
-  wr(L.ENVELOPE_STATE + 2, end);
 }
 
-// the same, left open for the detector's pull
-function envelopeAhead(third: f64, end: f64): void {
+// the tuned circuit on the envelope for one step: E at the three stages, without what pulls it; leaves the carrier's
+// peaks in DRIVE when nothing does
+function envelope(first: f64, second: f64, end: f64, tuned: bool, tank: bool): void {
   const re = rd(L.ENVELOPE_STATE), im = rd(L.ENVELOPE_STATE + 1), last = rd(L.ENVELOPE_STATE + 2);
-  for (let row = 0; row < 2; row++) {
-    const o = L.ENVELOPE + 8 * row;
-    const drive = rd(o + 1) * last + rd(o + 2) * third + rd(o + 3) * end;
-    const driveIm = rd(o + 5) * last + rd(o + 6) * third + rd(o + 7) * end;
-    wr(L.TANK_AHEAD + 2 * row, rd(o) * re - rd(o + 4) * im + drive);
-    wr(L.TANK_AHEAD + 2 * row + 1, rd(o) * im + rd(o + 4) * re + driveIm);
+  const peak = rd(L.REST_PEAK);
+  for (let row = 0; row < 3; row++) {
+    const o = L.ENVELOPE + 10 * row;
+    const drive = rd(o + 1) * last + rd(o + 2) * first + rd(o + 3) * second + rd(o + 4) * end;
+    if (tuned && !tank) {
+      const value = rd(o) * re + drive;
+      wr(L.DRIVE + row, peak * abs(value));
+      if (row == 2) wr(L.ENVELOPE_STATE, value);
+      continue;
+    }
+    const driveIm = rd(o + 6) * last + rd(o + 7) * first + rd(o + 8) * second + rd(o + 9) * end;
+    const nextRe = rd(o) * re - rd(o + 5) * im + drive;
+    const nextIm = rd(o) * im + rd(o + 5) * re + driveIm;
+    if (tank) {
+      wr(L.TANK_AHEAD + 2 * row, nextRe);
+      wr(L.TANK_AHEAD + 2 * row + 1, nextIm);
+      continue;
+    }
+    wr(L.DRIVE + row, peak * sqrt(nextRe * nextRe + nextIm * nextIm));
+    if (row == 2) {
+      wr(L.ENVELOPE_STATE, nextRe);
+      wr(L.ENVELOPE_STATE + 1, nextIm);
+    }
   }
   wr(L.ENVELOPE_STATE + 2, end);
 }
@@ -551,12 +594,12 @@ function envelopeAhead(third: f64, end: f64): void {
 /**
  * Renders `frames` clip samples from INPUT to OUTPUT.
  *
- * n: unknowns; output: index of the unknown that is heard; steps to a clip sample; half: kernel half length in samples;
- * phases, rows: byte addresses of the filters' weights; rise, fall: byte addresses of the windows (see kernel.ts);
- * at: place in the windows; middle: weight of the clip instant.
+ * n: unknowns; rows: of the state's matrix; output: index of the unknown that is heard; steps to a clip sample; half: kernel
+ * half length in samples; phases, lanes: byte addresses of the filters' weights; rise, fall: byte addresses of the
+ * windows (see kernel.ts); at: place in the windows; middle: weight of the clip instant.
  */
 export function block(
-  frames: i32, n: i32, output: i32, steps: i32, half: i32, phases: i32, rows: i32, rise: i32, fall: i32, at: i32, tuned: bool, middle: f64,
+  frames: i32, n: i32, rows: i32, output: i32, steps: i32, half: i32, phases: i32, lanes: i32, rise: i32, fall: i32, at: i32, tuned: bool, middle: f64,
 ): i32 {
   const taps = 2 * half;
   const long = 2 * taps * 8;
@@ -565,6 +608,7 @@ export function block(
   let instantAt = at >> 16;
   const weight = rd(L.WEIGHT), restVolts = rd(L.REST_OUTPUT);
   const tank = rd(L.TANK + 5) > 0;
+  const count = 2 * steps - 1;
   for (let f = 0; f < frames; f++) {
     const sample = rd(L.INPUT + f);
     store<f64>(rise + (riseAt << 3), sample);
@@ -573,26 +617,30 @@ export function block(
     const window = rise + (riseAt << 3);
     for (let k = 0; k < steps; k++) {
       const last = k == steps - 1;
-      const third = product(phases + ((2 * k * taps) << 3), window, taps);
+      const first = product(phases + ((3 * k * taps) << 3), window, taps);
+      const second = product(phases + (((3 * k + 1) * taps) << 3), window, taps);
       // the last instant of a sample falls on the clip's own: every other tap is zero
-      const end = last ? load<f64>(window + (half << 3)) : product(phases + (((2 * k + 1) * taps) << 3), window, taps);
-      if (tank) envelopeAhead(1.0 + third, 1.0 + end);
-      else envelope(1.0 + third, 1.0 + end, tuned);
-      step(n, tank);
+      const end = last ? load<f64>(window + (half << 3)) : product(phases + (((3 * k + 2) * taps) << 3), window, taps);
+      envelope(1.0 + first, 1.0 + second, 1.0 + end, tuned, tank);
+      step(n, rows, tank);
+      const middleVolts = rd(L.NEXT + n) * weight - restVolts;
+      const lane = fall + 2 * k * long;
+      store<f64>(lane + (fallAt << 3), middleVolts);
+      store<f64>(lane + ((fallAt + taps) << 3), middleVolts);
       const volts = rd(L.STATE + output) * weight - restVolts;
-      const lane = fall + k * long;
+      const next = lane + long;
       if (last) {
-        store<f64>(lane + (instantAt << 3), volts);
-        store<f64>(lane + ((instantAt + half + 1) << 3), volts);
+        store<f64>(next + (instantAt << 3), volts);
+        store<f64>(next + ((instantAt + half + 1) << 3), volts);
         instantAt = instantAt == half ? 0 : instantAt + 1;
       } else {
-        store<f64>(lane + (fallAt << 3), volts);
-        store<f64>(lane + ((fallAt + taps) << 3), volts);
+        store<f64>(next + (fallAt << 3), volts);
+        store<f64>(next + ((fallAt + taps) << 3), volts);
       }
     }
     fallAt = fallAt + 1 == taps ? 0 : fallAt + 1;
-    let sum = middle * load<f64>(fall + (steps - 1) * long + (instantAt << 3));
-    for (let row = 0; row < steps - 1; row++) sum += product(rows + ((row * taps) << 3), fall + row * long + (fallAt << 3), taps);
+    let sum = middle * load<f64>(fall + count * long + (instantAt << 3));
+    for (let lane = 0; lane < count; lane++) sum += product(lanes + ((lane * taps) << 3), fall + lane * long + (fallAt << 3), taps);
     wr(L.OUTPUT + f, sum);
   }
   return riseAt | (instantAt << 16);
