@@ -1,5 +1,8 @@
 import type { Fault } from '../engine/errors.ts';
 import { nearestName } from '../engine/parts/nearest-name.ts';
+import { splitTolerance } from '../engine/parts/tolerance.ts';
+import type { Written } from './fields.ts';
+import { type Tolerances, withoutTolerances } from './part-tolerances.ts';
 import { LOAD_EXPECTED, loadMapping, matchingMapping } from './plate-load.ts';
 import { type CircuitList, circuitList } from './schema.ts';
 import { READING_KEYS, ROW_KEYS } from './tube-section.ts';
@@ -24,7 +27,7 @@ interface Laid extends WrittenEntry {
 }
 
 export type LaidResult =
-  | { readonly list: CircuitList; readonly places: ReadonlyMap<string, Laid> }
+  | { readonly list: CircuitList; readonly tolerances: Tolerances; readonly places: ReadonlyMap<string, Laid> }
   | { readonly faults: readonly Fault[] };
 
 /** Lays changes over one another and reads the values. Faults carry the place of the layer that is wrong. */
@@ -36,20 +39,27 @@ export function readLayers(layers: readonly Layer[]): LaidResult {
     for (const [key, entry] of keys) lay(laid, key, { ...entry, ...(flag === undefined ? {} : { flag }) }, faults);
   }
   if (faults.length > 0) return { faults };
-  const parsed = circuitList.safeParse(nested(laid));
-  if (parsed.success) return { list: parsed.data, places: laid };
+  const { values, tolerances, faults: ofTolerances } = withoutTolerances(laid);
+  const parsed = circuitList.safeParse(nested(values));
+  if (parsed.success && ofTolerances.length === 0) return { list: parsed.data, tolerances, places: laid };
+  // a value behind which the tolerance is wrong is told of once
+  const told = new Set(ofTolerances.map((fault) => fault.where));
+  const issues = parsed.success ? [] : parsed.error.issues.filter((issue) => !told.has(issue.path.join('.')));
   return {
-    faults: parsed.error.issues.flatMap((issue): Fault[] => {
-      const path = issue.path.map(String);
-      const key = path.join('.');
-      const stated = issue.code === 'custom' ? (issue.params?.fault as Fault | undefined) : undefined;
-      if (stated) return [placed({ ...stated, where: key }, laid)];
-      if (issue.code === 'unrecognized_keys') {
-        return issue.keys.map((extra) => placed(unknownKey(path, extra), laid));
-      }
-      const got = shortly(laid.get(key)?.value);
-      return [placed({ code: 'wrong-value', where: key, got, expected: issue.message }, laid)];
-    }),
+    faults: [
+      ...ofTolerances.map((fault) => placed(fault, laid)),
+      ...issues.flatMap((issue): Fault[] => {
+        const path = issue.path.map(String);
+        const key = path.join('.');
+        const stated = issue.code === 'custom' ? (issue.params?.fault as Fault | undefined) : undefined;
+        if (stated) return [placed({ ...stated, where: key }, laid)];
+        if (issue.code === 'unrecognized_keys') {
+          return issue.keys.map((extra) => placed(unknownKey(path, extra), laid));
+        }
+        const got = shortly(laid.get(key)?.value);
+        return [placed({ code: 'wrong-value', where: key, got, expected: issue.message }, laid)];
+      }),
+    ],
   };
 }
 
@@ -91,7 +101,7 @@ function lay(laid: Map<string, Laid>, key: string, entry: Laid, faults: Fault[])
     const mapping =
       typeof value === 'object'
         ? { fault: { code: 'unknown-load', where: key, got: shortly(value), expected: LOAD_EXPECTED } }
-        : expand(value);
+        : expandWithTolerance(expand, value);
     if ('fault' in mapping) {
       faults.push(placed({ ...(mapping.fault as Fault), where: key }, new Map([[key, entry]])));
       return;
@@ -101,6 +111,20 @@ function lay(laid: Map<string, Laid>, key: string, entry: Laid, faults: Fault[])
     return;
   }
   laid.set(key, entry);
+}
+
+/** A tolerance behind a load on one line is that of its value. */
+function expandWithTolerance(expand: typeof loadMapping, value: Written): ReturnType<typeof loadMapping> {
+  const reading = splitTolerance(String(value));
+  if ('fault' in reading || reading.tolerance === null) return expand(value);
+  const mapping = expand(reading.value);
+  if ('fault' in mapping) return mapping;
+  return Object.fromEntries(
+    Object.entries(mapping).map(([name, written]) => [
+      name,
+      name === 'kind' ? written : `${written} ${reading.written}`,
+    ]),
+  );
 }
 
 /** Values of an earlier layer that mean nothing once this one stands over it: a load is swapped whole, and so is a coil. */
@@ -120,9 +144,9 @@ function drop(laid: Map<string, Laid>, prefix: string): void {
   for (const key of [...laid.keys()]) if (key.startsWith(prefix)) laid.delete(key);
 }
 
-function nested(laid: ReadonlyMap<string, Laid>): Record<string, unknown> {
+function nested(values: ReadonlyMap<string, WrittenValue>): Record<string, unknown> {
   const root: Record<string, unknown> = {};
-  for (const [key, { value }] of laid) {
+  for (const [key, value] of values) {
     if (ON_ONE_LINE[key]) continue;
     const path = key.split('.');
     const last = path.pop() as string;
