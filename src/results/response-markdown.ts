@@ -2,6 +2,7 @@ import { formatQuantity, type QuantityKind } from '../engine/parts/format-quanti
 import { COST_PARTS } from './cost-parts.ts';
 import { onePlainLine } from './plain-line.ts';
 import type { RestRecord, Result, VariantResult } from './result.ts';
+import { SOCKET_NOTE, socketTable } from './socket-table.ts';
 
 /** The working point's rows in the order a service sheet gives them: electrode voltages, currents, slopes, signal. */
 const REST_ROWS: readonly (readonly [string, keyof RestRecord, QuantityKind])[] = [
@@ -33,7 +34,7 @@ type Row = readonly string[];
 
 /**
  * The tables of a result as Markdown to paste into a write-up: response, corners, cost by part at 5 kHz, rest point,
- * distortion and sensitivity, one column a variant, and the cautions. Decibels have one decimal, percentages three
+ * socket voltages, distortion and sensitivity, one column a variant, and the cautions. Decibels have one decimal, percentages three
  * significant digits, quantities four with SI prefixes. Names are escaped, so none can become markup.
  */
 export function responseMarkdown(result: Result): string {
@@ -52,6 +53,7 @@ export function responseMarkdown(result: Result): string {
       costRows(variants),
     ),
     section('Rest point', 'Carrier on, not modulated.', 'quantity', restRows(variants)),
+    section('Socket voltages', SOCKET_NOTE, 'electrode', socketTable(variants)),
     section('Distortion', 'Percent of the fundamental.', 'signal', distortionRows(variants)),
     section('Sensitivity', '400 Hz at 30 % modulation.', 'carrier', sensitivityRows(variants)),
     cautionList(variants),

@@ -1,4 +1,5 @@
 import type { Output, Plate } from '../engine/circuits/circuit.ts';
+import type { SocketRow } from '../engine/circuits/meter-readings.ts';
 import type { TubeLaw } from '../engine/tubes/tube.ts';
 
 /** The result file's shape. Keys carry their units; numbers are base SI units unless the key says otherwise. */
@@ -24,6 +25,8 @@ export interface VariantResult {
   readonly changes: Readonly<Record<string, string>>;
   readonly circuit: CircuitRecord;
   readonly rest: RestRecord;
+  /** Electrode voltages, true and as meters read them. */
+  readonly socket: readonly SocketRow[];
   readonly response: readonly ResponseRow[];
   readonly lowCornerHertz: number | null;
   readonly highCornerHertz: number | null;

@@ -41,6 +41,7 @@ export function variantResult(
     changes,
     circuit: circuitRecord(analysis.rest),
     rest: analysis.figures,
+    socket: analysis.socket,
     response: curve
       ? analysis.response.map((row) => ({ ...row, heardThroughDecibels: curveDecibels(curve, row.hertz) - level }))
       : analysis.response,

@@ -106,15 +106,21 @@ describe('what a fault does to the voltages', () => {
     expect(weak.plateVolts).toBeGreaterThan(sound.plateVolts + 5);
   });
 
-  it('a leaky bypass pulls the plate down', () => {
+  it('a leaky bypass pulls the plate down and draws what Ohm says from the supply', () => {
     const leaky = rested('leaky bypass 500 kΩ');
     expect(leaky.plateVolts).toBeLessThan(sound.plateVolts - 0.5);
+    const { supplyAmps, plateAmps, loadWatts } = restFigures(leaky);
+    // last digits of the linear solution
+    expect(supplyAmps - plateAmps).toBeCloseTo(leaky.plateVolts / 500e3, 12);
+    expect(supplyAmps).toBeCloseTo((90 - leaky.plateVolts) / 220e3, 12);
+    expect(loadWatts).toBeCloseTo((90 - leaky.plateVolts) ** 2 / 220e3, 12);
   });
 
   it('a leaky coupling capacitor loads the plate through what follows', () => {
     const leaky = rested('leaky coupling 2 MΩ');
     // 1 MΩ of the next grid
     expect(leaky.unknowns[leaky.audio.output.index]).toBeCloseTo(leaky.plateVolts / 3, 9);
+    expect(restFigures(leaky).supplyAmps - leaky.currents.plateAmps).toBeCloseTo(leaky.plateVolts / 3e6, 12);
     expect(leaky.plateVolts).toBeLessThan(sound.plateVolts - 0.1);
   });
 

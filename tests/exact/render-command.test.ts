@@ -56,6 +56,7 @@ const KEYS: readonly string[] = `
 .format .clip .clip.file .clip.seconds .clip.sampleRateHertz .clip.limitedSamples .fullScaleVolts .variants
 .variants[].name .variants[].changes .variants[].changes.plate.bypass .variants[].circuit
 .variants[].rest ${'gridVolts gridAmps gridResistanceOhms plateVolts plateAmps amplificationFactor plateResistanceOhms transconductanceSiemens stageGain plateWatts loadWatts supplyAmps inputCapacitanceFaradsAtAudio inputCapacitanceFaradsAtCarrier inputResistanceOhms carrierAtGridVoltsRms carrierOnPlateVoltsRms leakCornerHertz gridCornerHertz'.replace(/\w+/g, '.variants[].rest.$&')}
+.variants[].socket ${'electrode volts readings readings[].meter readings[].meterOhms readings[].rangeVolts readings[].volts'.replace(/[\w[\].]+/g, '.variants[].socket[].$&')}
 .variants[].response ${'hertz decibels phaseDegrees voltsRmsAt30Percent cost cost.tunedCircuit cost.gridCapacitor cost.plateBypass cost.load'.replace(/[\w.]+/g, '.variants[].response[].$&')}
 .variants[].lowCornerHertz .variants[].highCornerHertz
 .variants[].distortion ${'hertz modulationPercent secondPercent thirdPercent totalPercent'.replace(/\w+/g, '.variants[].distortion[].$&')}

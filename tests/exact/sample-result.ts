@@ -77,6 +77,17 @@ export function sampleVariant(name: string, lowHertz: number, highHertz: number)
       leakCornerHertz: 482.3,
       gridCornerHertz: 3071,
     },
+    socket: [
+      {
+        electrode: 'plate',
+        volts: 41.7,
+        readings: [
+          { meter: '10 MΩ', meterOhms: 10e6, rangeVolts: null, volts: 41.2 },
+          { meter: '1 kΩ/V', meterOhms: 50e3, rangeVolts: 50, volts: 17.31 },
+        ],
+      },
+      { electrode: 'cathode', volts: 0, readings: [{ meter: '10 MΩ', meterOhms: 10e6, rangeVolts: null, volts: 0 }] },
+    ],
     response,
     lowCornerHertz: highHertz === 0 ? null : lowHertz,
     highCornerHertz: highHertz === 0 ? null : highHertz,

@@ -3,7 +3,9 @@ import { type Caution, type Ratings, restCautions } from './cautions.ts';
 import type { DetectorCircuit } from './circuit.ts';
 import { magnitude } from './complex.ts';
 import { type CostPart, costByPart } from './cost-by-part.ts';
+import { directCurrents } from './direct-currents.ts';
 import { leakOhmsAtAudio } from './grid-leak.ts';
+import { COMMON_METERS, type Meter, type SocketRow, socketRows } from './meter-readings.ts';
 import { amplifierGain, corners, LinearResponse, REFERENCE_HERTZ, ratioDecibels } from './response.ts';
 import { type RestPoint, restPoint } from './rest-point.ts';
 import { type SteadyTone, steadyTone } from './steady-state.ts';
@@ -73,6 +75,8 @@ export interface Analysis {
   readonly highCornerHertz: number | null;
   readonly distortion: readonly DistortionFigure[];
   readonly sensitivity: readonly SensitivityFigure[];
+  /** Electrode voltages, and what meters make of them. */
+  readonly socket: readonly SocketRow[];
   readonly cautions: readonly Caution[];
 }
 
@@ -94,6 +98,7 @@ export function restFigures(rest: RestPoint): RestFigures {
   const slope = currents.heldPlateByGrid;
   const plateOhms = ohmsOf(currents.heldPlateByPlate);
   const rms = tuned.carrierPeakVolts / Math.SQRT2;
+  const { supplyAmps, loadWatts } = directCurrents(rest);
   return {
     gridVolts: rest.gridVolts,
     gridAmps: currents.gridAmps,
@@ -105,8 +110,8 @@ export function restFigures(rest: RestPoint): RestFigures {
     transconductanceSiemens: slope,
     stageGain,
     plateWatts: rest.plateVolts * currents.plateAmps,
-    loadWatts: (circuit.plate.supplyVolts - rest.plateVolts) * currents.plateAmps,
-    supplyAmps: currents.plateAmps,
+    loadWatts,
+    supplyAmps,
     inputCapacitanceFaradsAtAudio: inputAtAudio,
     inputCapacitanceFaradsAtCarrier: phasors.input.im / omega,
     inputResistanceOhms: ohmsOf(phasors.input.re),
@@ -154,7 +159,11 @@ export function totalPercent(tone: SteadyTone): number {
 }
 
 /** The whole analysis of one circuit. Raises InputError as `restPoint` and `steadyTone` do. */
-export function analyse(circuit: DetectorCircuit, ratings: Ratings | null = null): Analysis {
+export function analyse(
+  circuit: DetectorCircuit,
+  ratings: Ratings | null = null,
+  meters: readonly Meter[] = COMMON_METERS,
+): Analysis {
   const rest = restPoint(circuit);
   const response = responseRows(rest);
   const { lowHertz, highHertz } = corners(new LinearResponse(rest));
@@ -191,6 +200,7 @@ export function analyse(circuit: DetectorCircuit, ratings: Ratings | null = null
     highCornerHertz: highHertz,
     distortion,
     sensitivity,
+    socket: socketRows(rest, meters),
     cautions,
   };
 }

@@ -2,8 +2,14 @@ import type { CarrierPorts } from './carrier-path.ts';
 import { portsAt } from './carrier-ports.ts';
 import type { DetectorCircuit } from './circuit.ts';
 import { CATHODE, type LinearSystem, Network } from './network.ts';
-import type { Heard } from './output-stage.ts';
-import { type IdealParts, type Probe, probeOf, stampPlateSide } from './plate-network.ts';
+import {
+  type IdealParts,
+  type MeterPoints,
+  type PlateSide,
+  type Probe,
+  probeOf,
+  stampPlateSide,
+} from './plate-network.ts';
 
 /** The grid-leak stage for audio: linear network with two ports, grid and plate, where the tube draws its currents. */
 export interface AudioStage {
@@ -11,6 +17,7 @@ export interface AudioStage {
   readonly gridNode: number;
   readonly plateNode: number;
   readonly output: Probe;
+  readonly points: MeterPoints;
 }
 
 /** Leak and capacitor leakage in parallel, as audio sees them, ohms. */
@@ -29,8 +36,10 @@ export function gridLeakAudio(circuit: DetectorCircuit, ideal: IdealParts = {}):
   const network = new Network();
   const across = detector.leakPosition === 'across capacitor';
   const foot = network.fixed(across ? detector.leakReturnVolts : 0);
-  const { grid, plate, heard } = stampStage(network, circuit, ideal, foot, network.fixed(detector.leakReturnVolts));
-  return { system: network.assemble(), gridNode: grid, plateNode: plate, output: probeOf(network, heard) };
+  const leakEnd = network.fixed(detector.leakReturnVolts);
+  const { grid, plate, side } = stampStage(network, circuit, ideal, foot, leakEnd);
+  const output = probeOf(network, side.heard);
+  return { system: network.assemble(), gridNode: grid, plateNode: plate, output, points: side.points };
 }
 
 /** Stamps the stage from its tap on; `leakEnd` is where a leak to the cathode ends. */
@@ -40,7 +49,7 @@ function stampStage(
   ideal: IdealParts,
   tap: number,
   leakEnd: number,
-): { grid: number; plate: number; heard: Heard } {
+): { grid: number; plate: number; side: PlateSide } {
   const { detector, tube } = circuit;
   const grid = network.node();
   const plate = network.node();
@@ -49,8 +58,7 @@ function stampStage(
   network.resistor(grid, detector.leakPosition === 'across capacitor' ? tap : leakEnd, detector.leakOhms);
   network.capacitor(grid, CATHODE, tube.gridCathodeFarads);
   network.capacitor(grid, plate, tube.gridPlateFarads);
-  const heard = stampPlateSide(network, plate, circuit, ideal);
-  return { grid, plate, heard };
+  return { grid, plate, side: stampPlateSide(network, plate, circuit, ideal) };
 }
 
 /** What the stage's linear part does at the station's carrier. */

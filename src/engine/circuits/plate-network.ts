@@ -5,7 +5,7 @@ import { stampChokeLoad } from './load-choke.ts';
 import { stampPhones } from './load-phones.ts';
 import { stampTransformer } from './load-transformer.ts';
 import { CATHODE, type LinearSystem, Network } from './network.ts';
-import { type Heard, stampOutput } from './output-stage.ts';
+import { type Heard, type OutputSide, stampOutput } from './output-stage.ts';
 
 /** Which parts are taken as ideal for audio, for the cost by part. */
 export interface IdealParts {
@@ -22,6 +22,22 @@ export interface Probe {
   readonly weight: number;
 }
 
+/** Points of the plate side besides the plate that a meter is put to. */
+export interface MeterPoints {
+  /** Where the load is fed behind a dropping resistor; null: at the supply itself. */
+  readonly feedNode: number | null;
+  /** The load's end at the tube: the plate, or behind a carrier choke. */
+  readonly loadNode: number;
+  /** Output side of the coupling capacitor; null where there is none. */
+  readonly coupledNode: number | null;
+}
+
+/** What hangs on the plate. */
+export interface PlateSide {
+  readonly heard: Heard;
+  readonly points: MeterPoints;
+}
+
 /** Finds what is heard among the unknowns of a network with all its nodes. */
 export function probeOf(network: Network, heard: Heard): Probe {
   return heard.kind === 'node'
@@ -35,8 +51,8 @@ export function stampPlateSide(
   plate: number,
   circuit: DetectorCircuit,
   ideal: IdealParts = {},
-): Heard {
-  const { load, supplyVolts, bypassFarads, bypassLeakOhms, carrierChoke, dropping } = circuit.plate;
+): PlateSide {
+  const { supplyVolts, bypassFarads, bypassLeakOhms, carrierChoke, dropping } = circuit.plate;
   const bypass = ideal.plateBypass ? 0 : bypassFarads;
   network.capacitor(plate, CATHODE, bypass + circuit.tube.plateCathodeFarads);
   // a leak moves the rest point, which the cost by part holds: it stays where the bypass is taken as ideal
@@ -49,13 +65,26 @@ export function stampPlateSide(
     network.capacitor(top, CATHODE, ideal.plateBypass ? 0 : carrierChoke.bypassFarads);
   }
   let supply = network.fixed(supplyVolts);
+  let feedNode: number | null = null;
   if (dropping && !ideal.load) {
-    const feed = network.node();
-    network.resistor(feed, supply, dropping.ohms);
-    network.capacitor(feed, CATHODE, dropping.farads);
-    supply = feed;
+    feedNode = network.node();
+    network.resistor(feedNode, supply, dropping.ohms);
+    network.capacitor(feedNode, CATHODE, dropping.farads);
+    supply = feedNode;
   }
-  const perfect = ideal.load === true;
+  const { heard, coupledNode } = stampLoad(network, top, supply, circuit, ideal.load === true);
+  return { heard, points: { feedNode, loadNode: top, coupledNode } };
+}
+
+/** The load between two points, and what it feeds. */
+function stampLoad(
+  network: Network,
+  top: number,
+  supply: number,
+  circuit: DetectorCircuit,
+  perfect: boolean,
+): OutputSide {
+  const { load } = circuit.plate;
   switch (load.kind) {
     case 'resistor':
       network.resistor(top, supply, load.ohms);
@@ -66,7 +95,7 @@ export function stampPlateSide(
     case 'transformer':
       return stampOutput(network, stampTransformer(network, top, supply, load, perfect), circuit.output, perfect);
     case 'phones':
-      return stampPhones(network, top, supply, load, perfect);
+      return { heard: stampPhones(network, top, supply, load, perfect), coupledNode: null };
   }
 }
 

@@ -206,6 +206,22 @@ function solveRest(circuit: DetectorCircuit): RestPoint {
   };
 }
 
+/**
+ * The direct volts of every unknown with one more conductance from a node to the cathode, S, such as a meter's; the
+ * carrier at the tuned circuit is held. Raises InputError `no-rest-point`.
+ */
+export function restWith(rest: RestPoint, node: number, siemens: number): Float64Array {
+  const { audio } = rest;
+  const conductance = audio.system.conductance.slice();
+  const place = node * audio.system.size + node;
+  conductance[place] = (conductance[place] as number) + siemens;
+  const loaded = { ...audio, system: { ...audio.system, conductance } };
+  const w: [number, number] = [rest.gridVolts, rest.plateVolts];
+  const currents = emptyCurrents();
+  restAtPeak(new Stage(rest.laws, rest.path), directPath(loaded), rest.tuned.carrierPeakVolts, w, currents);
+  return allUnknowns(loaded, w, currents).unknowns;
+}
+
 /** Every unknown of the network at rest, and the largest error of its node equations with the laws put back. */
 function allUnknowns(
   audio: AudioStage,
