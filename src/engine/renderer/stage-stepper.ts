@@ -17,6 +17,11 @@ const LEAST_CARRIER_VOLTS = 0.005;
 /** A grid move is never taken longer than this in one pass, V: the law is exponential over tens of millivolts. */
 const LONGEST_GRID_MOVE_VOLTS = 2;
 const MOST_PASSES = 60;
+/** What a quick pass came to, and how many may follow the first. */
+const TOO_OLD = 0;
+const SETTLED = 1;
+const NEARER = 2;
+const MOST_QUICK = 3;
 /** Passes after which moves are halved and the plate is let go below zero. */
 const ROUSED_PASSES = 12;
 /**
@@ -187,7 +192,9 @@ export class StageStepper {
 
   /** The stage under `drive` from the present estimates. */
   private solve(): void {
-    let settled = this.quickPass();
+    let quick = this.quickPass();
+    for (let more = 0; more < MOST_QUICK && quick === NEARER; more++) quick = this.quickPass();
+    let settled = quick === SETTLED;
     for (let pass = 0; pass < MOST_PASSES && !settled; pass++) {
       this.passes++;
       for (let s = 0; s < STAGES; s++) this.linearise(s);
@@ -233,8 +240,8 @@ export class StageStepper {
         admittance[2 * s] = yRe;
         admittance[2 * s + 1] = yIm;
       }
-      tank.solve();
       if (moved < tank.most) break;
+      tank.solve();
     }
     tank.advance();
   }
@@ -292,10 +299,11 @@ export class StageStepper {
   }
 
   /**
-   * A pass with the slopes of an earlier step: values only, then the kept inverse. True when the error that the stale
-   * slopes can have left is far below what is heard; else the estimate stays as forecast and the full passes follow.
+   * A pass with the slopes of an earlier step: values only, then the kept inverse. Settled when the error that the stale
+   * slopes can have left is far below what is heard; nearer when another pass will at least halve what is left; else the
+   * estimate stays as it was and full passes follow.
    */
-  private quickPass(): boolean {
+  private quickPass(): number {
     const { laws, g, k, t, w, ag, au, i0, iQuick, slope, peak, blend, kept, at, path, chord, move, drive } = this;
     const { grid, cathode, phi, mu } = laws;
     const perMu = 1 / mu;
@@ -306,7 +314,7 @@ export class StageStepper {
       Math.abs(u1 - (kept[1] as number)) +
       Math.abs((ag[last] as number) - (kept[2] as number)) +
       Math.abs((au[last] as number) - (kept[3] as number));
-    if (!(stale < STALE_VOLTS)) return false;
+    if (!(stale < STALE_VOLTS)) return TOO_OLD;
     for (let s = 0; s < STAGES; s++) {
       const v = w[2 * s] as number;
       const p = w[2 * s + 1] as number;
@@ -350,7 +358,8 @@ export class StageStepper {
       const du = (peak[o + 3] as number) + (peak[o + 4] as number) * dv + (peak[o + 5] as number) * dp;
       size += Math.abs(dv) + Math.abs(dp) * perMu + Math.abs(dg) + Math.abs(du);
     }
-    if (!(size * (stale + size) < this.limits.quick)) return false;
+    const settled = size * (stale + size) < this.limits.quick;
+    if (!settled && !(stale + size < STALE_VOLTS)) return TOO_OLD;
     for (let s = 0; s < STAGES; s++) {
       const dv = move[2 * s] as number;
       const dp = move[2 * s + 1] as number;
@@ -367,7 +376,7 @@ export class StageStepper {
     }
     this.moveChords(1);
     this.quick++;
-    return true;
+    return settled ? SETTLED : NEARER;
   }
 
   /** `move` = inverse · (open − w − Z·currents). */

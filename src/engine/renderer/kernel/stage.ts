@@ -165,13 +165,13 @@ function portMoves(currents: i32): void {
   keep(L.MOVE + 4, d2);
 }
 
-// one pass with kept slopes; true when it settled
-function quickPass(): bool {
+// one pass with kept slopes: 1 when it settled, 2 when it came nearer, 0 when the slopes are too old for it
+function quickPass(): i32 {
   const perMu = rd(L.PER_MU);
   const phi = rd(L.PHI);
   const u1 = rd(L.W + 4) + rd(L.W + 5) * perMu;
   const stale = abs(rd(L.W + 4) - rd(L.KEPT)) + abs(u1 - rd(L.KEPT + 1)) + abs(rd(L.AG + 2) - rd(L.KEPT + 2)) + abs(rd(L.AU + 2) - rd(L.KEPT + 3));
-  if (!(stale < rd(L.STALE))) return false;
+  if (!(stale < rd(L.STALE))) return 0;
   for (let st = 0; st < 3; st++) {
     const v = rd(L.W + 2 * st);
     const p = rd(L.W + 1 + 2 * st);
@@ -210,7 +210,8 @@ function quickPass(): bool {
     const o = L.PEAKS + 6 * st;
     size += abs(dv) + abs(dp) * perMu + abs(rd(o) + rd(o + 1) * dv + rd(o + 2) * dp) + abs(rd(o + 3) + rd(o + 4) * dv + rd(o + 5) * dp);
   }
-  if (!(size * (stale + size) < rd(L.QUICK))) return false;
+  const settled = size * (stale + size) < rd(L.QUICK);
+  if (!settled && !(stale + size < rd(L.STALE))) return 0;
   for (let st = 0; st < 3; st++) {
     const dv = rd(L.MOVE + 2 * st), dp = rd(L.MOVE + 1 + 2 * st);
     const o = L.PEAKS + 6 * st;
@@ -226,7 +227,7 @@ function quickPass(): bool {
     moveChords(st, dv, dp, dg, du);
   }
   wr(L.COUNTS + 3, rd(L.COUNTS + 3) + 1);
-  return true;
+  return settled ? 1 : 2;
 }
 
 // currents and slopes at stage st about the present estimate, the peaks eliminated
@@ -387,7 +388,9 @@ function forecast(): void {
 }
 
 function solve(): void {
-  let settled = quickPass();
+  let quick = quickPass();
+  for (let more = 0; more < 3 && quick == 2; more++) quick = quickPass();
+  let settled = quick == 1;
   for (let pass = 0; pass < 60 && !settled; pass++) {
     wr(L.COUNTS, rd(L.COUNTS) + 1);
     settled = fullPass(pass);
@@ -478,8 +481,8 @@ function solveWithTank(): void {
       wr(L.PULL + 2 * st, yRe);
       wr(L.PULL + 1 + 2 * st, yIm);
     }
-    envelopeUnder();
     if (moved < most) break;
+    envelopeUnder();
   }
   for (let part = 0; part < 2; part++) {
     const o = P + 4 * part;
