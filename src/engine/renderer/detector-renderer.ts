@@ -36,6 +36,9 @@ export class DetectorRenderer {
   private readonly rest: RestPoint;
   private readonly steps: number;
   private readonly interpolator: Interpolator;
+  /** The same for the second part of a station's envelope. */
+  private readonly other: Interpolator;
+  private readonly otherDrives: Float64Array;
   private readonly decimator: Decimator;
   private readonly envelope: TunedEnvelope;
   private readonly drives: Float64Array;
@@ -61,6 +64,8 @@ export class DetectorRenderer {
     const fractions: number[] = [];
     for (let k = 0; k < this.steps; k++) for (const t of STAGE_TIMES) fractions.push((k + t) / this.steps);
     this.interpolator = new Interpolator(clipRateHertz, fractions);
+    this.other = new Interpolator(clipRateHertz, fractions);
+    this.otherDrives = new Float64Array(fractions.length);
     this.decimator = new Decimator(clipRateHertz, 2 * this.steps);
     const { station } = rest.circuit;
     this.envelope = new TunedEnvelope(station.carrierHertz, rest.tuned.loadedQ, rest.tuned.detuneHertz, stepSeconds);
@@ -106,6 +111,7 @@ export class DetectorRenderer {
 
   reset(): void {
     this.interpolator.reset();
+    this.other.reset();
     this.decimator.reset();
     this.envelope.reset();
     this.stepper.reset();
@@ -115,28 +121,37 @@ export class DetectorRenderer {
   /**
    * @param input   modulation m·p, `frames` long at least
    * @param output  output volts less the rest volts, V
+   * @param quadrature  second part of the station's envelope, in quadrature to the carrier, where it has one: then in
+   *   every block from the first
    */
-  process(input: Float64Array | Float32Array, output: Float64Array | Float32Array, frames: number): void {
+  process(
+    input: Float64Array | Float32Array,
+    output: Float64Array | Float32Array,
+    frames: number,
+    quadrature: Float64Array | null = null,
+  ): void {
     if (this.kernel) {
-      this.kernel.process(input, output, frames);
+      this.kernel.process(input, output, frames, quadrature);
       return;
     }
     const { interpolator, decimator, envelope, stepper, drives, steps, restVolts } = this;
     const peak = this.rest.tuned.carrierPeakVolts;
     const { magnitudes } = envelope;
     const { drive, heard, tank } = stepper;
-    const { volts } = this;
+    const { volts, other, otherDrives } = this;
+    const second = quadrature === null ? null : otherDrives;
     const stages = drive.length;
     for (let n = 0; n < frames; n++) {
       interpolator.process(input, n, drives);
+      if (quadrature) other.process(quadrature, n, otherDrives);
       for (let k = 0; k < steps; k++) {
         if (tank) {
-          envelope.open(drives, stages * k);
+          envelope.open(drives, stages * k, second);
           tank.ahead.set(envelope.ahead);
           stepper.step();
           envelope.finish(tank.envelope[2 * stages - 2] as number, tank.envelope[2 * stages - 1] as number);
         } else {
-          envelope.step(drives, stages * k);
+          envelope.step(drives, stages * k, second);
           for (let s = 0; s < stages; s++) drive[s] = peak * (magnitudes[s] as number);
           stepper.step();
         }

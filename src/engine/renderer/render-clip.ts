@@ -19,6 +19,7 @@ const BLOCK = 4096;
  * Renders a whole clip: the detector starts at rest, the filters' delay is taken out.
  *
  * @param modulation  m·p, any length
+ * @param quadrature  second part of the station's envelope, same length, where it has one
  * @param onBlock     told the frames done after each block; may throw to stop
  */
 export function renderClip(
@@ -28,18 +29,21 @@ export function renderClip(
   clipRateHertz: number,
   quality: Quality = 'normal',
   onBlock: (framesDone: number) => void = () => {},
+  quadrature: Float64Array | null = null,
 ): RenderedClip {
   const renderer = new DetectorRenderer(rest, laws, clipRateHertz, quality);
   const delay = renderer.delaySamples;
   const volts = new Float64Array(modulation.length);
   const input = new Float64Array(BLOCK);
+  const second = quadrature === null ? null : new Float64Array(BLOCK);
   const output = new Float64Array(BLOCK);
   let peakVolts = 0;
   const total = modulation.length + delay;
   for (let from = 0; from < total; from += BLOCK) {
     const frames = Math.min(BLOCK, total - from);
     for (let n = 0; n < frames; n++) input[n] = from + n < modulation.length ? (modulation[from + n] as number) : 0;
-    renderer.process(input, output, frames);
+    if (second && quadrature) for (let n = 0; n < frames; n++) second[n] = quadrature[from + n] ?? 0;
+    renderer.process(input, output, frames, second);
     for (let n = 0; n < frames; n++) {
       const at = from + n - delay;
       if (at < 0) continue;

@@ -22,8 +22,8 @@ export class TunedEnvelope {
   readonly ahead = Float64Array.of(1, 0, 1, 0, 1, 0);
   /** |E| at the points of the last step. */
   readonly magnitudes = new Float64Array([1, 1, 1]);
-  /** E (real, imaginary) and the last envelope. */
-  private readonly state = Float64Array.of(1, 0, 1);
+  /** E and the last envelope of the station, two parts each. */
+  private readonly state = Float64Array.of(1, 0, 1, 0);
 
   /**
    * @param carrierHertz  Hz
@@ -56,42 +56,54 @@ export class TunedEnvelope {
     this.state[0] = 1;
     this.state[1] = 0;
     this.state[2] = 1;
+    this.state[3] = 0;
     this.magnitudes.fill(1);
     for (let k = 0; k < this.ahead.length; k++) this.ahead[k] = k % 2 === 0 ? 1 : 0;
   }
 
-  /** Takes the envelope at the three points, re the carrier: 1 + `modulation[from]` and the next two. */
-  step(modulation: Float64Array, from: number): void {
-    this.open(modulation, from);
+  /**
+   * Takes the envelope at the three points, re the carrier: 1 + `modulation[from]` and the next two, and `quadrature` in
+   * the same way where the station's envelope has a second part.
+   */
+  step(modulation: Float64Array, from: number, quadrature: Float64Array | null = null): void {
+    this.open(modulation, from, quadrature);
     const { ahead, magnitudes } = this;
+    const real = this.tuned && quadrature === null;
     for (let row = 0; row < magnitudes.length; row++) {
       const re = ahead[2 * row] as number;
       const im = ahead[2 * row + 1] as number;
-      magnitudes[row] = this.tuned ? Math.abs(re) : Math.sqrt(re * re + im * im);
+      magnitudes[row] = real ? Math.abs(re) : Math.sqrt(re * re + im * im);
     }
     this.state[0] = ahead[4] as number;
     this.state[1] = ahead[5] as number;
   }
 
   /** As `step`, but left open for a source: E without it goes to `ahead`, and `finish` ends the step. */
-  open(modulation: Float64Array, from: number): void {
+  open(modulation: Float64Array, from: number, quadrature: Float64Array | null = null): void {
     const { weights: w, state, ahead } = this;
     const re = state[0] as number;
     const im = state[1] as number;
-    const s0 = state[2] as number;
-    const s1 = 1 + (modulation[from] as number);
-    const s2 = 1 + (modulation[from + 1] as number);
-    const s3 = 1 + (modulation[from + 2] as number);
+    const last = state[2] as number;
+    const lastIm = state[3] as number;
     for (let row = 0; row < POINTS.length; row++) {
       const o = 10 * row;
-      const drive =
-        (w[o + 1] as number) * s0 + (w[o + 2] as number) * s1 + (w[o + 3] as number) * s2 + (w[o + 4] as number) * s3;
-      const driveIm =
-        (w[o + 6] as number) * s0 + (w[o + 7] as number) * s1 + (w[o + 8] as number) * s2 + (w[o + 9] as number) * s3;
-      ahead[2 * row] = (w[o] as number) * re - (w[o + 5] as number) * im + drive;
-      ahead[2 * row + 1] = (w[o] as number) * im + (w[o + 5] as number) * re + driveIm;
+      const a0 = w[o + 1] as number;
+      const b0 = w[o + 6] as number;
+      let nextRe = (w[o] as number) * re - (w[o + 5] as number) * im + a0 * last - b0 * lastIm;
+      let nextIm = (w[o] as number) * im + (w[o + 5] as number) * re + a0 * lastIm + b0 * last;
+      for (let k = 0; k < POINTS.length; k++) {
+        const a = w[o + 2 + k] as number;
+        const b = w[o + 7 + k] as number;
+        const s = 1 + (modulation[from + k] as number);
+        const q = quadrature === null ? 0 : (quadrature[from + k] as number);
+        nextRe += a * s - b * q;
+        nextIm += a * q + b * s;
+      }
+      ahead[2 * row] = nextRe;
+      ahead[2 * row + 1] = nextIm;
     }
-    state[2] = s3;
+    state[2] = 1 + (modulation[from + POINTS.length - 1] as number);
+    state[3] = quadrature === null ? 0 : (quadrature[from + POINTS.length - 1] as number);
   }
 
   /** Ends an open step with E as it came out under the source. */

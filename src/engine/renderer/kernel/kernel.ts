@@ -21,6 +21,7 @@ interface Exports {
     at: number,
     tuned: boolean,
     middle: number,
+    quadrature: number,
   ): number;
 }
 
@@ -71,7 +72,14 @@ export class Kernel {
   private readonly numbers: Float64Array;
   private readonly run: Exports['block'];
   private readonly setup: KernelSetup;
-  private readonly addresses: { phases: number; rows: number; rise: number; fall: number; windows: number };
+  private readonly addresses: {
+    phases: number;
+    rows: number;
+    rise: number;
+    fall: number;
+    other: number;
+    windows: number;
+  };
   private place = 0;
   /** Rows of the state's matrix: unknowns and the output at half a step, even. */
   private readonly rows: number;
@@ -81,14 +89,15 @@ export class Kernel {
     this.rows = 2 * Math.ceil((setup.rest.audio.system.size + 1) / 2);
     const { filters, grid, cathode, stepper } = setup;
     const taps = 2 * filters.half;
-    const windows = 8 * 2 * taps * (2 * filters.steps + 1);
+    const windows = 8 * 2 * taps * (2 * filters.steps + 2);
     const shelf = new Shelf(8 * L.FREE);
     const phases = shelf.take(8 * filters.phases.length);
     const rows = shelf.take(8 * filters.rows.length);
     const rise = shelf.take(windows);
     const fall = rise + 8 * 2 * taps;
+    const other = fall + 8 * 2 * taps * 2 * filters.steps;
     const tables = shelf.take(tableBytes(grid) + tableBytes(cathode));
-    this.addresses = { phases, rows, rise, fall, windows };
+    this.addresses = { phases, rows, rise, fall, other, windows };
     this.memory = new WebAssembly.Memory({ initial: Math.ceil(shelf.used / 65536) + 1 });
     this.numbers = new Float64Array(this.memory.buffer);
     this.numbers.set(filters.phases, phases / 8);
@@ -190,16 +199,23 @@ export class Kernel {
     m[L.ENVELOPE_STATE] = 1;
     m[L.ENVELOPE_STATE + 1] = 0;
     m[L.ENVELOPE_STATE + 2] = 1;
+    m[L.ENVELOPE_STATE + 3] = 0;
     this.place = 0;
   }
 
   /** As `DetectorRenderer.process`. */
-  process(input: Float64Array | Float32Array, output: Float64Array | Float32Array, frames: number): void {
+  process(
+    input: Float64Array | Float32Array,
+    output: Float64Array | Float32Array,
+    frames: number,
+    quadrature: Float64Array | null = null,
+  ): void {
     const { numbers: m, addresses: a, setup } = this;
     const { filters, rest, tuned } = setup;
     for (let from = 0; from < frames; from += L.BLOCK) {
       const count = Math.min(L.BLOCK, frames - from);
       for (let n = 0; n < count; n++) m[L.INPUT + n] = input[from + n] as number;
+      if (quadrature) for (let n = 0; n < count; n++) m[L.QUADRATURE + n] = quadrature[from + n] as number;
       this.place = this.run(
         count,
         rest.audio.system.size,
@@ -214,6 +230,7 @@ export class Kernel {
         this.place,
         tuned,
         filters.middle,
+        quadrature ? a.other : 0,
       );
       for (let n = 0; n < count; n++) output[from + n] = m[L.OUTPUT + n] as number;
     }

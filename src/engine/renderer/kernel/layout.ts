@@ -38,7 +38,7 @@ export const FORECAST = 68;
 /** Port constants, and ports from currents column by column. */
 export const PORT_CONSTANT = 80;
 export const PORT_FROM_CURRENT = 86;
-// envelope: weights a stage after another (five, real then imaginary), state: E and the last instant's value
+// envelope: weights a stage after another (five, real then imaginary), state: E and the last instant's value, two parts each
 export const ENVELOPE = 122;
 export const ENVELOPE_STATE = 152;
 // working: three stages of drive, volts, peaks, port volts with no current, currents, quick currents, slopes by column,
@@ -81,6 +81,8 @@ export const PORT_FROM_STATE = CONSTANT + MOST_ROWS;
 export const FROM_ALL = PORT_FROM_STATE + 6 * MOST_UNKNOWNS;
 /** Clip-rate buffers: modulation in, volts out. */
 export const INPUT = FROM_ALL + MOST_ROWS * (MOST_UNKNOWNS + 6);
-export const OUTPUT = INPUT + BLOCK;
+/** The second part of the station's envelope, where it has one. */
+export const QUADRATURE = INPUT + BLOCK;
+export const OUTPUT = QUADRATURE + BLOCK;
 /** First free f64: drives, step outputs, filters, then the tables. */
 export const FREE = OUTPUT + BLOCK;

@@ -575,6 +575,37 @@ function envelope(first: f64, second: f64, end: f64, tuned: bool, tank: bool): v
   wr(L.ENVELOPE_STATE + 2, end);
 }
 
+// the same for a station's envelope of two parts
+function envelopeOfTwo(window: i32, quadrature: i32, phases: i32, taps: i32, half: i32, k: i32, last: bool, tank: bool): void {
+  const re = rd(L.ENVELOPE_STATE), im = rd(L.ENVELOPE_STATE + 1);
+  const peak = rd(L.REST_PEAK);
+  let sRe0 = rd(L.ENVELOPE_STATE + 2), sIm0 = rd(L.ENVELOPE_STATE + 3);
+  const row0 = phases + ((3 * k * taps) << 3), row1 = row0 + (taps << 3), row2 = row1 + (taps << 3);
+  const sRe1 = 1.0 + product(row0, window, taps), sIm1 = product(row0, quadrature, taps);
+  const sRe2 = 1.0 + product(row1, window, taps), sIm2 = product(row1, quadrature, taps);
+  const sRe3 = 1.0 + (last ? load<f64>(window + (half << 3)) : product(row2, window, taps));
+  const sIm3 = last ? load<f64>(quadrature + (half << 3)) : product(row2, quadrature, taps);
+  for (let row = 0; row < 3; row++) {
+    const o = L.ENVELOPE + 10 * row;
+    const a0 = rd(o + 1), a1 = rd(o + 2), a2 = rd(o + 3), a3 = rd(o + 4);
+    const b0 = rd(o + 6), b1 = rd(o + 7), b2 = rd(o + 8), b3 = rd(o + 9);
+    const nextRe = rd(o) * re - rd(o + 5) * im + a0 * sRe0 - b0 * sIm0 + a1 * sRe1 - b1 * sIm1 + a2 * sRe2 - b2 * sIm2 + a3 * sRe3 - b3 * sIm3;
+    const nextIm = rd(o) * im + rd(o + 5) * re + a0 * sIm0 + b0 * sRe0 + a1 * sIm1 + b1 * sRe1 + a2 * sIm2 + b2 * sRe2 + a3 * sIm3 + b3 * sRe3;
+    if (tank) {
+      wr(L.TANK_AHEAD + 2 * row, nextRe);
+      wr(L.TANK_AHEAD + 2 * row + 1, nextIm);
+      continue;
+    }
+    wr(L.DRIVE + row, peak * sqrt(nextRe * nextRe + nextIm * nextIm));
+    if (row == 2) {
+      wr(L.ENVELOPE_STATE, nextRe);
+      wr(L.ENVELOPE_STATE + 1, nextIm);
+    }
+  }
+  wr(L.ENVELOPE_STATE + 2, sRe3);
+  wr(L.ENVELOPE_STATE + 3, sIm3);
+}
+
 // sum of products of two runs of `taps` (even) f64
 // @ts-expect-error: decorator
 @inline function product(a: i32, b: i32, taps: i32): f64 {
@@ -599,10 +630,11 @@ function envelope(first: f64, second: f64, end: f64, tuned: bool, tank: bool): v
  *
  * n: unknowns; rows: of the state's matrix; output: index of the unknown that is heard; steps to a clip sample; half: kernel
  * half length in samples; phases, lanes: byte addresses of the filters' weights; rise, fall: byte addresses of the
- * windows (see kernel.ts); at: place in the windows; middle: weight of the clip instant.
+ * windows (see kernel.ts); at: place in the windows; middle: weight of the clip instant; quadrature: byte address of the
+ * window of the envelope's second part, 0 for none.
  */
 export function block(
-  frames: i32, n: i32, rows: i32, output: i32, steps: i32, half: i32, phases: i32, lanes: i32, rise: i32, fall: i32, at: i32, tuned: bool, middle: f64,
+  frames: i32, n: i32, rows: i32, output: i32, steps: i32, half: i32, phases: i32, lanes: i32, rise: i32, fall: i32, at: i32, tuned: bool, middle: f64, quadrature: i32,
 ): i32 {
   const taps = 2 * half;
   const long = 2 * taps * 8;
@@ -616,15 +648,23 @@ export function block(
     const sample = rd(L.INPUT + f);
     store<f64>(rise + (riseAt << 3), sample);
     store<f64>(rise + ((riseAt + taps) << 3), sample);
+    if (quadrature > 0) {
+      const other = rd(L.QUADRATURE + f);
+      store<f64>(quadrature + (riseAt << 3), other);
+      store<f64>(quadrature + ((riseAt + taps) << 3), other);
+    }
     riseAt = riseAt + 1 == taps ? 0 : riseAt + 1;
     const window = rise + (riseAt << 3);
     for (let k = 0; k < steps; k++) {
       const last = k == steps - 1;
-      const first = product(phases + ((3 * k * taps) << 3), window, taps);
-      const second = product(phases + (((3 * k + 1) * taps) << 3), window, taps);
-      // the last instant of a sample falls on the clip's own: every other tap is zero
-      const end = last ? load<f64>(window + (half << 3)) : product(phases + (((3 * k + 2) * taps) << 3), window, taps);
-      envelope(1.0 + first, 1.0 + second, 1.0 + end, tuned, tank);
+      if (quadrature > 0) envelopeOfTwo(window, quadrature + (riseAt << 3), phases, taps, half, k, last, tank);
+      else {
+        const first = product(phases + ((3 * k * taps) << 3), window, taps);
+        const second = product(phases + (((3 * k + 1) * taps) << 3), window, taps);
+        // the last instant of a sample falls on the clip's own: every other tap is zero
+        const end = last ? load<f64>(window + (half << 3)) : product(phases + (((3 * k + 2) * taps) << 3), window, taps);
+        envelope(1.0 + first, 1.0 + second, 1.0 + end, tuned, tank);
+      }
       step(n, rows, tank);
       const middleVolts = rd(L.NEXT + n) * weight - restVolts;
       const lane = fall + 2 * k * long;
