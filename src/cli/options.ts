@@ -1,5 +1,7 @@
 import type { Command } from 'commander';
+import { COMMON_METERS, type Meter } from '../engine/circuits/meter-readings.ts';
 import { InputError } from '../engine/errors.ts';
+import { readMeters } from '../list/meter-words.ts';
 import type { WavCoding } from '../results/wav-write.ts';
 
 /** Flags of the parts a builder swaps most, the key of the list each sets, and its help. */
@@ -91,6 +93,17 @@ export function choice<Word extends string>(
 export function wavCoding(options: RawOptions): WavCoding {
   const word = choice(options, 'wav', ['16', '24', '32f'], '24');
   return word;
+}
+
+/** Adds the flag of the builder's own meters, for commands that print the socket's voltages. */
+export function addMeterFlag(command: Command): Command {
+  return command.option('--meter <R>', "your own meter, for the socket voltages: 11M, 20k/V or '20k/V 50 V'");
+}
+
+/** The common meters, and those given with --meter. */
+export function metersOf(options: RawOptions): readonly Meter[] {
+  const own = text(options, 'meter');
+  return own === null ? COMMON_METERS : [...COMMON_METERS, ...readMeters(own, '--meter')];
 }
 
 export function flag(options: RawOptions, name: string): boolean {

@@ -2,7 +2,7 @@ import { Command, CommanderError } from 'commander';
 import { InputError } from '../engine/errors.ts';
 import { faultText } from '../results/fault-text.ts';
 import { EXIT, type Io, Stopped } from './io.ts';
-import { addPartFlags } from './options.ts';
+import { addMeterFlag, addPartFlags } from './options.ts';
 
 const EXIT_HELP = `
 Exit status: 0 done; 2 the input is wrong (the message names it); 3 a proof or a goal was not met; 1 a fault of the
@@ -89,7 +89,7 @@ Examples:
       finish(import('./commands/render.ts').then((module) => module.render(clip, list ?? null, options, io))),
     );
 
-  addPartFlags(program.command('respond'))
+  addMeterFlag(addPartFlags(program.command('respond')))
     .description('Rest point, response, cost by part, distortion and sensitivity, without a clip.')
     .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
     .option('--out <DIR>', 'also write result.json, tables and plot there')
@@ -101,6 +101,7 @@ Examples:
 Examples:
   presolder respond my-set.yaml
   presolder respond --bypass 0,100p,1n --load 'resistor 56k'
+  presolder respond my-set.yaml --fault 'none,weak tube 60 %,leaky coupling 2M' --meter 11M
   presolder respond my-set.yaml --out out/paper`,
     )
     .action((list: string | undefined, options: Record<string, unknown>) =>

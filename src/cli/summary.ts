@@ -1,4 +1,5 @@
 import { formatQuantity } from '../engine/parts/format-quantity.ts';
+import { gatherCautions, gatheredText } from '../results/caution-list.ts';
 import { COST_PARTS } from '../results/cost-parts.ts';
 import type { Result, VariantResult } from '../results/result.ts';
 import { plainTable } from './plain-table.ts';
@@ -43,11 +44,8 @@ export function summaryText(result: Result): string {
 
 /** Each caution once, with the variants it concerns when it does not concern all. */
 function cautionLines(result: Result): string[] {
-  const concerned = new Map<string, string[]>();
-  for (const variant of result.variants) {
-    for (const caution of variant.cautions) concerned.set(caution, [...(concerned.get(caution) ?? []), variant.name]);
-  }
-  return [...concerned].map(([caution, names]) =>
-    names.length === result.variants.length ? `Caution: ${caution}` : `Caution (${names.join(', ')}): ${caution}`,
-  );
+  return gatherCautions(result.variants).map((caution) => {
+    const who = caution.names.length === 0 ? '' : ` (${caution.names.join(', ')})`;
+    return `Caution${who}: ${gatheredText(caution)}`;
+  });
 }

@@ -4,7 +4,7 @@ import { withFaults } from '../engine/circuits/part-faults.ts';
 import { type Fault, InputError } from '../engine/errors.ts';
 import type { BandLimit, PreEmphasis } from '../engine/station/pre-emphasis.ts';
 import type { CathodeKind } from '../engine/tubes/fitting.ts';
-import { outputOf, plateLoadOf } from './list-loads.ts';
+import { outputOf, plateLoadOf, windingRating } from './list-loads.ts';
 import { socketedTube } from './list-tube.ts';
 import { type CircuitList, STANDARD_COIL } from './schema.ts';
 
@@ -64,7 +64,7 @@ function asDrawn(list: CircuitList): BuiltCircuit {
       },
       output: outputOf(list),
     },
-    ratings,
+    ratings: { ...(ratings ?? { plateVolts: null, plateWatts: null }), ...partRatings(list) },
     sending: {
       preEmphasis: station['pre-emphasis'],
       channelLimit: station['channel limit'] === '9 kHz' ? 'channel 9 kHz' : 'none',
@@ -72,6 +72,18 @@ function asDrawn(list: CircuitList): BuiltCircuit {
     },
     heardThrough: list.output['heard through'],
     cautions,
+  };
+}
+
+/** What the list says of its parts that no equation uses. */
+function partRatings(list: CircuitList): Omit<Ratings, 'plateVolts' | 'plateWatts'> {
+  const { plate, output } = list;
+  const winding = windingRating(plate.load);
+  return {
+    ...(winding === null ? {} : { windingAmps: winding.amps, windingSource: winding.source }),
+    batteryAmpHours: plate['battery capacity'],
+    // phones in the plate lead are all that follows
+    feedsGrid: output.into === 'next grid' && plate.load.kind !== 'phones',
   };
 }
 

@@ -152,9 +152,18 @@ function wrong(code: string, where: string, got: string, expected: string): Inpu
   return new InputError({ code, where, got, expected });
 }
 
-/** Direct current above which a load's core or winding is outside its rating, A; null where none is known. */
-export function ratedAmpsOf(load: WrittenLoad): number | null {
-  if (load.kind === 'choke') return partNamed(CHOKES, load.part, 'plate.load.part').ratedAmps;
-  if (load.kind !== 'transformer') return null;
-  return load['at current'] ?? partNamed(TRANSFORMERS, load.part, 'plate.load.part').ratedAmps;
+/**
+ * Direct current above which a load's core or winding is outside its rating, A, with where that is from; null where none
+ * is known, as of a winding whose inductance the list gives without a current.
+ */
+export function windingRating(load: WrittenLoad): { readonly amps: number; readonly source: string } | null {
+  if (load.kind === 'resistor' || load.kind === 'phones') return null;
+  const own = load.kind === 'choke' ? load.inductance : load['primary inductance'];
+  if (load.kind === 'transformer' && load['at current'] !== undefined) {
+    return { amps: load['at current'], source: "the current at which the list knows the winding's inductance" };
+  }
+  if (own !== undefined) return null;
+  const parts: readonly LoadPart<unknown>[] = load.kind === 'choke' ? CHOKES : TRANSFORMERS;
+  const { name, ratedAmps, source } = partNamed(parts, load.part, 'plate.load.part');
+  return ratedAmps === null ? null : { amps: ratedAmps, source: `${load.kind} ${name}: ${source}` };
 }

@@ -62,7 +62,13 @@ export function socketedTube(list: CircuitList): ListTube {
     tube: socketed.tube,
     cathode,
     filamentVolts,
-    ratings: type ? { plateVolts: type.ratings.maxPlateVolts, plateWatts: type.ratings.maxPlateWatts } : null,
+    ratings: type
+      ? {
+          plateVolts: type.ratings.maxPlateVolts,
+          plateWatts: type.ratings.maxPlateWatts,
+          tubeSource: `${type.ratings.source}, ${type.ratings.recall}`,
+        }
+      : null,
     cautions: outsideRows(list.plate.supply, volts),
   };
 }

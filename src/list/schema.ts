@@ -2,6 +2,7 @@ import * as z from 'zod';
 import { HEARING_NAMES } from '../engine/hearing/hearing-curves.ts';
 import { formatQuantity } from '../engine/parts/format-quantity.ts';
 import { SOCKET_STRAYS } from '../engine/tubes/socketed-tube.ts';
+import { CAPACITY_EXPECTED, readBatteryCapacity } from './battery-capacity.ts';
 import { dottedFields } from './dotted-keys.ts';
 import { choiceOr, quantity, quantityOr, quantityOrNone, readField, words } from './fields.ts';
 import { PART_FAULT_EXPECTED, readPartFaults } from './part-fault-words.ts';
@@ -70,6 +71,8 @@ const detector = z.strictObject({
   'charge resistance': quantityOrNone('none', 'resistance', OHMS, 'Of the linear law (a thousandth of the leak)'),
 });
 
+const BATTERY = 'Capacity of a B battery, for how long it lasts: 500 mAh; 1 mAh to 1000 Ah, or none';
+
 const plate = z.strictObject({
   supply: quantityOr('90 V', 'voltage', { atLeast: 0, atMost: 1000 }, 'Supply'),
   load: plateLoad,
@@ -80,6 +83,7 @@ const plate = z.strictObject({
   'second bypass': quantityOr('0 pF', 'capacitance', FARADS_OR_NONE, 'Behind the carrier choke, to cathode'),
   'dropping resistor': quantityOrNone('none', 'resistance', OHMS, 'In the supply lead'),
   'dropping capacitor': quantityOr('1 µF', 'capacitance', FARADS_OR_NONE, 'From the far end of it to cathode'),
+  'battery capacity': readField(readBatteryCapacity, CAPACITY_EXPECTED, BATTERY).prefault('none'),
 });
 
 const output = z.strictObject({

@@ -1,4 +1,5 @@
 import { formatQuantity, type QuantityKind } from '../engine/parts/format-quantity.ts';
+import { gatherCautions, gatheredText } from './caution-list.ts';
 import { COST_PARTS } from './cost-parts.ts';
 import { onePlainLine } from './plain-line.ts';
 import type { RestRecord, Result, VariantResult } from './result.ts';
@@ -157,9 +158,13 @@ function sensitivityRows(variants: readonly VariantResult[]): Row[] {
 }
 
 function cautionList(variants: readonly VariantResult[]): string {
-  const cautions = [...new Set(variants.flatMap((variant) => variant.cautions))];
+  const cautions = gatherCautions(variants);
   if (cautions.length === 0) return '';
-  return `### Cautions\n\n${cautions.map((caution) => `- ${markdownText(caution)}\n`).join('')}`;
+  const lines = cautions.map((caution) => {
+    const who = caution.names.length === 0 ? '' : `**${markdownText(caution.names.join(', '))}:** `;
+    return `- ${who}${markdownText(gatheredText(caution))}\n`;
+  });
+  return `### Cautions\n\n${lines.join('')}`;
 }
 
 function unionOf(variants: readonly VariantResult[], keys: (variant: VariantResult) => readonly number[]): number[] {

@@ -6,7 +6,7 @@ import { variantResult } from '../../results/variant-result.ts';
 import { EXIT, type Io } from '../io.ts';
 import { variantsFrom } from '../list-input.ts';
 import { ofVariant } from '../of-variant.ts';
-import { flag, type RawOptions, text } from '../options.ts';
+import { flag, metersOf, type RawOptions, text } from '../options.ts';
 import { Progress } from '../progress.ts';
 import { paperFiles } from '../result-files.ts';
 import { checkFolder, writeResults } from '../result-folder.ts';
@@ -14,6 +14,7 @@ import { summaryText } from '../summary.ts';
 
 /** Everything on paper, no clip. */
 export async function respond(list: string | null, options: RawOptions, io: Io): Promise<number> {
+  const meters = metersOf(options);
   const variants = await variantsFrom(list, options);
   const folder = text(options, 'out');
   if (folder !== null) await checkFolder(folder, ...(list === null ? [] : [list]));
@@ -21,7 +22,7 @@ export async function respond(list: string | null, options: RawOptions, io: Io):
   const results: VariantResult[] = [];
   for (const [k, variant] of variants.entries()) {
     progress.tell(`analysing ${variant.name}`, k / variants.length);
-    const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings));
+    const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings, meters));
     const cautions = [...analysis.cautions, ...variant.cautions];
     results.push(variantResult(variant.name, variant.changes, { ...analysis, cautions }, { heard: variant.heard }));
     await progress.breathe();
