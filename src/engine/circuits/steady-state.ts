@@ -113,6 +113,16 @@ function interleavedTwice(w: Float64Array): Float64Array {
   );
 }
 
+/** What the search for the port volts of one tone works with. */
+interface Ports {
+  readonly rest: RestPoint;
+  readonly paths: HarmonicPaths;
+  readonly impulse: Float64Array;
+  /** One an instant: each begins its search for the carrier's amplitudes where it ended the last one. */
+  readonly stages: readonly Stage[];
+  readonly fineness: ToneFineness;
+}
+
 function steadyToneAt(
   rest: RestPoint,
   hertz: number,
@@ -123,15 +133,16 @@ function steadyToneAt(
 ): { tone: SteadyTone; tail: number; reached: Start } {
   const highest = samples / 2 - 1;
   const paths = harmonicPaths(rest, hertz, highest);
-  const impulse = impulseOhms(paths, samples);
   const w = start?.w ?? startFromLinear(rest, hertz, depth, samples);
   let envelope = start?.envelope ?? envelopeOf(rest, hertz, depth, samples);
+  const stages = Array.from({ length: samples }, () => new Stage(rest.laws, rest.path));
+  const ports: Ports = { rest, paths, impulse: impulseOhms(paths, samples), stages, fineness };
   let found: Found;
   if (rest.tuned.tank) {
-    ({ found, envelope } = solveWithTank(rest, rest.tuned.tank, paths, impulse, hertz, depth, w, envelope, fineness));
+    ({ found, envelope } = solveWithTank(ports, rest.tuned.tank, hertz, depth, w, envelope));
   } else {
     const envelopeAt = (share: number): Float64Array => peaksOf(rest, envelopeOf(rest, hertz, depth * share, samples));
-    found = solveRaised(rest, paths, impulse, envelopeAt, w, fineness);
+    found = solveRaised(ports, envelopeAt, w);
   }
   if (!(found.residual < 1e-5)) {
     throw new InputError({
@@ -147,45 +158,35 @@ function steadyToneAt(
 }
 
 /** Solves the ports under an envelope; when that fails at once, by raising the depth from nothing. */
-function solveRaised(
-  rest: RestPoint,
-  paths: HarmonicPaths,
-  impulse: Float64Array,
-  envelopeAt: (share: number) => Float64Array,
-  w: Float64Array,
-  { residualVolts }: ToneFineness,
-): Found {
-  let found = solveAt(rest, paths, impulse, envelopeAt(1), w, residualVolts);
-  if (found.residual < 100 * residualVolts) return found;
+function solveRaised(ports: Ports, envelopeAt: (share: number) => Float64Array, w: Float64Array): Found {
+  const { rest, fineness } = ports;
+  let found = solveAt(ports, envelopeAt(1), w);
+  if (found.residual < 100 * fineness.residualVolts) return found;
   for (let k = 0; k < w.length; k += 2) {
     w[k] = rest.gridVolts;
     w[k + 1] = rest.plateVolts;
   }
-  for (let part = 1; part <= 16; part++) {
-    found = solveAt(rest, paths, impulse, envelopeAt(part / 16), w, residualVolts);
-  }
+  for (let part = 1; part <= 16; part++) found = solveAt(ports, envelopeAt(part / 16), w);
   return found;
 }
 
 /** Ports and coil together: the ports under an envelope, the coil under the admittance they give, until they agree. */
 function solveWithTank(
-  rest: RestPoint,
+  ports: Ports,
   tank: Tank,
-  paths: HarmonicPaths,
-  impulse: Float64Array,
   hertz: number,
   depth: number,
   w: Float64Array,
   start: PeriodicEnvelope,
-  fineness: ToneFineness,
 ): { found: Found; envelope: PeriodicEnvelope } {
+  const { rest, fineness } = ports;
   const samples = w.length / 2;
   const y: PeriodicEnvelope = { re: new Float64Array(samples), im: new Float64Array(samples) };
   const atRest = rest.phasors.input;
   let found: Found | null = null;
   const { left, envelope: agreed } = agreedEnvelope(tank, hertz, depth, start, fineness.agreedShare, (envelope) => {
     const peaks = peaksOf(rest, envelope);
-    found = solveRaised(rest, paths, impulse, (share) => shrunk(rest, peaks, share), w, fineness);
+    found = solveRaised(ports, (share) => shrunk(rest, peaks, share), w);
     for (let k = 0; k < samples; k++) {
       const { input } = rest.path.phasors(found.chords[2 * k] as number, found.chords[2 * k + 1] as number);
       writeAdmittance(y, k, input, atRest);
@@ -288,17 +289,11 @@ interface Found {
 }
 
 /** Newton on the port volts of one period; `w` moves to the solution. */
-function solveAt(
-  rest: RestPoint,
-  paths: HarmonicPaths,
-  impulse: Float64Array,
-  envelope: Float64Array,
-  w: Float64Array,
-  residualVolts: number,
-): Found {
+function solveAt(ports: Ports, envelope: Float64Array, w: Float64Array): Found {
+  const { paths, impulse, stages } = ports;
+  const { residualVolts } = ports.fineness;
   const samples = envelope.length;
   const size = 2 * samples;
-  const stage = new Stage(rest.laws, rest.path);
   const out = emptyCurrents();
   const currents = new Float64Array(size);
   const chords = new Float64Array(size);
@@ -306,7 +301,7 @@ function solveAt(
   const error = new Float64Array(size);
   const evaluate = (trial: Float64Array): number => {
     for (let k = 0; k < samples; k++) {
-      stage.evaluate(trial[2 * k] as number, trial[2 * k + 1] as number, envelope[k] as number, out);
+      (stages[k] as Stage).evaluate(trial[2 * k] as number, trial[2 * k + 1] as number, envelope[k] as number, out);
       currents[2 * k] = out.gridAmps;
       currents[2 * k + 1] = out.plateAmps;
       chords[2 * k] = out.gridChord;
