@@ -1,20 +1,17 @@
 import type { Fault } from '../engine/errors.ts';
 import type { QuantityKind } from '../engine/parts/format-quantity.ts';
-import { EXACT, splitTolerance, type Tolerance } from '../engine/parts/tolerance.ts';
+import { splitTolerance, type Tolerance } from '../engine/parts/tolerance.ts';
 import { unitDescription } from '../engine/parts/units.ts';
 import { VARIED_PARTS } from '../engine/spread/varied-parts.ts';
 import { unwrapped } from './dotted-keys.ts';
 import { quantityKinds } from './fields.ts';
-import { CHANGEABLE, type CircuitList } from './schema.ts';
+import { CHANGEABLE } from './schema.ts';
 import type { WrittenEntry, WrittenValue } from './written-list.ts';
 
 /** Tolerances by the dotted key of their part. */
 export type Tolerances = Readonly<Record<string, Tolerance>>;
 
 const TUBE = 'detector.tube';
-const LEAK = 'detector.leak';
-const LEAKAGE = 'detector.grid capacitor leakage';
-const GRID_CURRENT = 'tube.grid current.at zero volts';
 
 /**
  * Takes the tolerances off the values of a list, so that everything else reads the nominal ones. A tolerance behind
@@ -57,16 +54,4 @@ function noTolerance(key: string, value: WrittenValue): Fault {
   const noun = unitDescription(kindOf(key) ?? 'number').noun;
   const hint = 'tolerances belong to parts: capacitors, resistors, coils, the tube, the supply';
   return { code: 'no-tolerance', where: key, got: String(value), expected: `${noun} without a tolerance`, hint };
-}
-
-/**
- * The tolerances that hold for a circuit, as the list states them. The leakage of a grid capacitor that stands in for a
- * leak is the leak; a grid current that was read or stated is known, unless a tolerance is written behind it.
- */
-export function statedTolerances(list: CircuitList, written: Tolerances): Tolerances {
-  const stated = { ...written };
-  if (list.detector.leak === null && stated[LEAKAGE]) stated[LEAK] = stated[LEAKAGE];
-  const grid = list.tube['grid current'];
-  if (grid.readings || grid['at zero volts'] !== undefined) stated[GRID_CURRENT] ??= EXACT;
-  return stated;
 }

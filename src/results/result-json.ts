@@ -1,4 +1,5 @@
 import type { Result } from './result.ts';
+import type { SpreadResult } from './spread-result.ts';
 
 /**
  * The result file's text: JSON with two spaces of indent and a line end, no number rounded.
@@ -6,7 +7,7 @@ import type { Result } from './result.ts';
  * @throws Error naming the path of the first number that is not finite, which JSON would turn into `null` silently: a
  *   fault of the program, never of the input
  */
-export function resultJson(result: Result): string {
+export function resultJson(result: Result | SpreadResult): string {
   refuseNonFinite(result, 'result');
   return `${JSON.stringify(result, null, 2)}\n`;
 }

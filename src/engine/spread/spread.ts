@@ -48,7 +48,7 @@ export interface Spread {
   readonly failed: Readonly<Record<string, number>>;
   readonly response: readonly (SpreadFigure & { readonly hertz: number })[];
   readonly levelVoltsRms: SpreadFigure;
-  /** 0 where the response does not fall that far down to 1 Hz. */
+  /** −∞ where the response does not fall that far down to 1 Hz. */
   readonly lowCornerHertz: SpreadFigure;
   /** Infinite where the response does not fall that far up to 16 kHz. */
   readonly highCornerHertz: SpreadFigure;
@@ -130,7 +130,7 @@ export function gatherSpread(
       ...over((figures) => figures.decibels[k] as number),
     })),
     levelVoltsRms: over((figures) => figures.levelVoltsRms),
-    lowCornerHertz: over((figures) => figures.lowCornerHertz ?? 0),
+    lowCornerHertz: over((figures) => figures.lowCornerHertz ?? Number.NEGATIVE_INFINITY),
     highCornerHertz: over((figures) => figures.highCornerHertz ?? Number.POSITIVE_INFINITY),
     plateVolts: over((figures) => figures.plateVolts),
     loadedQ: over((figures) => figures.loadedQ),
