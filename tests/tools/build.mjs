@@ -1,11 +1,13 @@
-// Builds what ships: the command as one file, and the audio-thread processor for browsers.
+// Builds what ships: the command as one file, the worker it starts on other threads, and the audio-thread processor for
+// browsers. Another folder than out/build may be named.
 import { rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { build } from 'esbuild';
+import { withPage } from './page-scripts.mjs';
 
 const root = fileURLToPath(new URL('../../', import.meta.url));
-const out = join(root, 'out', 'build');
+const out = process.argv[2] ?? join(root, 'out', 'build');
 
 // web-audio-api brings a sound-card addon and decoders under other licences; the command carries neither
 const noCodec = join(root, 'src', 'cli', 'stubs', 'no-codec.ts');
@@ -32,7 +34,10 @@ for (const codec of [
 
 await rm(out, { recursive: true, force: true });
 await build({
-  entryPoints: { presolder: join(root, 'src', 'cli', 'main.ts') },
+  entryPoints: {
+    presolder: join(root, 'src', 'cli', 'main.ts'),
+    worker: join(root, 'src', 'cli', 'worker', 'entry.ts'),
+  },
   outdir: out,
   outExtension: { '.js': '.mjs' },
   bundle: true,
@@ -43,6 +48,7 @@ await build({
   keepNames: false,
   legalComments: 'linked',
   alias: stubs,
+  plugins: [withPage],
   logLevel: 'warning',
   banner: {
     js: '#!/usr/bin/env node\nimport { createRequire as presolderRequire } from "node:module"; const require = presolderRequire(import.meta.url);',
