@@ -2,6 +2,7 @@ import { type Fault, InputError } from '../engine/errors.ts';
 import { type BuiltCircuit, buildCircuit } from './build-circuit.ts';
 import { nearestKey } from './dotted-keys.ts';
 import { type Layer, placed, readLayers } from './layers.ts';
+import { type PlainKeys, plainKeys } from './plain-layers.ts';
 import { CHANGEABLE } from './schema.ts';
 import { foldedName, plainName, plainWords } from './words.ts';
 import { type WrittenKeys, type WrittenList, type WrittenVariant, writtenList } from './written-list.ts';
@@ -18,6 +19,10 @@ export interface ListedVariant extends BuiltCircuit {
   readonly name: string;
   /** Dotted key to the value as written, for all that the list's own variants and the flags changed. */
   readonly changes: Readonly<Record<string, string>>;
+  /** Name of the whole list; null when it has none. */
+  readonly listName: string | null;
+  /** All that was written for this circuit, later layers over earlier ones: the list's own keys come first. */
+  readonly layers: readonly PlainKeys[];
 }
 
 /** Most variants of one run: more than can be told apart by ear, and as many as a plot can show. */
@@ -46,7 +51,7 @@ export interface Drafted {
  * @throws InputError with every fault found, each with its place in the list or its flag
  */
 export function listVariants(text: string, fileName: string, settings: readonly Setting[] = []): ListedVariant[] {
-  const { base, drafts, inFile } = draftedVariants(text, fileName, settings);
+  const { listName, base, drafts, inFile } = draftedVariants(text, fileName, settings);
   const found = new Map<string, Fault>();
   const note = (fault: Fault): void => {
     found.set(`${fault.code} ${fault.where} ${fault.line} ${fault.column} ${fault.got}`, inFile(fault));
@@ -60,7 +65,8 @@ export function listVariants(text: string, fileName: string, settings: readonly 
       continue;
     }
     try {
-      variants.push({ name: draft.name, changes: changesText(draft), ...buildCircuit(read.list) });
+      const layers = [base, ...draft.layers.map(({ keys }) => keys)].map(plainKeys);
+      variants.push({ name: draft.name, changes: changesText(draft), listName, layers, ...buildCircuit(read.list) });
     } catch (error) {
       if (!(error instanceof InputError)) throw error;
       for (const fault of error.faults) note(placed(fault, read.places));
@@ -75,13 +81,19 @@ export function draftedVariants(
   text: string,
   fileName: string,
   settings: readonly Setting[],
-): { readonly base: WrittenKeys; readonly drafts: readonly Drafted[]; readonly inFile: (fault: Fault) => Fault } {
+): {
+  readonly listName: string | null;
+  readonly base: WrittenKeys;
+  readonly drafts: readonly Drafted[];
+  readonly inFile: (fault: Fault) => Fault;
+} {
   const inFile = (fault: Fault): Fault => (fault.line === undefined ? fault : { ...fault, file: fileName });
   const list = writtenList(text);
   const flags = settings.map(readSetting);
   const faults: Fault[] = [...list.faults, ...flags.flatMap((flag) => ('fault' in flag ? [flag.fault] : []))];
   if (faults.length > 0) throw new InputError(faults.slice(0, MOST_FAULTS).map(inFile));
-  return { base: list.base, drafts: draftVariants(list, flags as readonly FlagValues[], fileName), inFile };
+  const drafts = draftVariants(list, flags as readonly FlagValues[], fileName);
+  return { listName: list.name, base: list.base, drafts, inFile };
 }
 
 /** Dotted key to the value as written, for all that a variant changes. */

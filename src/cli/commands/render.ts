@@ -10,6 +10,7 @@ import { type Programme, programmeFrom, toMono } from '../../engine/station/prog
 import type { Result } from '../../results/result.ts';
 import { resultJson } from '../../results/result-json.ts';
 import { safeFileNames } from '../../results/safe-names.ts';
+import { soundComment } from '../../results/sound-comment.ts';
 import { variantResult } from '../../results/variant-result.ts';
 import type { ReadSound } from '../../results/wav-read.ts';
 import { writeWav } from '../../results/wav-write.ts';
@@ -18,10 +19,10 @@ import { EXIT, type Io } from '../io.ts';
 import { type RunVariant, variantsFrom } from '../list-input.ts';
 import { ofVariant } from '../of-variant.ts';
 import { choice, flag, type RawOptions, text, wavCoding } from '../options.ts';
+import { PAGE_FILE, pageFiles } from '../page-file.ts';
 import { Progress } from '../progress.ts';
 import { paperFiles } from '../result-files.ts';
 import { checkFolder, folderName, type ResultFile, writeResults } from '../result-folder.ts';
-import { soundComment } from '../sound-comment.ts';
 import { levelSounds } from '../sound-set.ts';
 import { summaryText } from '../summary.ts';
 
@@ -99,12 +100,13 @@ export async function render(clipPath: string, list: string | null, options: Raw
     }),
   };
   await progress.pause();
-  const { replaced } = await writeResults(folder, [...files, ...paperFiles(result)]);
+  const page = pageFiles(result, variants, clip, quality);
+  const { replaced } = await writeResults(folder, [...files, ...paperFiles(result), ...page]);
   if (flag(options, 'json')) io.out(resultJson(result));
   else if (!quiet) io.out(`${summaryText(result)}\n`);
   if (!quiet) {
     io.err(
-      `${replaced ? 'Replaced the earlier results in' : 'Wrote'} ${folder}: ${files.length} WAV files, tables, plot.\n`,
+      `${replaced ? 'Replaced the earlier results in' : 'Wrote'} ${folder}: ${files.length} WAV files, tables, plot${page.length > 0 ? `, ${PAGE_FILE}` : ''}.\n`,
     );
     io.err('Turn the volume down before the first play: full scale is loud, and hearing does not grow back.\n');
   }

@@ -1,6 +1,6 @@
 import type { RestPoint } from '../engine/circuits/rest-point.ts';
 import { formatQuantity } from '../engine/parts/format-quantity.ts';
-import { loadText } from '../results/load-text.ts';
+import { loadText } from './load-text.ts';
 
 /** The settings that a WAV file carries in its comment, on one line. */
 export function soundComment(name: string, rest: RestPoint, fullScaleVolts: number, gainDecibels: number): string {
