@@ -16,6 +16,8 @@ const STALE_MILLISECONDS = 3_600_000;
 const SETTING_UP = '.presolder-unfinished-';
 /** Files of every result beside its sounds. */
 const PAPER_FILES = ['result.json', 'response.csv', 'response.md', 'response.svg', 'listening.html'];
+/** Files of a spread; the first says what they are. */
+const SPREAD_FILES = ['spread.json', 'spread.csv', 'spread.md', 'spread.svg'];
 /** What a file manager leaves in folders it has shown; nobody misses it. */
 const LITTER = ['.DS_Store', 'Thumbs.db', 'desktop.ini'];
 
@@ -43,9 +45,9 @@ async function standing(folder: string): Promise<'nothing' | 'empty' | 'results'
     throw writeFault(folder, error, RESULTS_EXPECTED);
   }
   if (names.every((name) => LITTER.includes(name))) return 'empty';
-  const ours = new Set([...LITTER, ...(await resultNames(place))]);
+  const ours = new Set([...LITTER, ...(await resultNames(place)), ...(await spreadNames(place))]);
   const others = names.filter((name) => !ours.has(name));
-  if (others.length === 0 && names.includes('result.json')) return 'results';
+  if (others.length === 0) return 'results';
   const some = others.slice(0, 3).map((name) => JSON.stringify(name));
   throw folderFault(
     'out-in-use',
@@ -65,6 +67,16 @@ async function resultNames(place: string): Promise<string[]> {
       hasKey(variant, 'sound') && hasKey(variant.sound, 'file') ? String(variant.sound.file) : '',
     );
     return [...PAPER_FILES, ...sounds];
+  } catch {
+    return [];
+  }
+}
+
+/** The same for a spread. */
+async function spreadNames(place: string): Promise<readonly string[]> {
+  try {
+    const spread: unknown = JSON.parse(await readFile(join(place, 'spread.json'), 'utf8'));
+    return hasKey(spread, 'format') && String(spread.format).startsWith('presolder-spread/') ? SPREAD_FILES : [];
   } catch {
     return [];
   }

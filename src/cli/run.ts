@@ -108,6 +108,29 @@ Examples:
       finish(import('./commands/respond.ts').then((module) => module.respond(list ?? null, options, io))),
     );
 
+  addPartFlags(program.command('spread'))
+    .description('What part tolerances do: the band of responses, levels and rest points, and which part carries most.')
+    .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
+    .option('--runs <N>', 'random circuits, 50 to 100000', '500')
+    .option('--seed <S>', 'which ones: the same number gives the same circuits', '1')
+    .option('--parts <AGE>', 'tolerances where the list states none: old or new', 'old')
+    .option('--workers <N>', "threads; left out: the machine's cores")
+    .option('--out <DIR>', 'also write spread.json, tables and plot there')
+    .option('--json', 'print spread.json, nothing else')
+    .option('--quiet', 'no progress')
+    .addHelpText(
+      'after',
+      `
+A tolerance is written behind a value, on the list or in a flag: 100p +-20%, 220k -10/+30%, 10 uA */ 3.
+Examples:
+  presolder spread my-set.yaml
+  presolder spread my-set.yaml --bypass '220p +-20%,220p +-5%' --out out/tolerances
+  presolder spread my-set.yaml --parts new --runs 2000`,
+    )
+    .action((list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/spread.ts').then((module) => module.spread(list ?? null, options, io))),
+    );
+
   addPartFlags(program.command('prove'))
     .description('Runs the carrier-cycle reference on the list and prints its difference to the renderer.')
     .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
@@ -124,6 +147,32 @@ Example:
     )
     .action((list: string | undefined, options: Record<string, unknown>) =>
       finish(import('./commands/prove.ts').then((module) => module.prove(list ?? null, options, io))),
+    );
+
+  addPartFlags(program.command('choose'))
+    .description('The value of a part that meets a goal, with its neighbours; or the values that explain a measurement.')
+    .argument('<part>', 'bypass, leak, grid capacitor, load, coupling, supply, tap, …, or two with a comma for two goals')
+    .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
+    .option('--until <GOAL>', "such as '-6 dB at 5 kHz', 'corner 3.5 kHz', 'loudest with corner above 3 kHz'")
+    .option('--fit <FILE>', 'a measured response, Hz and dB or volts: finds up to three parts that explain it')
+    .option('--series <E>', 'values that can be had: E6, E12 or E24 (left out: E12)')
+    .option('--drawer <VALUES>', "your own: '47p,100p,150p'; with semicolons between the parts")
+    .option('--between <VALUES>', "where to search: '10p,10n'")
+    .option('--json', 'print the answer as JSON, nothing else')
+    .option('--quiet', 'no progress')
+    .addHelpText(
+      'after',
+      `
+Goals: -6 dB at 5 kHz; corner 3.5 kHz; low corner 80 Hz; second harmonic 3 % at 400 Hz, 80 % modulation; carrier on
+plate 100 mV; plate 45 V; loaded Q 40; loudest with corner above 3 kHz. Exit status 3: it cannot be met.
+Examples:
+  presolder choose bypass my-set.yaml --until 'corner 1.2 kHz'
+  presolder choose leak my-set.yaml --until 'loudest with second harmonic below 10 %' --drawer 470k,1M,2M2
+  presolder choose bypass,leak my-set.yaml --until 'corner 1.2 kHz; second harmonic 12 %'
+  presolder choose bypass,leak my-set.yaml --fit measured.csv`,
+    )
+    .action((part: string, list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/choose.ts').then((module) => module.choose(part, list ?? null, options, io))),
     );
 
   program
