@@ -29,7 +29,12 @@ export interface PairChoice {
 /** Places a coordinate at which the goals are looked at before the search. */
 const LOOK_ROUND = 7;
 const MOST_STARTS = 5;
-const MOST_ROUNDS = 40;
+const MOST_ROUNDS = 20;
+/** Newton's steps are halved this far before a start is given up. */
+const LEAST_SHARE = 0.02;
+/** Starts from which the nearest pair is sought where none meets the goals, and how closely. */
+const NEAREST_STARTS = 2;
+const NEAREST_GAIN = 1e-4;
 /** Errors this small, dB, are rounding. */
 const MET = 1e-9;
 /** Farthest that a pair called exact may be from either goal, dB: rounding, not a jump over it. */
@@ -77,8 +82,8 @@ export function* choosePair({ goals, scales, standing, circuitAt }: PairQuestion
         one.values.every((value, c) => Math.abs(value / (values[c] as number) - 1) < 1e-6),
       );
       if (!known) exact.push({ values, volts: figuresAt(values)?.audioVolts() ?? 0 });
-    } else if (exact.length === 0) {
-      const settled = leastSquares(errors, place);
+    } else if (exact.length === 0 && k < NEAREST_STARTS) {
+      const settled = leastSquares(errors, place, () => false, NEAREST_GAIN);
       if (settled && !(settled.sum >= (nearest?.sum ?? Number.POSITIVE_INFINITY))) nearest = settled;
     }
     yield 0.6 + (0.3 * (k + 1)) / starts.length;
@@ -108,7 +113,7 @@ export function dampedNewton(errors: Residuals, start: Float64Array): Float64Arr
     const step = here.slice();
     if (!slopes || !solveReal(slopes, place.length, step, 1)) return null;
     let next: { place: Float64Array; here: Float64Array } | null = null;
-    for (let share = 1; !next && share > 1e-4; share *= 0.5) {
+    for (let share = 1; !next && share > LEAST_SHARE; share *= 0.5) {
       const trial = place.map((x, c) =>
         Math.min(Math.max(x - share * (step[c] as number), errors.low[c] as number), errors.high[c] as number),
       );

@@ -26,6 +26,18 @@ export type Figure =
   | { readonly kind: 'plate volts' }
   | { readonly kind: 'loaded Q' };
 
+export interface MovedFigures {
+  /** At 400 Hz. */
+  readonly audioVoltsRmsAt30Percent: number;
+  /** Re 400 Hz. */
+  readonly decibelsAt5000Hertz: number;
+  readonly highCornerHertz: number | null;
+  /** At 400 Hz and 80 % modulation; null where the tone does not settle. */
+  readonly secondPercent: number | null;
+  readonly plateVolts: number;
+  readonly loadedQ: number;
+}
+
 /** Figures of one circuit, each computed when it is asked for. */
 export class CircuitFigures {
   readonly rest: RestPoint;
@@ -70,6 +82,18 @@ export class CircuitFigures {
   audioVolts(): number {
     this.response();
     return (this.reference * TEST_MODULATION) / Math.SQRT2;
+  }
+
+  /** What else of a circuit moves with a part: what a builder would look at next. */
+  moved(): MovedFigures {
+    return {
+      audioVoltsRmsAt30Percent: this.audioVolts(),
+      decibelsAt5000Hertz: this.decibels(5000),
+      highCornerHertz: this.value({ kind: 'high corner' }),
+      secondPercent: this.value({ kind: 'harmonic', which: 'second', hertz: REFERENCE_HERTZ, depth: 0.8 }),
+      plateVolts: this.rest.plateVolts,
+      loadedQ: this.rest.tuned.loadedQ,
+    };
   }
 
   private response(): LinearResponse {

@@ -54,11 +54,14 @@ export interface Fit {
 
 /** Chance that an interval holds the true value, were the errors of the readings normal and alike. */
 const CONFIDENCE = 0.95;
-/** Places at which the search begins, the best of a coarse look round. */
-const MOST_STARTS = 3;
+/** Places at which the search begins: what stands on the list, and the lowest of a coarse look round. */
+const MOST_STARTS = 4;
 /** Decades about the standing value at which it looks round, for one or two parts and for three. */
 const LOOK_ROUND = [-2, -1, 0, 1, 2] as const;
 const LOOK_ROUND_THREE = [-1, 0, 1] as const;
+/** A start that is still this many times worse than the best after a few rounds is given up. */
+const HOPELESS = 3;
+const FEW_ROUNDS = 6;
 /** Logarithms this near to a place already found lead to it. */
 const SAME_PLACE = 0.02;
 /** An interval wider than this ratio to either side tells nothing. */
@@ -88,13 +91,17 @@ export function* fitResponse({ measurement, parts, circuitAt }: FitQuestion): Ge
     yield (0.5 * (k + 1)) / round.length;
   }
   looked.sort((a, b) => a.sum - b.sum);
+  const spread: Float64Array[] = [];
+  for (const { place } of looked) if (!spread.some((other) => areNeighbours(place, other))) spread.push(place);
   const standing = Float64Array.from(parts, (part) => Math.log(within(part.standing, part)));
-  const starts = [standing, ...looked.map(({ place }) => place).filter((place) => apart(place, standing) > 0)];
+  const starts = [standing, ...spread.filter((place) => apart(place, standing) > 0)];
   const found: Settled[] = [];
   const known = (place: Float64Array): boolean =>
     found.some((one) => one.place.every((log, k) => Math.abs(log - (place[k] as number)) < SAME_PLACE));
   for (const [k, place] of starts.slice(0, MOST_STARTS).entries()) {
-    const settled = leastSquares(residuals, place, known);
+    const least = Math.min(...found.map((one) => one.sum));
+    const hopeless = (sum: number, round: number): boolean => round >= FEW_ROUNDS && sum > HOPELESS * least;
+    const settled = leastSquares(residuals, place, (at, sum, round) => known(at) || hopeless(sum, round));
     if (settled && !known(settled.place)) found.push(settled);
     yield 0.5 + (0.5 * (k + 1)) / (MOST_STARTS + 1);
   }
@@ -106,6 +113,11 @@ export function* fitResponse({ measurement, parts, circuitAt }: FitQuestion): Ge
     .sort((a, b) => apart(a.place, standing) - apart(b.place, standing))
     .map((one) => judged(residuals, one, measurement, parts));
   return first ? { ...first, others: others.map((one) => one.parts) } : null;
+}
+
+/** Whether two places of the look round lie side by side, across corners too. */
+function areNeighbours(a: Float64Array, b: Float64Array): boolean {
+  return a.every((log, k) => Math.abs(log - (b[k] as number)) < 1.01 * Math.LN10);
 }
 
 /** Distance between two places, logarithms. */

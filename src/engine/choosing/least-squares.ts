@@ -12,7 +12,7 @@ export interface Residuals {
 export interface Settled {
   readonly place: Float64Array;
   readonly residuals: Float64Array;
-  /** Half the sum of squares is no measure here: this is the whole sum. */
+  /** The whole sum of squares, not half of it. */
   readonly sum: number;
 }
 
@@ -47,13 +47,15 @@ export function slopesAt({ at, low, high }: Residuals, place: Float64Array, here
  * The nearest place of least squares: steps between those of Newton and steepest descent, shortened while they fail
  * (K. Levenberg, Quart. Appl. Math. 2, 1944; D. W. Marquardt, J. SIAM 11, 1963; both from memory).
  *
- * @param arrived  ends the search before a round, where this place is known already
+ * @param arrived  ends the search before a round, where this place is known already or leads nowhere
+ * @param enough   ends it where a round takes off no larger part of the sum
  * @returns        null where there are no residuals at the start
  */
 export function leastSquares(
   residuals: Residuals,
   start: Float64Array,
-  arrived: (place: Float64Array) => boolean = () => false,
+  arrived: (place: Float64Array, sum: number, round: number) => boolean = () => false,
+  enough = 1e-10,
 ): Settled | null {
   const { at, low, high } = residuals;
   const p = start.length;
@@ -64,7 +66,7 @@ export function leastSquares(
   let sum = squares(here);
   let damping = 1e-3;
   for (let round = 0; round < MOST_ROUNDS && sum > 0; round++) {
-    if (arrived(place)) break;
+    if (arrived(place, sum, round)) break;
     const slopes = slopesAt(residuals, place, here);
     if (!slopes) break;
     let better: { place: Float64Array; here: Float64Array; sum: number; moved: number } | null = null;
@@ -82,7 +84,7 @@ export function leastSquares(
     const gained = (sum - better.sum) / sum;
     ({ place, here, sum } = better);
     damping = Math.max(damping / 8, 1e-12);
-    if (gained < 1e-10 && better.moved < 1e-6) break;
+    if (gained < enough && (better.moved < 1e-6 || enough > 1e-6)) break;
   }
   return { place, residuals: here, sum };
 }

@@ -3,8 +3,8 @@ import { type Caution, type Ratings, restCautions } from './cautions.ts';
 import type { DetectorCircuit } from './circuit.ts';
 import { magnitude } from './complex.ts';
 import { type CostPart, costByPart } from './cost-by-part.ts';
+import { chargedPair } from './detector-network.ts';
 import { directCurrents } from './direct-currents.ts';
-import { leakOhmsAtAudio } from './grid-leak.ts';
 import { COMMON_METERS, type Meter, type SocketRow, socketRows } from './meter-readings.ts';
 import { amplifierGain, corners, LinearResponse, REFERENCE_HERTZ, ratioDecibels } from './response.ts';
 import { type RestPoint, restPoint } from './rest-point.ts';
@@ -92,8 +92,7 @@ export function restFigures(rest: RestPoint): RestFigures {
   const { gridCathodeFarads, gridPlateFarads } = circuit.tube;
   const stageGain = magnitude(amplifierGain(rest, REFERENCE_HERTZ));
   const inputAtAudio = gridCathodeFarads + gridPlateFarads * (1 + stageGain);
-  const leak = leakOhmsAtAudio(circuit);
-  const capacitor = circuit.detector.gridCapacitorFarads;
+  const { ohms: leak, farads: capacitor } = chargedPair(circuit);
   const grid = 1 / (1 / leak + currents.heldGridByGrid);
   const slope = currents.heldPlateByGrid;
   const plateOhms = ohmsOf(currents.heldPlateByPlate);
@@ -117,9 +116,14 @@ export function restFigures(rest: RestPoint): RestFigures {
     inputResistanceOhms: ohmsOf(phasors.input.re),
     carrierAtGridVoltsRms: rms * magnitude(phasors.grid),
     carrierOnPlateVoltsRms: rms * magnitude(phasors.plate),
-    leakCornerHertz: 1 / (2 * Math.PI * leak * capacitor),
-    gridCornerHertz: 1 / (2 * Math.PI * (capacitor + inputAtAudio) * grid),
+    leakCornerHertz: cornerOf(leak, capacitor),
+    gridCornerHertz: cornerOf(grid, capacitor + (circuit.detector.diode ? 0 : inputAtAudio)),
   };
+}
+
+/** Corner of a resistance and a capacitance, Hz, held below what would be no number. */
+function cornerOf(ohms: number, farads: number): number {
+  return Math.min(1 / (2 * Math.PI * ohms * farads), 1e15);
 }
 
 /** Response rows at the ISO 266 third octaves from 25 Hz to 16 kHz, with the cost by part. */
@@ -200,7 +204,7 @@ export function analyse(
     highCornerHertz: highHertz,
     distortion,
     sensitivity,
-    socket: socketRows(rest, meters),
+    socket: circuit.detector.kind === 'grid leak' ? socketRows(rest, meters) : [],
     cautions,
   };
 }

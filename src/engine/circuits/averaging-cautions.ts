@@ -1,13 +1,11 @@
 import { nodesFor } from '../tubes/cycle-average.ts';
 import type { Caution } from './cautions.ts';
 import { magnitude } from './complex.ts';
-import { leakOhmsAtAudio } from './grid-leak.ts';
+import { chargedPair } from './detector-network.ts';
 import { impedanceAt } from './plate-network.ts';
 import type { RestPoint } from './rest-point.ts';
 import { smoothLaws } from './stage-laws.ts';
 
-/** Below this product of carrier, leak and capacitor the carrier's ripple on the grid bends the average. */
-const LEAST_CYCLES = 20;
 /** Share of U1 above which the plate's second carrier harmonic is no longer negligible. */
 const MOST_HARMONIC = 0.05;
 /**
@@ -32,8 +30,10 @@ export function averagingCautions(rest: RestPoint): Caution[] {
   raise(circuit.detector.law !== 'tube', 'textbook', 0, 0);
   const hertz = circuit.station.carrierHertz;
   raise(hertz < LEAST_CARRIER_HERTZ, 'slow-carrier', hertz, LEAST_CARRIER_HERTZ);
-  const cycles = hertz * leakOhmsAtAudio(circuit) * circuit.detector.gridCapacitorFarads;
-  raise(cycles < LEAST_CYCLES, 'ripple', cycles, LEAST_CYCLES);
+  const { ohms, farads, leastCycles } = chargedPair(circuit);
+  const cycles = hertz * ohms * farads;
+  if (leastCycles !== null) raise(cycles < leastCycles, 'ripple', cycles, leastCycles);
+  if (circuit.detector.kind !== 'grid leak' && circuit.detector.kind !== 'plate bend') return found;
   const harmonic = plateHarmonicShare(rest);
   raise(harmonic > MOST_HARMONIC, 'plate-harmonic', harmonic, MOST_HARMONIC);
   const bypass = circuit.plate.bypassFarads + circuit.tube.plateCathodeFarads;

@@ -56,5 +56,9 @@ export interface Caution {
 
 /** Cautions that follow from the rest point, the signal and the parts; what can hurt comes first. */
 export function restCautions(rest: RestPoint, ratings: Ratings | null): Caution[] {
-  return [...partCautions(rest, ratings), ...signalCautions(rest, ratings), ...averagingCautions(rest)];
+  // what is said of the signal is said of a grid's charging; a diode has no plate to overload
+  const { kind } = rest.circuit.detector;
+  const parts = rest.circuit.detector.diode ? [] : partCautions(rest, ratings);
+  const signal = kind === 'grid leak' ? signalCautions(rest, ratings) : [];
+  return [...parts, ...signal, ...averagingCautions(rest)];
 }

@@ -36,8 +36,51 @@ export interface CoilCircuit {
 
 export type TunedCircuit = StiffCircuit | CoilCircuit;
 
+export type DetectorKind = 'grid leak' | 'plate bend' | 'infinite impedance' | 'diode' | 'crystal';
+
+/** Current law of a diode or crystal between its two ends. */
+export type DiodeLaw =
+  /** i = saturation·(exp((v − i·series)/ideality) − 1) */
+  | {
+      readonly kind: 'exponential';
+      readonly saturationAmps: number;
+      readonly idealityVolts: number;
+      readonly seriesOhms: number;
+    }
+  /** Vacuum diode: perveance·(ln(1 + exp(sharpness·v))/sharpness)^1.5 */
+  | { readonly kind: '3/2'; readonly perveance: number; readonly sharpness: number };
+
+/** Diode or crystal with its load; what it feeds is the circuit's output. */
+export interface DiodeParts {
+  readonly law: DiodeLaw;
+  /** Ohms across which the diode charges the bypass; null: the output alone is the load. */
+  readonly loadOhms: number | null;
+  /** F across the load, 0 allowed. */
+  readonly bypassFarads: number;
+  /** Resistor from the load to a second capacitor; null: none. */
+  readonly filterOhms: number | null;
+  readonly filterFarads: number;
+  /** Part of the output that the volume control passes on, 0 to 1. */
+  readonly volume: number;
+  /** F between the diode's ends. */
+  readonly capacitanceFarads: number;
+}
+
+/** What stands in the cathode lead, or the bias that stands in its place. */
+export interface CathodeParts {
+  /** Ohms; null: the cathode is at chassis level. */
+  readonly ohms: number | null;
+  readonly farads: number;
+  /** V of a battery in the grid's lead, below 0 for bias; 0: none. */
+  readonly biasVolts: number;
+}
+
+/**
+ * A detector. The values of a grid leak stand in every one, and are used by the grid leak alone; plate bend and infinite
+ * impedance have `cathode`, diode and crystal have `diode`.
+ */
 export interface GridLeakDetector {
-  readonly kind: 'grid leak';
+  readonly kind: DetectorKind;
   /** The tube's own law, or a textbook law in place of its grid and a linear plate. */
   readonly law: 'tube' | 'square' | 'linear';
   /** F, above 0. */
@@ -51,6 +94,8 @@ export interface GridLeakDetector {
   readonly capacitorLeakageOhms: number | null;
   /** Charging resistance of the `linear` law, ohms; null: leak / 1000. */
   readonly chargeOhms: number | null;
+  readonly cathode?: CathodeParts;
+  readonly diode?: DiodeParts;
 }
 
 export type Detector = GridLeakDetector;

@@ -4,7 +4,7 @@ import type { Network } from './network.ts';
 /**
  * Stamps a transformer with its primary from `low` (the supply) to `high` (the plate): DC resistance and leakage to the
  * inner point, primary inductance and core loss from there to `low`, winding capacitance across the primary, the ideal
- * 1:n, secondary resistance, secondary capacitance. The secondary's far end is at the cathode's level. Its polarity
+ * 1:n, secondary resistance, secondary capacitance. The secondary's far end is at `ground`. Its polarity
  * turns the output's sign, which nobody hears; positive plate volts give positive output here.
  *
  * @param perfect  for the cost by part: endless inductance, no leakage, no winding capacitance
@@ -16,6 +16,7 @@ export function stampTransformer(
   low: number,
   parts: Transformer,
   perfect: boolean,
+  ground = -1,
 ): number {
   const inner = network.node();
   const secondary = network.node();
@@ -25,10 +26,10 @@ export function stampTransformer(
     network.inductor(inner, low, parts.primaryHenries);
     network.capacitor(high, low, parts.primaryFarads);
   }
-  network.transformer(inner, low, secondary, -1, parts.ratio);
+  network.transformer(inner, low, secondary, ground, parts.ratio);
   const out = network.node();
   network.inductor(secondary, out, 0, parts.secondaryDcOhms);
-  network.capacitor(out, -1, perfect ? 0 : parts.secondaryFarads);
+  network.capacitor(out, ground, perfect ? 0 : parts.secondaryFarads);
   return out;
 }
 

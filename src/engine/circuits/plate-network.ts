@@ -51,28 +51,30 @@ export function stampPlateSide(
   plate: number,
   circuit: DetectorCircuit,
   ideal: IdealParts = {},
+  ground = CATHODE,
 ): PlateSide {
   const { supplyVolts, bypassFarads, bypassLeakOhms, carrierChoke, dropping } = circuit.plate;
   const bypass = ideal.plateBypass ? 0 : bypassFarads;
-  network.capacitor(plate, CATHODE, bypass + circuit.tube.plateCathodeFarads);
+  network.capacitor(plate, CATHODE, circuit.tube.plateCathodeFarads);
+  network.capacitor(plate, ground, bypass);
   // a leak moves the rest point, which the cost by part holds: it stays where the bypass is taken as ideal
-  if (bypassLeakOhms) network.resistor(plate, CATHODE, bypassLeakOhms);
+  if (bypassLeakOhms) network.resistor(plate, ground, bypassLeakOhms);
   let top = plate;
   if (carrierChoke) {
     top = network.node();
     network.inductor(plate, top, carrierChoke.henries, carrierChoke.dcOhms);
     network.capacitor(plate, top, carrierChoke.selfFarads ?? 0);
-    network.capacitor(top, CATHODE, ideal.plateBypass ? 0 : carrierChoke.bypassFarads);
+    network.capacitor(top, ground, ideal.plateBypass ? 0 : carrierChoke.bypassFarads);
   }
-  let supply = network.fixed(supplyVolts);
+  let supply = network.fixed(supplyVolts, ground);
   let feedNode: number | null = null;
   if (dropping && !ideal.load) {
     feedNode = network.node();
     network.resistor(feedNode, supply, dropping.ohms);
-    network.capacitor(feedNode, CATHODE, dropping.farads);
+    network.capacitor(feedNode, ground, dropping.farads);
     supply = feedNode;
   }
-  const { heard, coupledNode } = stampLoad(network, top, supply, circuit, ideal.load === true);
+  const { heard, coupledNode } = stampLoad(network, top, supply, circuit, ideal.load === true, ground);
   return { heard, points: { feedNode, loadNode: top, coupledNode } };
 }
 
@@ -83,17 +85,20 @@ function stampLoad(
   supply: number,
   circuit: DetectorCircuit,
   perfect: boolean,
+  ground: number,
 ): OutputSide {
   const { load } = circuit.plate;
   switch (load.kind) {
     case 'resistor':
       network.resistor(top, supply, load.ohms);
-      return stampOutput(network, top, circuit.output, perfect);
+      return stampOutput(network, top, circuit.output, perfect, ground);
     case 'choke':
       stampChokeLoad(network, top, supply, load, perfect);
-      return stampOutput(network, top, circuit.output, perfect);
-    case 'transformer':
-      return stampOutput(network, stampTransformer(network, top, supply, load, perfect), circuit.output, perfect);
+      return stampOutput(network, top, circuit.output, perfect, ground);
+    case 'transformer': {
+      const secondary = stampTransformer(network, top, supply, load, perfect, ground);
+      return stampOutput(network, secondary, circuit.output, perfect, ground);
+    }
     case 'phones':
       return { heard: stampPhones(network, top, supply, load, perfect), coupledNode: null };
   }

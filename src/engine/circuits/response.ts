@@ -1,6 +1,7 @@
 import { type Complex, complex, magnitude, over, plus, scaled } from './complex.ts';
 import { solveComplex } from './dense-solve.ts';
-import { type AudioStage, gridLeakAudio } from './grid-leak.ts';
+import { detectorAudio } from './detector-network.ts';
+import type { AudioStage } from './grid-leak.ts';
 import type { IdealParts } from './plate-network.ts';
 import type { RestPoint } from './rest-point.ts';
 
@@ -38,7 +39,7 @@ export class LinearResponse {
   /** @param ideal  parts taken as ideal for audio, the rest point and the carrier held */
   constructor(rest: RestPoint, ideal: IdealParts & { readonly tunedCircuit?: boolean } = {}) {
     this.rest = rest;
-    this.stage = gridLeakAudio(rest.circuit, ideal);
+    this.stage = detectorAudio(rest.circuit, ideal);
     this.tunedIdeal = ideal.tunedCircuit === true;
   }
 

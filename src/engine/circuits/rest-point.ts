@@ -3,10 +3,11 @@ import { CarrierPath } from './carrier-path.ts';
 import type { DetectorCircuit, PlateLoad } from './circuit.ts';
 import type { Complex } from './complex.ts';
 import { solveReal } from './dense-solve.ts';
-import { type AudioStage, gridLeakAudio, gridLeakCarrier } from './grid-leak.ts';
+import { detectorAudio, detectorCarrier } from './detector-network.ts';
+import type { AudioStage } from './grid-leak.ts';
 import { loadAtCurrent } from './load-transformer.ts';
 import { emptyCurrents, Stage, type StageCurrents, type StageLaws } from './stage-currents.ts';
-import { linearGrid, type QuietPoint, squareGrid, straightPlate, tubeStageLaws } from './stage-laws.ts';
+import { detectorStageLaws, linearGrid, type QuietPoint, squareGrid, straightPlate } from './stage-laws.ts';
 import { loadTunedCircuit, type TunedState } from './tuned-circuit.ts';
 
 /** A circuit at rest: carrier on, no modulation. */
@@ -154,10 +155,10 @@ function withLoad(circuit: DetectorCircuit, load: PlateLoad): DetectorCircuit {
 }
 
 function solveRest(circuit: DetectorCircuit): RestPoint {
-  const audio = gridLeakAudio(circuit);
+  const audio = detectorAudio(circuit);
   const direct = directPath(audio);
-  const path = new CarrierPath(gridLeakCarrier(circuit), circuit.tube.law.mu);
-  const tubeLaws = tubeStageLaws(circuit.tube.law);
+  const tubeLaws = detectorStageLaws(circuit);
+  const path = new CarrierPath(detectorCarrier(circuit), tubeLaws.mu);
   const w: [number, number] = [Math.min(direct.open[0], 0), 0.5 * direct.open[1]];
   const currents = emptyCurrents();
   const quiet = new Stage(tubeLaws, path);

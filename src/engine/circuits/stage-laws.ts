@@ -1,4 +1,5 @@
 import { directAverage, linearRectifierCycleLaw, squareCycleLaw, straightCycleLaw } from '../tubes/cycle-average.ts';
+import { seriesDiodeLaw } from '../tubes/diode-law.ts';
 import { type SmoothLaw, softKneeLaw } from '../tubes/smooth-law.ts';
 import type { TubeLaw } from '../tubes/tube.ts';
 import type { DetectorCircuit } from './circuit.ts';
@@ -7,6 +8,33 @@ import type { StageLaws } from './stage-currents.ts';
 /** Grid and cathode laws of a tube as smooth laws of one voltage each. */
 export function smoothLaws(law: TubeLaw): { grid: SmoothLaw; cathode: SmoothLaw } {
   return { grid: softKneeLaw(law.Gg, law.Cg, law.xi), cathode: softKneeLaw(law.G, law.C, law.gamma) };
+}
+
+/** Laws of a detector's two ports before averaging: those of its tube, or of its diode and an idle port. */
+export function portLaws(circuit: DetectorCircuit): { grid: SmoothLaw; cathode: SmoothLaw } {
+  const { diode } = circuit.detector;
+  if (!diode) return smoothLaws(circuit.tube.law);
+  const { law } = diode;
+  const grid =
+    law.kind === '3/2'
+      ? softKneeLaw(law.perveance, law.sharpness, 1.5)
+      : seriesDiodeLaw(law.saturationAmps, law.idealityVolts, law.seriesOhms);
+  return { grid, cathode: softKneeLaw(0, 1, 1.5) };
+}
+
+/** The averaged laws of a detector, by direct quadrature. */
+export function detectorStageLaws(circuit: DetectorCircuit): StageLaws {
+  if (!circuit.detector.diode) return tubeStageLaws(circuit.tube.law);
+  const { grid, cathode } = portLaws(circuit);
+  return {
+    grid: directAverage(grid),
+    cathode: directAverage(cathode),
+    mu: 1,
+    phi: 0,
+    knee: true,
+    extraPlateSiemens: 0,
+    restPlateVolts: 0,
+  };
 }
 
 /** The tube's own laws, averaged by direct quadrature. */

@@ -152,7 +152,8 @@ function steadyToneAt(
       expected: 'values for which the detector settles',
     });
   }
-  const tone = { ...readHarmonics(paths, w, found.currents, samples), residualVolts: found.residual };
+  const { weight } = rest.audio.output;
+  const tone = { ...readHarmonics(paths, w, found.currents, samples, weight), residualVolts: found.residual };
   const tail = Math.max(tailShare(w, 0, samples), tailShare(w, 1, samples));
   return { tone, tail, reached: { w, envelope } };
 }
@@ -371,6 +372,7 @@ function readHarmonics(
   w: Float64Array,
   currents: Float64Array,
   samples: number,
+  weight: number,
 ): Omit<SteadyTone, 'residualVolts'> {
   const output = new Float64Array(HARMONICS + 1);
   const grid = new Float64Array(HARMONICS + 1);
@@ -400,7 +402,7 @@ function readHarmonics(
       (z[10] as number) * (sums[3] as number) +
       (z[11] as number) * (sums[2] as number);
     const peak = h === 0 ? 1 : 2;
-    output[h] = h === 0 ? paths.open[2] - re : peak * Math.hypot(re, im);
+    output[h] = weight * (h === 0 ? paths.open[2] - re : peak * Math.hypot(re, im));
     grid[h] = h === 0 ? (sums[4] as number) : peak * Math.hypot(sums[4] as number, sums[5] as number);
     plate[h] = h === 0 ? (sums[6] as number) : peak * Math.hypot(sums[6] as number, sums[7] as number);
   }

@@ -1,3 +1,4 @@
+import type { DiodeLaw } from '../circuits/circuit.ts';
 import type { RestPoint } from '../circuits/rest-point.ts';
 import { smoothLaws } from '../circuits/stage-laws.ts';
 import type { StageLaws } from '../reference/instantaneous-laws.ts';
@@ -27,6 +28,8 @@ export function referenceSource(rest: RestPoint): ReferenceSource {
 /** The instantaneous laws that stand for a textbook law of a circuit; none for the tube's own. */
 export function referenceLaws(rest: RestPoint): StageLaws | undefined {
   const { circuit, quiet } = rest;
+  const { diode } = circuit.detector;
+  if (diode) return { grid: diodeLaw(diode.law), plate: { law: 'none' } };
   if (quiet === null) return undefined;
   const { law, chargeOhms, leakOhms } = circuit.detector;
   const out = new Float64Array(4);
@@ -46,4 +49,11 @@ export function referenceLaws(rest: RestPoint): StageLaws | undefined {
       gpSiemens: quiet.cathodeSiemens / circuit.tube.law.mu + quiet.kneeSiemens,
     },
   };
+}
+
+/** A diode's law at its junction: the reference has the series resistance in its network. */
+function diodeLaw(law: DiodeLaw): NonNullable<StageLaws['grid']> {
+  if (law.kind === '3/2') return { law: '3/2', perveance: law.perveance, sharpness: law.sharpness };
+  const { saturationAmps, idealityVolts } = law;
+  return { law: 'exponential', currentAmps: saturationAmps, efoldVolts: idealityVolts, lessAmps: saturationAmps };
 }

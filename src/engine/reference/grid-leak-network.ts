@@ -32,26 +32,7 @@ export function gridLeakNetwork(
   const { cathode } = network;
   const across = detector.leakPosition === 'across capacitor';
   const footVolts = across ? detector.leakReturnVolts : 0;
-  const foot = network.held(footVolts);
-  let tap: number;
-  if (source.kind === 'stiff') tap = network.drive(footVolts);
-  else {
-    const coil = circuit.tunedCircuit;
-    if (coil.kind !== 'coil') throw new RangeError('a coil source needs a coil');
-    const omega = 2 * Math.PI * carrierHertz;
-    const half = (omega * stepSeconds) / 2;
-    const prewarp = half / Math.tan(half);
-    const top = network.free();
-    network.inductor(top, foot, coil.coilHenries * prewarp);
-    network.capacitor(top, foot, source.tankFarads * prewarp);
-    network.resistor(top, foot, coil.unloadedQ * omega * coil.coilHenries);
-    network.driveCurrent(top);
-    tap = top;
-    if (coil.tap !== 1) {
-      tap = network.free();
-      network.transformer(top, foot, tap, foot, coil.tap);
-    }
-  }
+  const { tap, foot } = wireSource(network, circuit, source, carrierHertz, stepSeconds, footVolts);
   const grid = network.free();
   const plate = network.free();
   network.capacitor(tap, grid, detector.gridCapacitorFarads);
@@ -73,4 +54,36 @@ export function gridLeakNetwork(
     plate,
     heard,
   };
+}
+
+/** Wires the source: an ideal voltage at the tap, or the coil with its tuning capacitance, driven by a current. */
+export function wireSource(
+  network: LinearNetwork,
+  circuit: DetectorCircuit,
+  source: ReferenceSource,
+  carrierHertz: number,
+  stepSeconds: number,
+  footVolts: number,
+): { tap: number; foot: number } {
+  const foot = network.held(footVolts);
+  let tap: number;
+  if (source.kind === 'stiff') tap = network.drive(footVolts);
+  else {
+    const coil = circuit.tunedCircuit;
+    if (coil.kind !== 'coil') throw new RangeError('a coil source needs a coil');
+    const omega = 2 * Math.PI * carrierHertz;
+    const half = (omega * stepSeconds) / 2;
+    const prewarp = half / Math.tan(half);
+    const top = network.free();
+    network.inductor(top, foot, coil.coilHenries * prewarp);
+    network.capacitor(top, foot, source.tankFarads * prewarp);
+    network.resistor(top, foot, coil.unloadedQ * omega * coil.coilHenries);
+    network.driveCurrent(top);
+    tap = top;
+    if (coil.tap !== 1) {
+      tap = network.free();
+      network.transformer(top, foot, tap, foot, coil.tap);
+    }
+  }
+  return { tap, foot };
 }

@@ -3,8 +3,15 @@ import { PLATE_KNEE_VOLTS, type Tube } from '../tubes/tube.ts';
 /** Grid current as a function of grid volts v: the tube's own, or a textbook law. */
 export type GridLaw =
   | { readonly law: 'tube' }
-  /** i = currentAmps · exp(v / efoldVolts) */
-  | { readonly law: 'exponential'; readonly currentAmps: number; readonly efoldVolts: number }
+  /** i = currentAmps · exp(v / efoldVolts) − lessAmps */
+  | {
+      readonly law: 'exponential';
+      readonly currentAmps: number;
+      readonly efoldVolts: number;
+      readonly lessAmps?: number;
+    }
+  /** i = perveance · (ln(1 + exp(sharpness·v)) / sharpness)^1.5 */
+  | { readonly law: '3/2'; readonly perveance: number; readonly sharpness: number }
   /** i = v / chargeOhms above 0, none below */
   | { readonly law: 'rectifier'; readonly chargeOhms: number }
   /** i = restAmps + siemens · d + curvature · d², d = v − restVolts */
@@ -66,7 +73,9 @@ export function packLaws(tube: Tube, stage: StageLaws = {}): PackedLaws {
   if (g.law === 'tube') grid.set([law.Gg, law.Cg, law.xi]);
   else if (g.law === 'exponential') {
     gridCode = GRID_EXPONENTIAL;
-    grid.set([g.currentAmps, 1 / g.efoldVolts]);
+    grid.set([g.currentAmps, 1 / g.efoldVolts, g.lessAmps ?? 0]);
+  } else if (g.law === '3/2') {
+    grid.set([g.perveance, g.sharpness, 1.5]);
   } else if (g.law === 'rectifier') {
     gridCode = GRID_RECTIFIER;
     grid[0] = 1 / g.chargeOhms;

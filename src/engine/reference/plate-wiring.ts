@@ -40,7 +40,7 @@ export function wirePlate(network: LinearNetwork, plate: number, circuit: Detect
   return wireOutput(network, live, circuit.output);
 }
 
-function wireOutput(network: LinearNetwork, live: number, output: Output): Listening {
+export function wireOutput(network: LinearNetwork, live: number, output: Output): Listening {
   const { cathode } = network;
   let end = live;
   if (output.couplingFarads !== null) {

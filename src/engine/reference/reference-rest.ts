@@ -1,6 +1,7 @@
 import type { DetectorCircuit } from '../circuits/circuit.ts';
 import { checkReference } from './check-request.ts';
-import { type DetectorNetwork, gridLeakNetwork } from './grid-leak-network.ts';
+import { detectorNetwork } from './detector-wiring.ts';
+import type { DetectorNetwork } from './grid-leak-network.ts';
 import { packLaws, type StageLaws } from './instantaneous-laws.ts';
 import { findPeriodicState } from './periodic-rest.ts';
 import { coilDriveAmps, type ReferenceSource, tonePhasors } from './source-drive.ts';
@@ -76,7 +77,7 @@ export function settleStage(
   stage: StageLaws | undefined,
 ): SettledStage {
   const h = 1 / (carrierHertz * stepsPerCycle);
-  const wired = gridLeakNetwork(circuit, source, carrierHertz, h);
+  const wired = detectorNetwork(circuit, source, carrierHertz, h);
   const companion = makeCompanion(wired.network, wired.ports, h);
   const peakDrive =
     source.kind === 'stiff' ? source.levelVoltsRms * Math.SQRT2 : coilDriveAmps(circuit, source, carrierHertz);

@@ -250,7 +250,7 @@ export function advance(s: Stepper, cycles: number): void {
             const x = vg * g1;
             // Beyond e^60 the law goes on along its tangent, so that a wild first guess cannot overflow.
             const ex = g0 * Math.exp(Math.min(x, 60));
-            ig = x > 60 ? ex * (x - 59) : ex;
+            ig = (x > 60 ? ex * (x - 59) : ex) - g2;
             dig = ex * g1;
           } else if (gridCode === GRID_RECTIFIER) {
             dig = vg > 0 ? g0 : 0;

@@ -1,6 +1,7 @@
+import type { DiodeLaw } from '../circuits/circuit.ts';
 import type { RestPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
-import { smoothLaws } from '../circuits/stage-laws.ts';
+import { portLaws } from '../circuits/stage-laws.ts';
 import { type CycleTable, cycleTable } from '../tubes/cycle-table.ts';
 import type { SmoothLaw } from '../tubes/smooth-law.ts';
 
@@ -23,12 +24,19 @@ export class TableStore {
   lawsFor(rest: RestPoint, modulation: number): StageLaws | TableLaws {
     if (rest.circuit.detector.law !== 'tube') return rest.laws;
     const law = rest.circuit.tube.law;
-    const { grid, cathode } = smoothLaws(law);
+    const { grid, cathode } = portLaws(rest.circuit);
     const carrier = widen(1.1 * rest.tuned.carrierPeakVolts * (1 + modulation));
     const cathodeTop = Math.max(2, law.phi) + rest.circuit.plate.supplyVolts / law.mu + 2 * carrier + 2;
+    const { diode } = rest.circuit.detector;
+    const gridName = diode ? `diode ${JSON.stringify(diode.law)}` : `grid ${law.Gg} ${law.Cg} ${law.xi}`;
+    if (diode) {
+      const top = diodeTop(diode.law);
+      const idle = this.table('idle', cathode, 1, 1);
+      return { ...rest.laws, grid: this.table(gridName, grid, top, carrier), cathode: idle };
+    }
     return {
       ...rest.laws,
-      grid: this.table(`grid ${law.Gg} ${law.Cg} ${law.xi}`, grid, 3 + 0.5 * carrier, carrier),
+      grid: this.table(gridName, grid, 3 + 0.5 * carrier, carrier),
       cathode: this.table(`cathode ${law.G} ${law.C} ${law.gamma}`, cathode, widen(cathodeTop), carrier),
     };
   }
@@ -41,6 +49,13 @@ export class TableStore {
     this.kept.set(key, made);
     return made;
   }
+}
+
+/** Crest that a diode's table reaches, V: where it carries more than any detector's load asks for at a crest. */
+function diodeTop(law: DiodeLaw): number {
+  const amps = 0.05;
+  if (law.kind === '3/2') return (amps / law.perveance) ** (2 / 3) + 1;
+  return law.idealityVolts * Math.log1p(amps / law.saturationAmps) + amps * law.seriesOhms;
 }
 
 /** Rounds a voltage up to a step of a third of an octave, so that near variants share a table. */
