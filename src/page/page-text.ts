@@ -4,7 +4,7 @@ import type { PageData } from './page-data.ts';
 export interface PageScripts {
   /** Runs in the page itself. */
   readonly client: string;
-  /** The engine, in a worker. */
+  /** The engine, in a worker: base64 of the script packed by gzip (RFC 1952). */
   readonly worker: string;
   /** The player, on the audio thread. */
   readonly player: string;

@@ -1,8 +1,8 @@
 import { COST_PARTS } from '../results/cost-parts.ts';
-import { type Area, decibelRange, makePanel, type Panel } from '../results/plot-axes.ts';
-import { type CurvePoint, curvePath } from '../results/plot-curves.ts';
+import { type Area, decibelRange } from '../results/plot-axes.ts';
 import type { VariantResult } from '../results/result.ts';
 import { escapeXml, px } from '../results/svg-text.ts';
+import { hertzOfShare, type LogPanel, logPanel, smoothPath } from './log-panel.ts';
 import type { MeasuredCurve } from './page-data.ts';
 
 /** What the response drawing shows. */
@@ -28,10 +28,14 @@ const HERTZ_LABELS = [20, 50, 100, 200, 500, 1000, 2000, 5000, 10_000, 20_000];
 export const LINE_STYLES = 8;
 export const lineClass = (index: number): string => `line-${(index % LINE_STYLES) + 1}`;
 
-/** Heights of the two panels and the whole, and the frequency under a place across. */
+interface CurvePoint {
+  readonly hertz: number;
+  readonly decibels: number;
+}
+
+/** The frequency under a place across the drawing, px. */
 export function hertzAt(x: number, width: number): number {
-  const share = (x - LEFT) / (width - LEFT - RIGHT);
-  return 20 * 1000 ** Math.max(0, Math.min(1, share));
+  return hertzOfShare((x - LEFT) / (width - LEFT - RIGHT));
 }
 
 /** All responses, and below on the same frequencies the cost by part of the selected variant. */
@@ -43,11 +47,11 @@ export function responseDrawing(view: ResponseView): string {
   );
   const top = unit === 'decibels' ? { low: -6, high: 3 } : { low: Math.max(...values) - 6, high: Math.max(...values) };
   const range = decibelRange(values, top, { low: Math.max(...values) - 60, high: Math.max(...values) + 6 }, 8);
-  const response = makePanel(area(24, RESPONSE_HEIGHT, width), range);
+  const response = logPanel(area(24, RESPONSE_HEIGHT, width), range);
   const shown = variants[view.selected];
   const costs = shown ? COST_PARTS.flatMap(({ key }) => shown.response.map((row) => row.cost[key])) : [0];
   const costTop = 24 + RESPONSE_HEIGHT + GAP;
-  const cost = makePanel(
+  const cost = logPanel(
     area(costTop, COST_HEIGHT, width),
     decibelRange(costs, { low: 0, high: 3 }, { low: -20, high: 60 }, 5),
   );
@@ -91,7 +95,7 @@ function levels(variant: VariantResult, unit: ResponseView['unit']): CurvePoint[
   }));
 }
 
-function axes(panel: Panel, unit: ResponseView['unit']): string {
+function axes(panel: LogPanel, unit: ResponseView['unit']): string {
   const { area: at, range, x, y } = panel;
   const [right, bottom] = [at.left + at.width, at.top + at.height];
   const lines: string[] = [];
@@ -135,11 +139,18 @@ function caption(x: number, y: number, text: string): string {
   return `<text class="caption" x="${px(x)}" y="${px(y)}">${escapeXml(text)}</text>`;
 }
 
-function curve(points: readonly CurvePoint[], panel: Panel, name: string, strong: boolean): string {
-  return `<path class="curve ${name}${strong ? ' selected' : ''}" d="${curvePath(points, panel)}"/>`;
+/** A curve, cut where it leaves its panel by a picture of the panel's own. */
+function curve(points: readonly CurvePoint[], panel: LogPanel, name: string, strong: boolean): string {
+  const { left, top, width, height } = panel.area;
+  const path = smoothPath(points.map(({ hertz, decibels }) => [panel.x(hertz), panel.y(decibels)] as const));
+  const box = `${px(left)} ${px(top)} ${px(width)} ${px(height)}`;
+  return (
+    `<svg x="${px(left)}" y="${px(top)}" width="${px(width)}" height="${px(height)}" viewBox="${box}">` +
+    `<path class="curve ${name}${strong ? ' selected' : ''}" d="${path}"/></svg>`
+  );
 }
 
-function dots({ points }: MeasuredCurve, panel: Panel): string {
+function dots({ points }: MeasuredCurve, panel: LogPanel): string {
   const { range, x, y } = panel;
   return points
     .filter(({ hertz, decibels }) => hertz >= 20 && hertz <= 20_000 && decibels >= range.low && decibels <= range.high)
@@ -147,15 +158,15 @@ function dots({ points }: MeasuredCurve, panel: Panel): string {
     .join('');
 }
 
-function marker(response: Panel, cost: Panel, hertz: number): string {
+function marker(response: LogPanel, cost: LogPanel, hertz: number): string {
   const x = px(response.x(hertz));
-  const line = ({ area: at }: Panel): string =>
+  const line = ({ area: at }: LogPanel): string =>
     `<path class="marker" d="M${x} ${px(at.top)}V${px(at.top + at.height)}"/>`;
   return line(response) + line(cost);
 }
 
 /** The number of each variant on its curve, spread along the axis so that they stand apart. */
-function tags(series: readonly (readonly CurvePoint[])[], panel: Panel): string[] {
+function tags(series: readonly (readonly CurvePoint[])[], panel: LogPanel): string[] {
   if (series.length < 2) return [];
   return series.map((points, k) => {
     const places = points.filter(({ decibels }) => decibels > panel.range.low && decibels < panel.range.high);

@@ -2,6 +2,7 @@
 import { readFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
+import { gzipSync } from 'node:zlib';
 import { build } from 'esbuild';
 
 const root = fileURLToPath(new URL('../../', import.meta.url));
@@ -33,7 +34,13 @@ export async function pageScripts() {
     bundled('page', 'player', 'entry.ts'),
     readFile(join(root, 'src', 'page', 'page.css'), 'utf8'),
   ]);
-  return { client, worker, player, style: css.replaceAll(/\s*\n\s*/g, ' ').trim() };
+  // the engine is most of the page: packed it is a third
+  return {
+    client,
+    worker: gzipSync(worker, { level: 9 }).toString('base64'),
+    player,
+    style: css.replaceAll(/\s*\n\s*/g, ' ').trim(),
+  };
 }
 
 /** An esbuild plugin that puts the page's program in the place of the stub. */

@@ -18,18 +18,31 @@ import { WriteUpSection } from './write-up-section.ts';
 
 const textOf = (id: string): string => document.getElementById(id)?.textContent ?? '';
 
+function bytesOf(base64: string): Uint8Array<ArrayBuffer> {
+  const text = atob(base64);
+  const bytes = new Uint8Array(text.length);
+  for (let n = 0; n < text.length; n++) bytes[n] = text.charCodeAt(n);
+  return bytes;
+}
+
 /** The clip's sides, as samples. */
 function clipSides(data: PageData): Partial<Record<Side, Float64Array>> {
   const sides: Partial<Record<Side, Float64Array>> = {};
   for (const side of ['both', 'left', 'right'] as const) {
     const coded = data.clip.sides[side];
-    if (!coded) continue;
-    const text = atob(coded.base64);
-    const bytes = new Uint8Array(text.length);
-    for (let n = 0; n < text.length; n++) bytes[n] = text.charCodeAt(n);
-    sides[side] = samplesOfBytes(bytes, coded.coding);
+    if (coded) sides[side] = samplesOfBytes(bytesOf(coded.base64), coded.coding);
   }
   return sides;
+}
+
+async function unpacked(base64: string): Promise<string> {
+  const packed = new Blob([bytesOf(base64)]).stream();
+  return new Response(packed.pipeThrough(new DecompressionStream('gzip'))).text();
+}
+
+async function open(): Promise<void> {
+  const data = JSON.parse(textOf('page-data')) as PageData;
+  new Page(data, await unpacked(textOf('page-worker')));
 }
 
 /** The page: its parts, and how a change in one reaches the others. */
@@ -48,11 +61,11 @@ class Page {
   private shown: readonly VariantResult[] = [];
   private readonly shortcuts = element('input', { type: 'checkbox', id: 'shortcuts', checked: '' });
 
-  constructor(data: PageData) {
+  constructor(data: PageData, engineText: string) {
     this.data = data;
     const sides = clipSides(data);
     const { sampleRateHertz, frames } = data.clip;
-    this.engine = new EngineLink(textOf('page-worker'), {
+    this.engine = new EngineLink(engineText, {
       kind: 'open',
       base: data.base,
       curves: data.curves,
@@ -223,4 +236,7 @@ class Page {
   }
 }
 
-new Page(JSON.parse(textOf('page-data')) as PageData);
+open().catch((fault: unknown) => {
+  const text = `This page cannot open in this browser: ${fault instanceof Error ? fault.message : String(fault)}.`;
+  document.getElementById('page')?.replaceChildren(element('p', { role: 'alert' }, text));
+});
