@@ -1,6 +1,7 @@
 import { open } from 'node:fs/promises';
 import { InputError } from '../engine/errors.ts';
 import type { HearingCurve } from '../engine/hearing/hearing-curves.ts';
+import { type AdjustableVariant, adjustableVariants } from '../list/adjustable.ts';
 import { type ListedVariant, listVariants } from '../list/variants.ts';
 import { hearingCurve } from './hearing-input.ts';
 import { keySettings, type RawOptions } from './options.ts';
@@ -20,6 +21,16 @@ export async function variantsFrom(list: string | null, options: RawOptions): Pr
   return Promise.all(
     variants.map(async (variant) => ({ ...variant, heard: await hearingCurve(variant.heardThrough, list) })),
   );
+}
+
+/** The same, with parts that can be given other values. */
+export async function adjustableFrom(list: string | null, options: RawOptions): Promise<AdjustableVariant[]> {
+  const settings = keySettings(options);
+  const written = list === null ? '' : await readList(list);
+  const name = list ?? 'standard set';
+  // every fault of the list, told as other commands tell it
+  listVariants(written, name, settings);
+  return adjustableVariants(written, name, settings);
 }
 
 async function readList(path: string): Promise<string> {

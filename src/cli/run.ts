@@ -149,6 +149,32 @@ Example:
       finish(import('./commands/prove.ts').then((module) => module.prove(list ?? null, options, io))),
     );
 
+  addPartFlags(program.command('choose'))
+    .description('The value of a part that meets a goal, with its neighbours; or the values that explain a measurement.')
+    .argument('<part>', 'bypass, leak, grid capacitor, load, coupling, supply, …; two with a comma for two goals')
+    .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
+    .option('--until <GOAL>', "such as '-6 dB at 5 kHz', 'corner 3.5 kHz', 'loudest with corner above 3 kHz'")
+    .option('--fit <FILE>', 'a measured response, Hz and dB or volts: finds up to three parts that explain it')
+    .option('--series <E>', 'values that can be had: E6, E12 or E24 (left out: E12)')
+    .option('--drawer <VALUES>', "your own: '47p,100p,150p'; with semicolons between the parts")
+    .option('--between <VALUES>', "where to search: '10p,10n'")
+    .option('--json', 'print the answer as JSON, nothing else')
+    .option('--quiet', 'no progress')
+    .addHelpText(
+      'after',
+      `
+Goals: -6 dB at 5 kHz; corner 3.5 kHz; low corner 80 Hz; second harmonic 3 % at 400 Hz, 80 % modulation; carrier on
+plate 100 mV; plate 45 V; loaded Q 40; loudest with corner above 3 kHz. Exit status 3: it cannot be met.
+Examples:
+  presolder choose bypass my-set.yaml --until 'corner 1.2 kHz'
+  presolder choose leak my-set.yaml --until 'loudest with second harmonic below 10 %' --drawer 470k,1M,2M2
+  presolder choose bypass,leak my-set.yaml --until 'corner 1.2 kHz; second harmonic 12 %'
+  presolder choose bypass,leak my-set.yaml --fit measured.csv`,
+    )
+    .action((part: string, list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/choose.ts').then((module) => module.choose(part, list ?? null, options, io))),
+    );
+
   program
     .command('stock')
     .description('The catalogue, with sources: tubes with their published rows and how well the law meets them.')

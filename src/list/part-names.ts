@@ -1,3 +1,4 @@
+import type { DetectorCircuit } from '../engine/circuits/circuit.ts';
 import { InputError } from '../engine/errors.ts';
 import type { QuantityKind } from '../engine/parts/format-quantity.ts';
 import { nearestName } from '../engine/parts/nearest-name.ts';
@@ -40,7 +41,12 @@ function scaleKeys(): Map<string, ChosenPart> {
   for (const [key, field] of CHANGEABLE) {
     const held = quantityKinds.get(field) ?? quantityKinds.get(unwrapped(field));
     if (!held || held.kind === 'fraction' || (held.limits.atLeast ?? 0) < 0) continue;
-    parts.set(key, { key, name: lastWords(key), kind: held.kind, limits: held.limits });
+    parts.set(key, {
+      key,
+      name: key === 'plate.load.resistance' ? 'load' : lastWords(key),
+      kind: held.kind,
+      limits: held.limits,
+    });
   }
   return parts;
 }
@@ -86,11 +92,31 @@ export function chosenPart(written: string, list: CircuitList): ChosenPart {
   throw wrong('no-part', ACCEPTED, near === null ? undefined : `nearest: ${near}`);
 }
 
-/** What the list says of a part, base SI units; null where it says nothing, or none. */
-export function standingValue(list: CircuitList, key: string): number | null {
+/**
+ * What stands for a part: what the list says, or the value that the circuit has where the list leaves it open; base SI
+ * units. Null where there is none.
+ */
+export function standingValue(list: CircuitList, circuit: DetectorCircuit, key: string): number | null {
   let at: unknown = list;
   for (const part of key.split('.')) at = typeof at === 'object' && at !== null ? Reflect.get(at, part) : undefined;
-  return typeof at === 'number' ? at : null;
+  if (typeof at === 'number') return at;
+  const { load } = circuit.plate;
+  const { tunedCircuit: tuned, output } = circuit;
+  const open: Readonly<Record<string, number | null | undefined>> = {
+    'tuned circuit.coil': tuned.kind === 'coil' ? tuned.coilHenries : null,
+    'tuned circuit.unloaded Q': tuned.kind === 'coil' ? tuned.unloadedQ : null,
+    'tuned circuit.tap': tuned.kind === 'coil' ? tuned.tap : null,
+    'plate.load.inductance': 'henries' in load ? load.henries : null,
+    'plate.load.dc resistance': 'dcOhms' in load ? load.dcOhms : null,
+    'plate.load.ratio': 'ratio' in load ? load.ratio : null,
+    'plate.load.primary inductance': 'ratio' in load ? load.primaryHenries : null,
+    'plate.load.leakage': 'ratio' in load ? load.leakageHenries : null,
+    'output.load resistance': output.loadOhms,
+    'output.load capacitance': output.loadFarads,
+    'output.matching.ratio': output.matching?.ratio,
+    'output.matching.primary inductance': output.matching?.primaryHenries,
+  };
+  return open[key] ?? null;
 }
 
 /** Ranges in which parts are sold or found, base SI units: common practice, no source. */
@@ -116,7 +142,8 @@ export function searchRange(
   const about = 10 ** (bench ? DECADES_ABOUT : DECADES_ABOUT_OTHERS);
   const middle = standing !== null && standing > 0 ? standing : null;
   const most = atMost ?? Number.MAX_VALUE;
-  const least = Math.max(atLeast ?? above ?? 0, most * 1e-9);
+  const floor = atLeast ?? above ?? 0;
+  const least = floor > 0 ? floor : most * 1e-9;
   const low = Math.min(bench?.[0] ?? middle ?? least, middle === null ? Number.MAX_VALUE : middle / about);
   const high = Math.max(bench?.[1] ?? middle ?? most, middle === null ? 0 : middle * about);
   return { atLeast: Math.min(Math.max(low, least), most), atMost: Math.max(Math.min(high, most), least) };
