@@ -150,7 +150,7 @@ Example:
     );
 
   addPartFlags(program.command('choose'))
-    .description('The value of a part that meets a goal, with its neighbours; or the values that explain a measurement.')
+    .description('The value of a part that meets a goal, with its neighbors; or what explains a measurement.')
     .argument('<part>', 'bypass, leak, grid capacitor, load, coupling, supply, …; two with a comma for two goals')
     .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
     .option('--until <GOAL>', "such as '-6 dB at 5 kHz', 'corner 3.5 kHz', 'loudest with corner above 3 kHz'")
