@@ -183,8 +183,8 @@ export function linearRectifierCycleLaw(chargeOhms: number): CycleLaw {
     out[MEAN_BY_X] = gPi * phi;
     out[MEAN_BY_A] = gPi * sin;
     out[CHORD] = gPi * (phi - sin * cos);
-    // dφ/dx = 1/(a sin φ); d(φ − sin φ cos φ)/dφ = 2 sin² φ
+    // dφ/dx = 1/(a sin φ), dφ/da = cos φ/(a sin φ); d(φ − sin φ cos φ)/dφ = 2 sin² φ
     out[CHORD_BY_X] = (gPi * 2 * sin) / a;
-    out[CHORD_BY_A] = (-gPi * 2 * sin * cos) / a;
+    out[CHORD_BY_A] = (gPi * 2 * sin * cos) / a;
   });
 }
