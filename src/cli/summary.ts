@@ -38,8 +38,18 @@ export function summaryText(result: Result): string {
     'What would come back at 5 kHz if one part alone were ideal:',
     plainTable(['variant', ...COST_PARTS.map(({ name }) => name)], costs),
     '',
+    ...measuredLines(result),
     ...cautionLines(result),
   ].join('\n');
+}
+
+/** How far each variant is from the readings. */
+function measuredLines({ measured, variants }: Result): string[] {
+  if (!measured) return [];
+  const apart = variants.map(
+    (variant) => `${variant.name} ${(variant.measured?.rmsDifferenceDecibels ?? 0).toFixed(2)} dB`,
+  );
+  return [`From ${measured.file}, rms over ${measured.points.length} readings: ${apart.join(', ')}.`, ''];
 }
 
 /** Each caution once, with the variants it concerns when it does not concern all. */

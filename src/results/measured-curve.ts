@@ -1,5 +1,9 @@
+import { magnitude } from '../engine/circuits/complex.ts';
+import { LinearResponse, REFERENCE_HERTZ } from '../engine/circuits/response.ts';
+import type { RestPoint } from '../engine/circuits/rest-point.ts';
 import { InputError } from '../engine/errors.ts';
 import { onePlainLine } from './plain-line.ts';
+import type { MeasuredRecord } from './result.ts';
 import type { TwoColumns } from './two-columns.ts';
 
 /** A response as a builder measured it, dB re its own level at 400 Hz. */
@@ -9,7 +13,6 @@ export interface MeasuredCurve {
   readonly decibels: readonly number[];
 }
 
-const REFERENCE_HERTZ = 400;
 /** Readings above this number are brought together: more tell no more, and each costs a solution of the circuit. */
 const MANY_READINGS = 240;
 const PER_OCTAVE = 24;
@@ -67,4 +70,27 @@ export function thinned({ hertz, decibels }: Pick<MeasuredCurve, 'hertz' | 'deci
     decibels: all.map((group) => mean((k) => decibels[k] as number, group)),
     readings: all.map((group) => group.length),
   };
+}
+
+/** The curve as a result holds it. */
+export function measuredRecord({ file, hertz, decibels }: MeasuredCurve): MeasuredRecord {
+  return { file, points: hertz.map((f, k) => ({ hertz: f, decibels: decibels[k] as number })) };
+}
+
+/** How far a circuit's response is from a measured one, rms over the readings, dB; both re 400 Hz. */
+export function rmsDifference(rest: RestPoint, curve: MeasuredCurve): number {
+  const response = new LinearResponse(rest);
+  const reference = magnitude(response.at(REFERENCE_HERTZ).output);
+  const { hertz, decibels, readings } = thinned(curve);
+  let sum = 0;
+  hertz.forEach((f, k) => {
+    const apart = (decibels[k] as number) - response.decibels(f, reference);
+    sum += (readings[k] as number) * apart * apart;
+  });
+  return Math.sqrt(sum / curve.hertz.length);
+}
+
+/** The measured level at a row's frequency; null outside the readings. */
+export function measuredAt({ points }: MeasuredRecord, hertz: number): number | null {
+  return levelAt({ hertz: points.map((point) => point.hertz), decibels: points.map((point) => point.decibels) }, hertz);
 }

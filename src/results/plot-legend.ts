@@ -1,10 +1,12 @@
 import { type CurveStyle, drawLineSample } from './plot-curves.ts';
+import { drawReadingSample } from './plot-readings.ts';
 import { drawTag } from './plot-tags.ts';
 import { fitText, svgText, textWidth } from './svg-text.ts';
 
 export interface LegendEntry {
   readonly label: string;
-  readonly style: CurveStyle;
+  /** Null: dots, as readings are drawn. */
+  readonly style: CurveStyle | null;
   /** The number on the curve; null: none. */
   readonly tag: number | null;
 }
@@ -35,8 +37,9 @@ export function drawLegend(
   const svg = entries.map((entry, i) => {
     const x = left + Math.floor(i / rows) * columnWidth;
     const y = top + (i % rows) * ROW_HEIGHT + ROW_HEIGHT / 2;
-    const tag = entry.tag === null ? '' : drawTag(x + 22, y, entry.tag, entry.style);
-    return drawLineSample(x, y, entry.style) + tag + svgText(x + KEY_WIDTH, y + 4.5, labels[i]!, { size: TEXT_SIZE });
+    const tag = entry.tag === null || !entry.style ? '' : drawTag(x + 22, y, entry.tag, entry.style);
+    const sample = entry.style ? drawLineSample(x, y, entry.style) : drawReadingSample(x, y);
+    return sample + tag + svgText(x + KEY_WIDTH, y + 4.5, labels[i]!, { size: TEXT_SIZE });
   });
   return { svg: svg.join('\n'), height: rows * ROW_HEIGHT };
 }

@@ -1,6 +1,7 @@
 import { formatQuantity, type QuantityKind } from '../engine/parts/format-quantity.ts';
 import { gatherCautions, gatheredText } from './caution-list.ts';
 import { COST_PARTS } from './cost-parts.ts';
+import { measuredAt } from './measured-curve.ts';
 import { onePlainLine } from './plain-line.ts';
 import type { RestRecord, Result, VariantResult } from './result.ts';
 import { SOCKET_NOTE, socketTable } from './socket-table.ts';
@@ -45,6 +46,7 @@ export function responseMarkdown(result: Result): string {
     rows.length === 0 ? '' : `### ${title}\n\n${note === '' ? '' : `${note}\n\n`}${table([corner, ...names], rows)}\n`;
   return [
     section('Response', 'Audio at the output, dB re 400 Hz.', 'Hz', responseRows(variants)),
+    measuredSection(result),
     heardSection(variants),
     section('Corners', 'Where the response is 3 dB down on 400 Hz.', 'corner', cornerRows(variants)),
     section(
@@ -79,6 +81,26 @@ function responseRows(variants: readonly VariantResult[]): Row[] {
     String(f),
     ...variants.map((variant) => decibels(variant.response.find((row) => row.hertz === f)?.decibels)),
   ]);
+}
+
+/** Readings beside the response, and what is left between them. */
+function measuredSection({ measured, variants }: Result): string {
+  if (!measured) return '';
+  const hertz = unionOf(variants, (variant) => variant.response.map((row) => row.hertz));
+  const rows = hertz.flatMap((f): Row[] => {
+    const reading = measuredAt(measured, f);
+    if (reading === null) return [];
+    const differences = variants.map((variant) => {
+      const computed = variant.response.find((row) => row.hertz === f)?.decibels;
+      return computed === undefined ? '' : decibels(reading - computed);
+    });
+    return [[String(f), decibels(reading), ...differences]];
+  });
+  const rms = variants.map((variant) => variant.measured?.rmsDifferenceDecibels.toFixed(2) ?? '');
+  const single = variants.length === 1;
+  const heads = variants.map((variant) => (single ? 'difference' : `difference, ${markdownText(variant.name)}`));
+  const note = `${markdownText(measured.file)}, dB re its own level at 400 Hz; difference: measured less response. The rms is over all readings.`;
+  return `### Measured\n\n${note}\n\n${table(['Hz', 'measured', ...heads], [...rows, ['rms', '', ...rms]])}\n`;
 }
 
 /** What is heard through, in its own table: it is no part of the circuit's response. */

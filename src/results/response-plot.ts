@@ -1,10 +1,12 @@
 import { COST_PARTS } from './cost-parts.ts';
+import { thinned } from './measured-curve.ts';
 import { onePlainLine } from './plain-line.ts';
 import { type Area, decibelRange, drawAxes, makePanel } from './plot-axes.ts';
-import { COST_STYLES, drawCurve, variantStyle } from './plot-curves.ts';
+import { COST_STYLES, type CurvePoint, drawCurve, variantStyle } from './plot-curves.ts';
 import { drawLegend } from './plot-legend.ts';
+import { drawReadings } from './plot-readings.ts';
 import { drawTag, tagPlaces } from './plot-tags.ts';
-import type { Result, VariantResult } from './result.ts';
+import type { MeasuredRecord, Result, VariantResult } from './result.ts';
 import { escapeXml, fitText, INK, px, ROOT_FONT, svgText } from './svg-text.ts';
 
 const WIDTH = 960;
@@ -25,16 +27,24 @@ const MOST_COST_PANELS = 4;
  */
 export function responseSvg(result: Result): string {
   const { variants } = result;
+  const readings = result.measured ? readingsOf(result.measured) : [];
   const legendTop = 48;
   const tagged = variants.length > 1;
   const legend = drawLegend(
-    variants.map((variant, i) => ({ label: shownName(variant), style: variantStyle(i), tag: tagged ? i + 1 : null })),
+    [
+      ...variants.map((variant, i) => ({
+        label: shownName(variant),
+        style: variantStyle(i),
+        tag: tagged ? i + 1 : null,
+      })),
+      ...(result.measured ? [{ label: `measured: ${result.measured.file}`, style: null, tag: null }] : []),
+    ],
     LEFT,
     legendTop,
     PLOT_WIDTH,
   );
   const responseTop = legendTop + legend.height + 36;
-  const response = drawResponse(variants, area(responseTop, RESPONSE_HEIGHT));
+  const response = drawResponse(variants, readings, area(responseTop, RESPONSE_HEIGHT));
   const cost = drawCosts(variants, responseTop + RESPONSE_HEIGHT + 64);
   const height = Math.ceil(cost.bottom);
   const described = `Response in dB re 400 Hz of ${variants.map((variant) => variant.name).join('; ')}.`;
@@ -56,8 +66,17 @@ function area(top: number, height: number): Area {
   return { left: LEFT, top, width: PLOT_WIDTH, height };
 }
 
-function drawResponse(variants: readonly VariantResult[], place: Area): string {
-  const values = variants.flatMap((variant) => variant.response.map((row) => row.decibels));
+/** Readings as dots, a finely stepped sweep brought together so that they stay dots. */
+function readingsOf({ points }: MeasuredRecord): readonly CurvePoint[] {
+  const { hertz, decibels } = thinned({
+    hertz: points.map((point) => point.hertz),
+    decibels: points.map((point) => point.decibels),
+  });
+  return hertz.map((f, k) => ({ hertz: f, decibels: decibels[k] as number }));
+}
+
+function drawResponse(variants: readonly VariantResult[], readings: readonly CurvePoint[], place: Area): string {
+  const values = [...variants.flatMap((variant) => variant.response), ...readings].map((point) => point.decibels);
   const panel = makePanel(place, decibelRange(values, { low: -6, high: 3 }, { low: -60, high: 40 }, 9));
   const axes = drawAxes(panel, { frequencyLabels: true, minusThree: true, axisTitle: 'dB' });
   const curves = variants.map((variant, i) =>
@@ -70,7 +89,8 @@ function drawResponse(variants: readonly VariantResult[], place: Area): string {
   const tags = places.map((place, i) =>
     place === null || variants.length === 1 ? '' : drawTag(place.x, place.y, i + 1, variantStyle(i)),
   );
-  return [axes, ...curves, ...tags].join('\n');
+  const dots = readings.length === 0 ? [] : [drawReadings(readings, panel)];
+  return [axes, ...curves, ...dots, ...tags].join('\n');
 }
 
 function drawCosts(variants: readonly VariantResult[], top: number): { readonly svg: string; readonly bottom: number } {

@@ -9,7 +9,15 @@ export interface Result {
   readonly clip?: ClipSummary;
   /** Volts at the output that stand at digital full scale, before each variant's gain; absent without a clip. */
   readonly fullScaleVolts?: number;
+  /** A response measured by the builder, over which the variants are laid; absent when none was given. */
+  readonly measured?: MeasuredRecord;
   readonly variants: readonly VariantResult[];
+}
+
+export interface MeasuredRecord {
+  readonly file: string;
+  /** Rising in frequency; dB re its own level at 400 Hz. */
+  readonly points: readonly { readonly hertz: number; readonly decibels: number }[];
 }
 
 export interface ClipSummary {
@@ -35,6 +43,8 @@ export interface VariantResult {
   readonly sound?: SoundRecord;
   /** What it is heard through; absent when that is flat. The sound goes through it, the response does not. */
   readonly heardThrough?: { readonly name: string; readonly source: string };
+  /** How far the response is from the measured one, rms over its readings; absent when none was given. */
+  readonly measured?: { readonly rmsDifferenceDecibels: number };
   readonly cautions: readonly string[];
 }
 

@@ -2,6 +2,7 @@ import type { Analysis } from '../engine/circuits/analysis.ts';
 import type { RestPoint } from '../engine/circuits/rest-point.ts';
 import { curveDecibels, type HearingCurve } from '../engine/hearing/hearing-curves.ts';
 import { cautionText } from './caution-text.ts';
+import { type MeasuredCurve, rmsDifference } from './measured-curve.ts';
 import type { CircuitRecord, SoundRecord, VariantResult } from './result.ts';
 
 /** The circuit as the equations used it: loaded Q and detuning are those with the detector connected. */
@@ -31,9 +32,9 @@ export function variantResult(
   name: string,
   changes: Readonly<Record<string, string>>,
   analysis: Analysis,
-  more: { readonly sound?: SoundRecord; readonly heard?: HearingCurve } = {},
+  more: { readonly sound?: SoundRecord; readonly heard?: HearingCurve; readonly measured?: MeasuredCurve | null } = {},
 ): VariantResult {
-  const { sound, heard } = more;
+  const { sound, heard, measured } = more;
   const curve = heard && heard.name !== 'flat' ? heard : null;
   const level = curve ? curveDecibels(curve, 400) : 0;
   return {
@@ -51,6 +52,7 @@ export function variantResult(
     sensitivity: analysis.sensitivity,
     ...(sound ? { sound } : {}),
     ...(curve ? { heardThrough: { name: curve.name, source: curve.source } } : {}),
+    ...(measured ? { measured: { rmsDifferenceDecibels: rmsDifference(analysis.rest, measured) } } : {}),
     cautions: analysis.cautions.map(cautionText),
   };
 }

@@ -7,6 +7,7 @@ import { type RenderedClip, renderClip } from '../../engine/renderer/render-clip
 import { TableStore } from '../../engine/renderer/table-store.ts';
 import { preEmphasise } from '../../engine/station/pre-emphasis.ts';
 import { type Programme, programmeFrom, toMono } from '../../engine/station/programme.ts';
+import { measuredRecord } from '../../results/measured-curve.ts';
 import type { Result } from '../../results/result.ts';
 import { resultJson } from '../../results/result-json.ts';
 import { safeFileNames } from '../../results/safe-names.ts';
@@ -17,6 +18,7 @@ import { writeWav } from '../../results/wav-write.ts';
 import { readClip } from '../clip-read.ts';
 import { EXIT, type Io } from '../io.ts';
 import { type RunVariant, variantsFrom } from '../list-input.ts';
+import { measuredFrom } from '../measured-input.ts';
 import { ofVariant } from '../of-variant.ts';
 import { choice, flag, type RawOptions, text, wavCoding } from '../options.ts';
 import { PAGE_FILE, pageFiles } from '../page-file.ts';
@@ -35,8 +37,9 @@ export async function render(clipPath: string, list: string | null, options: Raw
   const variants = await variantsFrom(list, options);
   const clip = await readClip(clipPath);
   const inputs = list === null ? [clipPath] : [clipPath, list];
+  const measured = await measuredFrom(options);
   const folder = text(options, 'out') ?? join('out', folderName(...inputs));
-  await checkFolder(folder, ...inputs);
+  await checkFolder(folder, ...inputs, ...[text(options, 'measured')].filter((path) => path !== null));
   for (const warning of clip.warnings) if (!quiet) io.err(`${clipPath}: ${warning}\n`);
 
   const progress = new Progress(io, quiet);
@@ -75,6 +78,7 @@ export async function render(clipPath: string, list: string | null, options: Raw
       limitedSamples,
     },
     fullScaleVolts: levels.fullScaleVolts,
+    ...(measured ? { measured: measuredRecord(measured) } : {}),
     variants: variants.map((variant, k) => {
       const sound = levels.sounds[k] as (typeof levels.sounds)[number];
       const analysis = analyses[k] as Analysis;
@@ -96,6 +100,7 @@ export async function render(clipPath: string, list: string | null, options: Raw
           peakVolts: (rendered[k] as RenderedClip).peakVolts,
         },
         heard: variant.heard,
+        measured,
       });
     }),
   };

@@ -1,10 +1,12 @@
 import { analyse } from '../../engine/circuits/analysis.ts';
+import { measuredRecord } from '../../results/measured-curve.ts';
 import { responseMarkdown } from '../../results/response-markdown.ts';
 import type { Result, VariantResult } from '../../results/result.ts';
 import { resultJson } from '../../results/result-json.ts';
 import { variantResult } from '../../results/variant-result.ts';
 import { EXIT, type Io } from '../io.ts';
 import { variantsFrom } from '../list-input.ts';
+import { measuredFrom } from '../measured-input.ts';
 import { ofVariant } from '../of-variant.ts';
 import { flag, metersOf, type RawOptions, text } from '../options.ts';
 import { Progress } from '../progress.ts';
@@ -16,19 +18,26 @@ import { summaryText } from '../summary.ts';
 export async function respond(list: string | null, options: RawOptions, io: Io): Promise<number> {
   const meters = metersOf(options);
   const variants = await variantsFrom(list, options);
+  const measured = await measuredFrom(options);
   const folder = text(options, 'out');
-  if (folder !== null) await checkFolder(folder, ...(list === null ? [] : [list]));
+  const inputs = [list, text(options, 'measured')].filter((path) => path !== null);
+  if (folder !== null) await checkFolder(folder, ...inputs);
   const progress = new Progress(io, flag(options, 'quiet'));
   const results: VariantResult[] = [];
   for (const [k, variant] of variants.entries()) {
     progress.tell(`analysing ${variant.name}`, k / variants.length);
     const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings, meters));
     const cautions = [...analysis.cautions, ...variant.cautions];
-    results.push(variantResult(variant.name, variant.changes, { ...analysis, cautions }, { heard: variant.heard }));
+    const more = { heard: variant.heard, measured };
+    results.push(variantResult(variant.name, variant.changes, { ...analysis, cautions }, more));
     await progress.breathe();
   }
   progress.clear();
-  const result: Result = { format: 'presolder-result/1', variants: results };
+  const result: Result = {
+    format: 'presolder-result/1',
+    ...(measured ? { measured: measuredRecord(measured) } : {}),
+    variants: results,
+  };
   await progress.pause();
   const replaced = folder === null ? false : (await writeResults(folder, paperFiles(result))).replaced;
   if (flag(options, 'json')) io.out(resultJson(result));
