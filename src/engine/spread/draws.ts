@@ -1,5 +1,5 @@
-import { factorAt, type TolerancedPart } from './part-tolerances.ts';
 import { SeededNumbers } from '../chance/seeded-numbers.ts';
+import { factorAt, type TolerancedPart } from './part-tolerances.ts';
 import { VARIED_PARTS } from './varied-parts.ts';
 
 /** Where each part stands in its tolerance, 0 at the lower end to 1 at the upper, one row a circuit. */
