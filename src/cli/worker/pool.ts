@@ -3,6 +3,8 @@ import { fileURLToPath } from 'node:url';
 import { type Fault, InputError } from '../../engine/errors.ts';
 import { type Given, JOBS, type JobKind, type Made } from './jobs.ts';
 
+const CLOSED = 'the pool is closed';
+
 /** What a worker sends back. */
 export type Answer<Kind extends JobKind> = { readonly made: Made<Kind> } | { readonly faults: readonly Fault[] };
 
@@ -40,7 +42,7 @@ function onThisThread(): WorkPool {
     run(kind, given) {
       const job = last.then(async () => {
         await new Promise((resolve) => setImmediate(resolve));
-        if (closed) throw new Error('the pool is closed');
+        if (closed) throw new Error(CLOSED);
         return JOBS[kind](given);
       });
       last = job.catch(() => {});
@@ -55,14 +57,18 @@ function onThisThread(): WorkPool {
 async function onThreads(workers: number, file: string): Promise<WorkPool> {
   const { pool } = await import('workerpool');
   const threads = pool(file, { workerType: 'thread', maxWorkers: workers });
+  let closed = false;
   return {
     workers,
     async run<Kind extends JobKind>(kind: Kind, given: Given<Kind>) {
+      // a job after the end would start a worker that nobody ends
+      if (closed) throw new Error(CLOSED);
       const answer = (await threads.exec('work', [kind, given])) as Answer<Kind>;
       if ('faults' in answer) throw new InputError(answer.faults);
       return answer.made;
     },
     async close() {
+      closed = true;
       await threads.terminate(true);
     },
   };
