@@ -21,7 +21,7 @@ export function summaryText(result: Result): string {
       signed(at(variant, 5000)?.decibels ?? 0),
       hertz(variant.highCornerHertz),
       `${(tone?.secondPercent ?? 0).toFixed(1)} %`,
-      formatQuantity(variant.rest.plateVolts, 'voltage', 3),
+      variant.rest.plateVolts > 0 ? formatQuantity(variant.rest.plateVolts, 'voltage', 3) : '-',
       variant.circuit.tunedCircuit.loadedQ.toFixed(0),
     ];
   });

@@ -2,8 +2,10 @@ import type { Caution, Ratings } from '../engine/circuits/cautions.ts';
 import type { DetectorCircuit, GridLeakDetector, TunedCircuit } from '../engine/circuits/circuit.ts';
 import { withFaults } from '../engine/circuits/part-faults.ts';
 import { type Fault, InputError } from '../engine/errors.ts';
+import { singleLayerHenries } from '../engine/parts/wheeler.ts';
 import type { BandLimit, PreEmphasis } from '../engine/station/pre-emphasis.ts';
 import type { CathodeKind } from '../engine/tubes/fitting.ts';
+import { biasedForCurrent, detectorOf, wantsRestCurrent } from './list-detector.ts';
 import { outputOf, plateLoadOf, windingRating } from './list-loads.ts';
 import { socketedTube } from './list-tube.ts';
 import { type CircuitList, STANDARD_COIL } from './schema.ts';
@@ -28,7 +30,8 @@ export interface BuiltCircuit {
 /** The circuit a read list describes, its failed part in it. Throws InputError whose faults name dotted keys. */
 export function buildCircuit(list: CircuitList): BuiltCircuit {
   const drawn = asDrawn(list);
-  return { ...drawn, circuit: withFaults(drawn.circuit, list.fault) };
+  const biased = wantsRestCurrent(list) ? biasedForCurrent(drawn.circuit, list) : drawn.circuit;
+  return { ...drawn, circuit: withFaults(biased, list.fault) };
 }
 
 function asDrawn(list: CircuitList): BuiltCircuit {
@@ -42,7 +45,7 @@ function asDrawn(list: CircuitList): BuiltCircuit {
         modulation: station.modulation,
       },
       tunedCircuit: tunedCircuit(list),
-      detector: gridLeak(list, cathode, filamentVolts),
+      detector: detectorOf(list, () => gridLeak(list, cathode, filamentVolts)),
       tube,
       plate: {
         supplyVolts: plate.supply,
@@ -107,7 +110,8 @@ function tunedCircuit(list: CircuitList): TunedCircuit {
     }
     return { kind: 'stiff', loadedQ, detuneHertz };
   }
-  const { coil, capacitor } = written;
+  const { capacitor } = written;
+  const coil = written.coil ?? woundCoil(list);
   if (coil !== undefined && capacitor !== undefined) {
     throw fault(
       'coil-and-capacitor',
@@ -117,14 +121,37 @@ function tunedCircuit(list: CircuitList): TunedCircuit {
     );
   }
   const omega = 2 * Math.PI * list.station.carrier;
+  const coilHenries = coil ?? (capacitor === undefined ? STANDARD_COIL.coilHenries : 1 / (omega * omega * capacitor));
+  const antenna = written['antenna resistance'];
+  const ownQ = written['unloaded Q'] ?? STANDARD_COIL.unloadedQ;
   return {
     kind: 'coil',
-    coilHenries: coil ?? (capacitor === undefined ? STANDARD_COIL.coilHenries : 1 / (omega * omega * capacitor)),
-    unloadedQ: written['unloaded Q'] ?? STANDARD_COIL.unloadedQ,
+    coilHenries,
+    // what the antenna puts across the coil damps it as its own losses do
+    unloadedQ: antenna === null ? ownQ : 1 / (1 / ownQ + (omega * coilHenries) / antenna),
     tap: written.tap ?? 1,
     retuned: written.retune === 'yes',
     detuneHertz,
   };
+}
+
+/** Inductance of a coil described by its winding; undefined where the list has none. */
+function woundCoil(list: CircuitList): number | undefined {
+  const { turns, diameter, length, coil } = list['tuned circuit'];
+  if (turns === undefined && diameter === undefined && length === undefined) return undefined;
+  if (turns === undefined || diameter === undefined || length === undefined) {
+    const missing = ['turns', 'diameter', 'length'].filter(
+      (key) => list['tuned circuit'][key as 'turns' | 'diameter' | 'length'] === undefined,
+    );
+    throw fault(
+      'half-a-winding',
+      'tuned circuit',
+      `no ${missing.join(', no ')}`,
+      'turns, diameter and length together',
+    );
+  }
+  if (coil !== undefined) throw fault('two-coils', 'tuned circuit.turns', 'a winding beside a coil', 'one of them');
+  return singleLayerHenries(turns, diameter, length);
 }
 
 /**

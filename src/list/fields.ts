@@ -54,13 +54,12 @@ export function quantityOr(
   return quantity(kind, limits, what).prefault(standard).register(quantityKinds, { kind, limits });
 }
 
-/** A quantity or the word `none`, which gives null. */
-export function quantityOrNone(
-  standard: string,
+/** A quantity or the word `none`, which gives null; left out, it is undefined. */
+export function quantityOrNull(
   kind: QuantityKind,
   limits: QuantityLimits,
   what: string,
-): z.ZodType<number | null, Written | undefined> {
+): z.ZodType<number | null, Written> {
   const field = readField<number | null>(
     (written) => {
       if (/^\s*none\s*$/i.test(String(written))) return { value: null };
@@ -70,8 +69,18 @@ export function quantityOrNone(
     },
     `${expectedOf(kind)}, or none`,
     `${what}; ${limitsText(kind, limits)}, or none`,
-  ).register(quantityKinds, { kind, limits });
-  return field.prefault(standard).register(quantityKinds, { kind, limits });
+  );
+  return field.register(quantityKinds, { kind, limits });
+}
+
+/** The same with its default as written. */
+export function quantityOrNone(
+  standard: string,
+  kind: QuantityKind,
+  limits: QuantityLimits,
+  what: string,
+): z.ZodType<number | null, Written | undefined> {
+  return quantityOrNull(kind, limits, what).prefault(standard).register(quantityKinds, { kind, limits });
 }
 
 /** One of a few words; `also` maps other spellings to them. */
@@ -140,4 +149,30 @@ function readWithin(written: Written, kind: QuantityKind, limits: QuantityLimits
   const anything = readQuantity(written, kind, '');
   if ('value' in anything && anything.value === 0) return anything;
   return { fault: { ...reading.fault, expected: limitsText(kind, limits) } };
+}
+
+const LENGTH_EXPECTED = 'a length such as 50 mm, 5 cm, 2 in';
+
+/** A length in metres, 1 mm to 1 m; a plain number is in metres. */
+export function length(what: string): z.ZodType<number, Written> {
+  return readField(
+    (written): Reading<number> => {
+      const match = /^\s*([\d.]+)\s*(mm|cm|m|in|inch|inches|")?\s*$/i.exec(String(written));
+      const perUnit: Readonly<Record<string, number>> = {
+        mm: 1e-3,
+        cm: 1e-2,
+        m: 1,
+        in: 0.0254,
+        inch: 0.0254,
+        inches: 0.0254,
+        '"': 0.0254,
+      };
+      const value = Number(match?.[1]) * (perUnit[(match?.[2] ?? 'm').toLowerCase()] ?? Number.NaN);
+      if (value >= 1e-3 && value <= 1) return { value };
+      const code = match ? 'out-of-range' : 'not-a-quantity';
+      return { fault: { code, where: '', got: String(written), expected: match ? '1 mm to 1 m' : LENGTH_EXPECTED } };
+    },
+    LENGTH_EXPECTED,
+    what,
+  );
 }

@@ -36,8 +36,9 @@ export function plateLoadOf(load: WrittenLoad): PlateLoad {
 
 /** What follows the plate. A transformer or phones as the load need no coupling capacitor. */
 export function outputOf(list: CircuitList): Output {
-  const { output, plate } = list;
-  if (plate.load.kind === 'phones') {
+  const { output, plate, detector } = list;
+  const diode = detector.kind === 'diode' || detector.kind === 'crystal';
+  if (plate.load.kind === 'phones' && !diode && detector.kind !== 'infinite impedance') {
     return { couplingFarads: null, loadOhms: null, loadFarads: 0, matching: null, phones: null };
   }
   const part = outputPart(output.into);
@@ -51,7 +52,12 @@ export function outputOf(list: CircuitList): Output {
     ? transformerOf(output.matching, 'output.matching')
     : { falling: null };
   return {
-    couplingFarads: plate.load.kind === 'transformer' ? null : output.coupling,
+    // a diode's direct current goes through phones or a transformer that it feeds
+    couplingFarads:
+      (diode && detector['diode load'] === undefined && (phones !== null || output.matching)) ||
+      (plate.load.kind === 'transformer' && !diode && detector.kind !== 'infinite impedance')
+        ? null
+        : output.coupling,
     loadOhms: output['load resistance'] ?? part.loadOhms,
     loadFarads: output['load capacitance'] ?? part.loadFarads,
     matching: output.matching ? (matching as Transformer) : null,

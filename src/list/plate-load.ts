@@ -1,6 +1,6 @@
 import * as z from 'zod';
 import type { Fault } from '../engine/errors.ts';
-import { quantity, quantityOrNone, type Written, words } from './fields.ts';
+import { quantity, quantityOrNull, type Written, words } from './fields.ts';
 
 const OHMS = { atLeast: 1, atMost: 1e9 } as const;
 const WINDING_OHMS = { atLeast: 0, atMost: 1e6 } as const;
@@ -14,7 +14,7 @@ const part = words(
 ).optional();
 /** A value that may also be `none`; left out, the catalogue's part gives it. */
 const orNone = (kind: 'resistance' | 'capacitance', what: string) =>
-  quantityOrNone('none', kind, kind === 'resistance' ? OHMS : FARADS_OR_NONE, what).optional();
+  quantityOrNull(kind, kind === 'resistance' ? OHMS : FARADS_OR_NONE, what).optional();
 
 const resistor = z.strictObject({
   kind: z.literal('resistor'),

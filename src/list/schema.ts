@@ -4,7 +4,7 @@ import { formatQuantity } from '../engine/parts/format-quantity.ts';
 import { SOCKET_STRAYS } from '../engine/tubes/socketed-tube.ts';
 import { CAPACITY_EXPECTED, readBatteryCapacity } from './battery-capacity.ts';
 import { dottedFields } from './dotted-keys.ts';
-import { choiceOr, quantity, quantityOr, quantityOrNone, readField, words } from './fields.ts';
+import { choiceOr, length, quantity, quantityOr, quantityOrNone, quantityOrNull, readField, words } from './fields.ts';
 import { PART_FAULT_EXPECTED, readPartFaults } from './part-fault-words.ts';
 import { plateLoad, transformerKeys } from './plate-load.ts';
 import { tubeSection } from './tube-section.ts';
@@ -45,6 +45,19 @@ const tunedCircuit = z.strictObject({
     { atLeast: 1e-12, atMost: 1e-6 },
     'Tuning capacitance, in place of the coil',
   ).optional(),
+  turns: quantity(
+    'number',
+    { atLeast: 1, atMost: 2000 },
+    'Turns of a single-layer coil, in place of its inductance',
+  ).optional(),
+  diameter: length('Diameter of the winding').optional(),
+  length: length('Length of the winding').optional(),
+  'antenna resistance': quantityOrNone(
+    'none',
+    'resistance',
+    { atLeast: 100, atMost: 1e9 },
+    'What the antenna puts across the coil',
+  ),
   'unloaded Q': quantity('number', Q, 'Q of coil and tuning capacitor alone (90 when left out)').optional(),
   'loaded Q': quantity('number', Q, 'Alone: a stiff source whose level is that at the detector').optional(),
   tap: quantity(
@@ -57,8 +70,13 @@ const tunedCircuit = z.strictObject({
 });
 
 const detector = z.strictObject({
-  kind: choiceOr(['grid leak'], 'grid leak', 'Kind of detector', {}, ', the one kind of detector this release knows'),
-  law: choiceOr(['tube', 'square', 'linear'], 'tube', "The tube's own law or a textbook's"),
+  kind: choiceOr(
+    ['grid leak', 'plate bend', 'infinite impedance', 'diode', 'crystal'],
+    'grid leak',
+    'Kind of detector',
+    { 'anode bend': 'plate bend', 'plate bend': 'plate bend', galena: 'crystal' },
+  ),
+  law: choiceOr(['tube', 'square', 'linear'], 'tube', "The tube's own law, or of a grid leak a textbook's"),
   tube: words(40, 'Tube type', 'a tube type such as 6SL7-GT, 76, 01-A').prefault('6SL7-GT'),
   'grid capacitor': quantityOr('150 pF', 'capacitance', FARADS, 'Grid capacitor'),
   'grid capacitor leakage': quantityOrNone('none', 'resistance', { atLeast: 1, atMost: 1e12 }, 'Its own leakage'),
@@ -69,6 +87,25 @@ const detector = z.strictObject({
     'filament+': 'filament +',
   }),
   'charge resistance': quantityOrNone('none', 'resistance', OHMS, 'Of the linear law (a thousandth of the leak)'),
+  'cathode resistor': quantityOrNull('resistance', OHMS, 'Of plate bend or infinite impedance').optional(),
+  'cathode capacitor': quantity('capacitance', FARADS_OR_NONE, 'Across the cathode resistor').optional(),
+  bias: quantity('voltage', { atLeast: -100, atMost: 0 }, 'Of a battery in the grid lead of plate bend').optional(),
+  'rest current': quantity(
+    'current',
+    { atLeast: 1e-7, atMost: 0.1 },
+    'Plate current without carrier that a plate bend is biased for (0.2 mA when no bias is stated)',
+  ).optional(),
+  diode: choiceOr(['vacuum', 'germanium', 'galena'], 'vacuum', 'Kind of diode or crystal').optional(),
+  perveance: quantity('number', { above: 0, atMost: 1 }, 'Of a vacuum diode, A/V^1.5').optional(),
+  'saturation current': quantity('current', { above: 0, atMost: 0.01 }, 'Of a crystal').optional(),
+  ideality: quantity('number', { atLeast: 0.5, atMost: 10 }, 'Of a crystal').optional(),
+  'series resistance': quantity('resistance', { atLeast: 0, atMost: 1e6 }, 'Of a crystal').optional(),
+  'diode capacitance': quantity('capacitance', FARADS_OR_NONE, 'Between its ends').optional(),
+  'diode load': quantityOrNull('resistance', OHMS, 'What a diode charges its bypass across').optional(),
+  'diode bypass': quantity('capacitance', FARADS_OR_NONE, 'Across the diode load').optional(),
+  'filter resistor': quantityOrNull('resistance', OHMS, 'From the diode load to a second capacitor').optional(),
+  'filter capacitor': quantityOr('100 pF', 'capacitance', FARADS_OR_NONE, 'Behind the filter resistor'),
+  volume: quantityOr('100 %', 'fraction', { atLeast: 0, atMost: 1 }, 'Setting of the volume control'),
 });
 
 const BATTERY = 'Capacity of a B battery, for how long it lasts: 500 mAh; 1 mAh to 1000 Ah, or none';

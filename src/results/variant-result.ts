@@ -1,4 +1,5 @@
 import type { Analysis } from '../engine/circuits/analysis.ts';
+import type { DetectorCircuit } from '../engine/circuits/circuit.ts';
 import type { RestPoint } from '../engine/circuits/rest-point.ts';
 import { curveDecibels, type HearingCurve } from '../engine/hearing/hearing-curves.ts';
 import { cautionText } from './caution-text.ts';
@@ -8,7 +9,7 @@ import type { CircuitRecord, SoundRecord, VariantResult } from './result.ts';
 /** The circuit as the equations used it: loaded Q and detuning are those with the detector connected. */
 export function circuitRecord(rest: RestPoint): CircuitRecord {
   const { circuit, tuned } = rest;
-  const { station, tunedCircuit, detector, tube, plate, output } = circuit;
+  const { station, tunedCircuit, tube, plate, output } = circuit;
   const coil = tunedCircuit.kind === 'coil' ? tunedCircuit : null;
   return {
     station,
@@ -20,11 +21,39 @@ export function circuitRecord(rest: RestPoint): CircuitRecord {
       tap: coil ? coil.tap : 1,
       retuned: coil ? coil.retuned : null,
     },
-    detector,
+    detector: detectorRecord(circuit),
     tube,
     plate,
     output,
   };
+}
+
+/** The detector's own values: of a grid leak, of what stands in a cathode lead, or of a diode with what follows it. */
+function detectorRecord({ detector, output }: DetectorCircuit): CircuitRecord['detector'] {
+  const { kind, law, cathode, diode } = detector;
+  if (kind === 'grid leak') return detector;
+  const record = diode
+    ? {
+        kind,
+        law: diode.law,
+        loadOhms: diode.loadOhms,
+        bypassFarads: diode.bypassFarads,
+        filterOhms: diode.filterOhms,
+        filterFarads: diode.filterFarads,
+        capacitanceFarads: diode.capacitanceFarads,
+        volume: diode.volume,
+        couplingFarads: output.couplingFarads,
+        followingOhms: output.loadOhms,
+      }
+    : {
+        kind,
+        law,
+        cathodeOhms: cathode?.ohms ?? null,
+        cathodeFarads: cathode?.farads ?? 0,
+        biasVolts: cathode?.biasVolts ?? 0,
+      };
+  // readers of a grid leak's values look at the kind first
+  return record as unknown as CircuitRecord['detector'];
 }
 
 /** One variant of a result from its analysis; `sound` only where a clip was rendered. */

