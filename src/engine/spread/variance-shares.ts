@@ -15,9 +15,9 @@ const RUNS_PER_TERM = 8;
 
 /**
  * First-order shares of a figure's variance by least squares over the random circuits. The figure is fitted with a
- * straight line and, given enough circuits, a parabola in each part's place within its tolerance (Legendre polynomials,
- * which are uncorrelated for even draws, so that the fitted variances of the parts add); a part's share is the variance of
- * its own terms over that of the figure.
+ * straight line and, given enough circuits, a parabola in each part's place within its tolerance; a part's share is the
+ * variance of its own terms over the circuits, over that of the figure. The parts are drawn independently, so the variances
+ * of their terms add.
  *
  * Source of the idea: I. M. Sobol', Sensitivity estimates for nonlinear mathematical models, 1993 (from memory); of the
  * estimate by a fit: B. Sudret, Reliab. Eng. Syst. Saf. 93, 2008 (from memory).
@@ -51,11 +51,13 @@ export function varianceShares(shares: Shares, values: readonly number[]): Varia
     }
   });
   if (!solveReal(normal, terms, right, 1)) return null;
-  // the mean square of the Legendre polynomial of degree d over −1 to 1 is 1/(2d + 1)
   const carried = Array.from({ length: parts }, (_, k) => {
-    let variance = 0;
-    for (let d = 1; d <= degrees; d++) variance += (right[degrees * k + d] as number) ** 2 / (2 * d + 1);
-    return variance / total;
+    const own = shares.map((places) => {
+      const x = 2 * (places[k] as number) - 1;
+      const line = (right[1 + degrees * k] as number) * x;
+      return degrees === 2 ? line + (right[2 + degrees * k] as number) * (1.5 * x * x - 0.5) : line;
+    });
+    return varianceOf(own) / total;
   });
   // chance in the draws can take the sum a little over the whole
   const sum = carried.reduce((all, one) => all + one, 0);
