@@ -2,6 +2,7 @@
 export function starterList(): string {
   return `# Parts list of a one-tube set. Every line may be left out: what stands here is then assumed.
 # Values are written as on the part: 2M2, 470k, 4k7, 100p, 0.1 µF (or 0.1 uF), 45 V, 920 kHz, 80 %.
+# A tolerance may follow a part's value, for presolder spread: 100p +-20 %, 220k -10/+30 %.
 # m and M differ: 60 mV, 2 MΩ (or 2 Mohm). A B supply can shock or kill; switch off and discharge before you solder.
 name: My one-tube set
 
