@@ -51,14 +51,18 @@ export function outputOf(list: CircuitList): Output {
   const { falling, ...matching } = output.matching
     ? transformerOf(output.matching, 'output.matching')
     : { falling: null };
+  const loadOhms = output['load resistance'] ?? part.loadOhms;
+  // behind a capacitor an open end would float: what is heard there is what stands before it
+  const isOpen = loadOhms === null && phones === null && !output.matching;
   return {
     // a diode's direct current goes through phones or a transformer that it feeds
     couplingFarads:
+      isOpen ||
       (diode && detector['diode load'] === undefined && (phones !== null || output.matching)) ||
       (plate.load.kind === 'transformer' && !diode && detector.kind !== 'infinite impedance')
         ? null
         : output.coupling,
-    loadOhms: output['load resistance'] ?? part.loadOhms,
+    loadOhms,
     loadFarads: output['load capacitance'] ?? part.loadFarads,
     matching: output.matching ? (matching as Transformer) : null,
     phones,

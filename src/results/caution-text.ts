@@ -79,7 +79,7 @@ function signalText({ code, figure, limit, further = 0 }: Caution): string | nul
       return (
         `Grid capacitor of ${farads(figure)}, below ten times what the grid takes at the carrier, ${farads(limit)} ` +
         `(${PRACTICE}): the two divide the carrier, and ${further.toFixed(1)} dB of it is lost. ` +
-        `${farads(preferredAbove(limit, 'E12'))} would do.`
+        `${farads(preferredAbove(limit, 'E12'))} would do, or more plate bypass, which lets the plate multiply the grid's less.`
       );
     case 'slope-limit':
       return (
@@ -118,13 +118,14 @@ function validityText({ code, figure, limit }: Caution): string {
     case 'plate-harmonic':
       return (
         `The plate's second carrier harmonic reaches ${percent(figure)} of the carrier in the tube (limit ${percent(limit)}, ` +
-        `${MEASURED}): distortion figures are good to 10 % only. More plate bypass or less signal mends it.`
+        `${MEASURED}): levels are good to 0.3 dB at best, and a second harmonic can be off by more than a tenth of itself. ` +
+        'More plate bypass or less signal mends it.'
       );
     case 'bare-plate':
       return (
         `Hardly any plate bypass, and the plate's second carrier harmonic reaches ${percent(figure)} of the carrier in the ` +
-        `tube (limit ${percent(limit)} there, ${MEASURED}): a second harmonic of a few per cent can be off by more than a ` +
-        'tenth of itself. More plate bypass or less signal mends it.'
+        `tube (limit ${percent(limit)} there, ${MEASURED}): levels are good to 0.3 dB, and a second harmonic of a few per cent ` +
+        'can be off by more than a tenth of itself. More plate bypass or less signal mends it.'
       );
     case 'little-bypass':
       return (

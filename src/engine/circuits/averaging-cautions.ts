@@ -35,13 +35,13 @@ export function averagingCautions(rest: RestPoint): Caution[] {
   if (leastCycles !== null) raise(cycles < leastCycles, 'ripple', cycles, leastCycles);
   if (circuit.detector.kind !== 'grid leak' && circuit.detector.kind !== 'plate bend') return found;
   const harmonic = plateHarmonicShare(rest);
-  raise(harmonic > MOST_HARMONIC, 'plate-harmonic', harmonic, MOST_HARMONIC);
   const bypass = circuit.plate.bypassFarads + circuit.tube.plateCathodeFarads;
-  if (bypass < TIGHT_BYPASS_FARADS && circuit.station.levelVoltsRms > TIGHT_LEVEL_VOLTS) {
-    raise(true, 'little-bypass', bypass, TIGHT_BYPASS_FARADS);
-    const bare = harmonic > MOST_HARMONIC_ON_BARE_PLATE && harmonic <= MOST_HARMONIC;
-    raise(bare, 'bare-plate', harmonic, MOST_HARMONIC_ON_BARE_PLATE);
-  }
+  const bare = bypass < TIGHT_BYPASS_FARADS && circuit.station.levelVoltsRms > TIGHT_LEVEL_VOLTS;
+  // the strongest of the three that applies: each says how far the figures may be off
+  if (harmonic > MOST_HARMONIC) raise(true, 'plate-harmonic', harmonic, MOST_HARMONIC);
+  else if (bare && harmonic > MOST_HARMONIC_ON_BARE_PLATE) {
+    raise(true, 'bare-plate', harmonic, MOST_HARMONIC_ON_BARE_PLATE);
+  } else raise(bare, 'little-bypass', bypass, TIGHT_BYPASS_FARADS);
   return found;
 }
 

@@ -3,6 +3,7 @@ import type { Caution, Ratings } from './cautions.ts';
 import { complex, magnitude, minus, over, plus, times } from './complex.ts';
 import { solveComplex } from './dense-solve.ts';
 import { leakOhmsAtAudio } from './grid-leak.ts';
+import { plateAdmittance } from './plate-network.ts';
 import { LinearResponse } from './response.ts';
 import type { RestPoint } from './rest-point.ts';
 
@@ -30,10 +31,8 @@ export function signalCautions(rest: RestPoint, ratings: Ratings | null): Cautio
     const volts = carrierAtOutputVoltsRms(rest);
     const limit = CARRIER_ON_NEXT_GRID_VOLTS;
     if (volts > limit) {
-      // what is left of the carrier goes with the reactance from plate to cathode
-      const strays = rest.circuit.tube.plateCathodeFarads;
-      const needed = ((rest.circuit.plate.bypassFarads + strays) * volts) / limit - strays;
-      found.push({ code: 'carrier-on-plate', figure: volts, limit, further: preferredAbove(needed, 'E12') });
+      const further = preferredAbove(bypassFor(rest, volts / limit), 'E12');
+      found.push({ code: 'carrier-on-plate', figure: volts, limit, further });
     }
   }
   return found;
@@ -96,6 +95,17 @@ export function followedHertz(rest: RestPoint): number | null {
 /** Largest depth that is followed at 1 kHz. */
 function followedDepth(rest: RestPoint): number {
   return 1 / gridCurrentSwing(rest, new LinearResponse(rest), DEEP_AUDIO_HERTZ);
+}
+
+/** Bypass that would bring the carrier on the plate down by a ratio, F: the tube's current into its admittance. */
+function bypassFor(rest: RestPoint, ratio: number): number {
+  const { circuit, currents } = rest;
+  const omega = 2 * Math.PI * circuit.station.carrierHertz;
+  const side = plateAdmittance(circuit, circuit.station.carrierHertz);
+  const conductance = side.re + currents.tubeChord / circuit.tube.law.mu;
+  const wanted = ratio * magnitude(complex(conductance, side.im));
+  const susceptance = Math.sqrt(Math.max(wanted * wanted - conductance * conductance, 0));
+  return circuit.plate.bypassFarads + (susceptance - side.im) / omega;
 }
 
 /** Carrier that reaches the output, V rms: what is on the plate through the coupling and onto what follows. */
