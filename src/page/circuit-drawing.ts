@@ -29,7 +29,9 @@ const BUS = 420;
 const GRID = 286;
 const PLATE = 204;
 const TOP = 84;
-const TUBE_X = 352;
+const TUBE_X = 374;
+/** Where the drawing begins from above. */
+const ABOVE = 22;
 const TEXT = 16;
 
 /** Draws one circuit; collects the box of each part whose cost is told. */
@@ -74,7 +76,7 @@ class Sheet {
         ? `<rect class="mark" x="${px(box[0])}" y="${px(box[1])}" width="${px(box[2])}" height="${px(box[3])}" rx="6"/>`
         : '';
     return (
-      `<svg class="circuit" viewBox="0 0 ${px(width)} ${HEIGHT}" role="group" aria-label="${escapeXml(title)}">` +
+      `<svg class="circuit" viewBox="0 ${ABOVE} ${px(width)} ${HEIGHT - ABOVE}" role="group" aria-label="${escapeXml(title)}">` +
       `${marked}<g class="lines">${this.parts.join('')}</g>${this.values.join('')}</svg>`
     );
   }
@@ -90,7 +92,11 @@ export function circuitDrawing(circuit: CircuitRecord, title: string, mark: Cost
   drawGrid(sheet, circuit);
   drawTube(sheet, circuit);
   const right = drawPlate(sheet, circuit);
-  sheet.add(wire([56, BUS], [right, BUS]), chassis([TUBE_X - 18, BUS]));
+  sheet.add(
+    wire([56, BUS], [right, BUS]),
+    wire([TUBE_X - 18, BUS], [TUBE_X - 18, BUS + 12]),
+    chassis([TUBE_X - 18, BUS + 12]),
+  );
   return sheet.svg(right + 96, title, mark);
 }
 
@@ -99,13 +105,13 @@ function drawTunedCircuit(sheet: Sheet, { tunedCircuit, station }: CircuitRecord
     aerial([56, GRID - 116]),
     wire([56, GRID - 116], [56, GRID]),
     coil([56, GRID], [56, BUS]),
-    wire([56, GRID], [196, GRID]),
-    capacitor([138, GRID], [138, BUS], true),
+    wire([56, GRID], [218, GRID]),
+    capacitor([160, GRID], [160, BUS], true),
     joint([56, GRID]),
-    joint([138, GRID]),
-    joint([138, BUS]),
+    joint([160, GRID]),
+    joint([160, BUS]),
   );
-  sheet.box('tunedCircuit', 34, GRID + 14, 134, BUS - GRID - 28);
+  sheet.box('tunedCircuit', 34, GRID + 14, 156, BUS - GRID - 28);
   if (station.carrierHertz > 0) sheet.value('station.carrier', [78, GRID - 140]);
   sheet.value('station.level', [78, GRID - 112]);
   sheet.value('station.modulation', [78, GRID - 84]);
@@ -124,8 +130,8 @@ function drawTunedCircuit(sheet: Sheet, { tunedCircuit, station }: CircuitRecord
 }
 
 function drawGrid(sheet: Sheet, { detector }: CircuitRecord): void {
-  const left = 196;
-  const grid = 292;
+  const left = 218;
+  const grid = 314;
   sheet.add(capacitor([left, GRID], [grid, GRID]), wire([grid, GRID], [TUBE_X - 40, GRID]));
   sheet.box('gridCapacitor', left + 20, GRID - 24, 56, 48);
   sheet.value('detector.grid capacitor', [(left + grid) / 2, GRID + 42], 'middle');

@@ -244,9 +244,10 @@ export class ListeningSection {
       this.said.textContent = 'A blind test is running: what is heard is chosen below.';
       return;
     }
-    const gain = `${selected.gainDecibels < 0 ? '−' : '+'}${Math.abs(selected.gainDecibels).toFixed(1)} dB`;
-    const level =
-      matching === 'loudness' || selected.kind === 'sent' ? `matched by ${gain}` : `true level, set ${gain}`;
+    const size = Math.abs(selected.gainDecibels).toFixed(1);
+    const gain = size === '0.0' ? '0.0 dB' : `${selected.gainDecibels < 0 ? '−' : '+'}${size} dB`;
+    const trueLevel = size === '0.0' ? 'true level' : `true level, the whole set by ${gain}`;
+    const level = matching === 'loudness' || selected.kind === 'sent' ? `loudness matched by ${gain}` : trueLevel;
     this.said.textContent = `Heard: ${selected.name}, ${level}${selected.whole ? '' : '; rendering'}.`;
   }
 

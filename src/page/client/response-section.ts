@@ -24,9 +24,10 @@ export class ResponseSection {
   private selected = 0;
   private readonly onMark: () => void;
   private readonly holder = element('div', { class: 'drawn' });
-  private readonly legend = element('ul', { class: 'legend' });
+  private readonly legend = element('ul', { class: 'legend', 'aria-label': 'Curves' });
+  private readonly costLegend = element('ul', { class: 'legend', 'aria-label': 'Cost of each part' });
   private readonly readout = element('output', { class: 'readout', id: 'readout', for: 'marked' });
-  private readonly tables = element('div', {});
+  private readonly tables = element('div', { class: 'side-by-side' });
   private readonly marked: HTMLInputElement;
   private readonly unit: HTMLSelectElement;
   private readonly fault = element('p', { class: 'fault', role: 'alert' });
@@ -68,8 +69,9 @@ export class ResponseSection {
         this.marked,
       ),
       this.readout,
-      this.holder,
       this.legend,
+      this.holder,
+      this.costLegend,
       this.tables,
       element(
         'div',
@@ -96,9 +98,9 @@ export class ResponseSection {
     this.draw();
     this.legend.replaceChildren(
       ...variants.map((variant, k) => legendItem(lineClass(k), `${k + 1}`, variant.name)),
-      ...COST_PARTS.map(({ name }, k) => legendItem(`cost-${k + 1}`, '', `cost of ${name}`)),
       ...(this.measured ? [legendItem('measured', '', `measured: ${this.measured.name}`)] : []),
     );
+    this.costLegend.replaceChildren(...COST_PARTS.map(({ name }, k) => legendItem(`cost-${k + 1}`, '', name)));
     this.tables.replaceChildren(
       table(
         'Response, dB re 400 Hz',
