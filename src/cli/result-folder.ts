@@ -15,7 +15,7 @@ export interface ResultFile {
 const STALE_MILLISECONDS = 3_600_000;
 const SETTING_UP = '.presolder-unfinished-';
 /** Files of every result beside its sounds. */
-const PAPER_FILES = ['result.json', 'response.csv', 'response.md', 'response.svg', 'listening.html'];
+const PAPER_FILES = ['result.json', 'response.csv', 'response.md', 'response.svg', 'sensitivity.svg', 'listening.html'];
 /** Files of a spread; the first says what they are. */
 const SPREAD_FILES = ['spread.json', 'spread.csv', 'spread.md', 'spread.svg'];
 /** What a file manager leaves in folders it has shown; nobody misses it. */

@@ -111,9 +111,9 @@ function validityText({ code, figure, limit }: Caution): string {
   switch (code) {
     case 'ripple':
       return (
-        `Carrier × leak × grid capacitor is ${figure.toFixed(1)}, below ${limit} (${MEASURED}): the carrier's ripple on the grid ` +
-        'is no longer small and the figures here can be off by a few tenths of a decibel. A larger leak or grid ' +
-        'capacitor mends it.'
+        `Carrier × resistance × capacitance of what the detector charges is ${figure.toFixed(1)}, below ${limit} (${MEASURED}): the ` +
+        "carrier's ripple there is no longer small and the figures here can be off by a few tenths of a decibel. A larger " +
+        'resistance (the leak) or capacitor mends it.'
       );
     case 'plate-harmonic':
       return (

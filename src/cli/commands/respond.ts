@@ -3,6 +3,7 @@ import { measuredRecord } from '../../results/measured-curve.ts';
 import { responseMarkdown } from '../../results/response-markdown.ts';
 import type { Result, VariantResult } from '../../results/result.ts';
 import { resultJson } from '../../results/result-json.ts';
+import { sensitivitySvg } from '../../results/sensitivity-plot.ts';
 import { variantResult } from '../../results/variant-result.ts';
 import { EXIT, type Io } from '../io.ts';
 import { variantsFrom } from '../list-input.ts';
@@ -11,7 +12,7 @@ import { ofVariant } from '../of-variant.ts';
 import { flag, metersOf, type RawOptions, text } from '../options.ts';
 import { Progress } from '../progress.ts';
 import { paperFiles } from '../result-files.ts';
-import { checkFolder, writeResults } from '../result-folder.ts';
+import { checkFolder, type ResultFile, writeResults } from '../result-folder.ts';
 import { summaryText } from '../summary.ts';
 
 /** Everything on paper, no clip. */
@@ -39,11 +40,17 @@ export async function respond(list: string | null, options: RawOptions, io: Io):
     variants: results,
   };
   await progress.pause();
-  const replaced = folder === null ? false : (await writeResults(folder, paperFiles(result))).replaced;
+  const replaced =
+    folder === null ? false : (await writeResults(folder, [...paperFiles(result), sensitivityFile(result)])).replaced;
   if (flag(options, 'json')) io.out(resultJson(result));
   else io.out(`${responseMarkdown(result)}\n${summaryText(result)}\n`);
   if (folder !== null && !flag(options, 'quiet')) {
     io.err(`${replaced ? 'Replaced the earlier results in' : 'Wrote tables and plot to'} ${folder}\n`);
   }
   return EXIT.done;
+}
+
+/** The plot on which detectors are compared: audio out and distortion against carrier level. */
+function sensitivityFile(result: Result): ResultFile {
+  return { name: 'sensitivity.svg', contents: sensitivitySvg(result) };
 }

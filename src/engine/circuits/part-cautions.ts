@@ -31,7 +31,8 @@ export function partCautions(rest: RestPoint, ratings: Ratings | null): Caution[
     const further = batteryAmpHours / supplyAmps;
     found.push({ code: 'battery-life', figure: supplyAmps, limit: batteryAmpHours, further });
   }
-  if (feedsGrid && Math.abs(coupledVolts) > STRAY_GRID_VOLTS) {
+  // volts are counted from the cathode, which is the chassis of a grid leak alone
+  if (feedsGrid && rest.circuit.detector.kind === 'grid leak' && Math.abs(coupledVolts) > STRAY_GRID_VOLTS) {
     found.push({ code: 'next-grid-volts', figure: coupledVolts, limit: STRAY_GRID_VOLTS });
   }
   return found;
