@@ -64,12 +64,15 @@ export function findPeriodicState(s: Stepper, plateGuessVolts: number): void {
       } catch {
         break;
       }
+      // A step is good when what would still be to go has shrunk. The change a cycle cannot tell that: after a long
+      // step along a slow part it is larger than before, though only fast parts are left.
+      const far = largest(move);
       let factor = 1;
       let better = false;
-      for (let halving = 0; halving < 8 && !better; halving++) {
+      for (let halving = 0; halving < 16 && !better; halving++) {
         for (let r = 0; r < size; r++) trial[r] = x[r]! - factor * move[r]! * scale[r]!;
         const now = residual(trial, moved);
-        if (now < error) {
+        if (Number.isFinite(now) && largest(solveDense(jacobian, moved, size)) < (1 - factor / 4) * far) {
           x.set(trial);
           image.set(moved);
           error = now;
@@ -90,4 +93,8 @@ export function findPeriodicState(s: Stepper, plateGuessVolts: number): void {
     presetSlowVolts(s, x[n]!);
   }
   throw new RangeError('the reference found no rest point');
+}
+
+function largest(values: Float64Array): number {
+  return values.reduce((most, value) => Math.max(most, Math.abs(value)), 0);
 }
