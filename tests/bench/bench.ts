@@ -15,6 +15,7 @@ import { listVariants } from '../../src/list/variants.ts';
 import { readWav } from '../../src/results/wav-read.ts';
 import { writeWav } from '../../src/results/wav-write.ts';
 import { medianSeconds } from './median.ts';
+import { againstOde } from './ode-yardstick.ts';
 
 // the bundle lies in out/
 const root = fileURLToPath(new URL('../', import.meta.url));
@@ -79,6 +80,45 @@ say(
   'encode 24 bits',
   `${(seconds / (await medianSeconds(5, () => void writeWav({ samples, sampleRateHertz: 48_000, format: '24', comment: '', ditherSeed: 1 })))).toFixed(0)} × real time`,
 );
+
+for (const load of ['choke large', 'transformer 1:3', 'phones 2k']) {
+  const rest = restPoint(circuitOf({ 'plate.load': load, 'detector.tube': '76', 'tuned circuit.loaded Q': '40' }));
+  const laws = new TableStore().lawsFor(rest, 1);
+  const took = await medianSeconds(3, () => {
+    renderClip(rest, laws, programme, clip.sampleRateHertz);
+  });
+  say(
+    `render, ${load}, stiff source, 60 mV`,
+    `${(seconds / took).toFixed(0)} × real time`,
+    `${((everyCycle * seconds) / took).toFixed(0)}`,
+  );
+}
+const stiffRest = restPoint(circuitOf({ 'tuned circuit.loaded Q': '40' }));
+{
+  const laws = new TableStore().lawsFor(stiffRest, 1);
+  const took = await medianSeconds(3, () => {
+    renderClip(stiffRest, laws, programme, clip.sampleRateHertz);
+  });
+  say(
+    'render, resistor, stiff source, 60 mV',
+    `${(seconds / took).toFixed(0)} × real time`,
+    `${((everyCycle * seconds) / took).toFixed(0)}`,
+  );
+  const ode = againstOde(stiffRest, 1e-4);
+  say(
+    'the same equations by a general-purpose ODE package, per second of programme',
+    `${ode.odeSeconds.toFixed(0)} s, ${(ode.odeSeconds / ode.rendererSeconds).toFixed(0)} × the renderer's`,
+    `error ${ode.odeDecibels.toFixed(4)} dB, renderer ${ode.rendererDecibels.toFixed(4)} dB`,
+  );
+}
+for (const length of [1, 10, 60]) {
+  const stretch = Float64Array.from({ length: length * 48_000 }, (_, n) => programme[n % programme.length] as number);
+  const laws = new TableStore().lawsFor(stiffRest, 1);
+  const took = await medianSeconds(3, () => {
+    renderClip(stiffRest, laws, stretch, 48_000);
+  });
+  say(`render ${length} s`, `${(length / took).toFixed(0)} × real time`);
+}
 
 const folder = mkdtempSync(join(tmpdir(), 'presolder-bench-'));
 const run = (...args: string[]) =>
