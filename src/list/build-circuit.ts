@@ -5,6 +5,7 @@ import { type Fault, InputError } from '../engine/errors.ts';
 import { singleLayerHenries } from '../engine/parts/wheeler.ts';
 import type { BandLimit, PreEmphasis } from '../engine/station/pre-emphasis.ts';
 import type { CathodeKind } from '../engine/tubes/fitting.ts';
+import { type ListedAir, listedAir } from './list-air.ts';
 import { biasedForCurrent, detectorOf, wantsRestCurrent } from './list-detector.ts';
 import { outputOf, plateLoadOf, windingRating } from './list-loads.ts';
 import { socketedTube } from './list-tube.ts';
@@ -21,6 +22,8 @@ export interface BuiltCircuit {
   readonly circuit: DetectorCircuit;
   readonly ratings: Ratings | null;
   readonly sending: Sending;
+  /** What is on the air besides, and how the station is keyed; null: its programme alone. */
+  readonly onTheAir: ListedAir | null;
   /** Name of a hearing curve, or of a file of the builder's own. */
   readonly heardThrough: string;
   /** What the parts themselves give cause for, before anything is computed. */
@@ -73,6 +76,7 @@ function asDrawn(list: CircuitList): BuiltCircuit {
       channelLimit: station['channel limit'] === '9 kHz' ? 'channel 9 kHz' : 'none',
       side: station.side,
     },
+    onTheAir: listedAir(list),
     heardThrough: list.output['heard through'],
     cautions,
   };

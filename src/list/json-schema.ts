@@ -6,13 +6,17 @@ import { circuitShape, partsList } from './schema.ts';
  * editor can complete and check one. Defaults are shown as they are written.
  */
 export function partsListSchema(): Record<string, unknown> {
-  const matching = circuitShape.output.unwrap().shape.matching.unwrap();
+  const air = circuitShape['on the air'].unwrap().shape;
+  const onOneLine: readonly z.core.$ZodType[] = [
+    circuitShape.output.unwrap().shape.matching.unwrap(),
+    ...[air['second station'], air.static, air['beat oscillator'], air.morse].map((section) => section.unwrap()),
+  ];
   const schema = z.toJSONSchema(partsList, {
     io: 'input',
     unrepresentable: 'any',
     override: ({ zodSchema, jsonSchema }) => {
-      // a load and a matching transformer may also stand on one line
-      if (zodSchema instanceof z.ZodDiscriminatedUnion || zodSchema === matching) {
+      // a load, a matching transformer and what is on the air may also stand on one line
+      if (zodSchema instanceof z.ZodDiscriminatedUnion || onOneLine.includes(zodSchema)) {
         const { oneOf, anyOf, ...rest } = jsonSchema;
         const mappings = oneOf ?? anyOf ?? [rest];
         for (const key of Object.keys(jsonSchema)) delete (jsonSchema as Record<string, unknown>)[key];

@@ -1,6 +1,7 @@
 import type { Fault } from '../engine/errors.ts';
 import { nearestName } from '../engine/parts/nearest-name.ts';
 import { splitTolerance } from '../engine/parts/tolerance.ts';
+import { AIR_LINES } from './air-lines.ts';
 import type { Written } from './fields.ts';
 import { type Tolerances, withoutTolerances } from './part-tolerances.ts';
 import { LOAD_EXPECTED, loadMapping, matchingMapping } from './plate-load.ts';
@@ -11,6 +12,7 @@ import type { Place } from './yaml-text.ts';
 
 /** Keys that may hold on one line what they hold as a mapping. */
 const ON_ONE_LINE: Readonly<Record<string, typeof loadMapping>> = {
+  ...Object.fromEntries(AIR_LINES),
   'plate.load': loadMapping,
   'output.matching': matchingMapping,
 };

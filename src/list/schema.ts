@@ -2,6 +2,7 @@ import * as z from 'zod';
 import { HEARING_NAMES } from '../engine/hearing/hearing-curves.ts';
 import { formatQuantity } from '../engine/parts/format-quantity.ts';
 import { SOCKET_STRAYS } from '../engine/tubes/socketed-tube.ts';
+import { onTheAir } from './air-section.ts';
 import { CAPACITY_EXPECTED, readBatteryCapacity } from './battery-capacity.ts';
 import { dottedFields } from './dotted-keys.ts';
 import { choiceOr, length, quantity, quantityOr, quantityOrNone, quantityOrNull, readField, words } from './fields.ts';
@@ -163,6 +164,7 @@ export const circuitShape = {
   plate: plate.prefault(EMPTY),
   output: output.prefault(EMPTY),
   strays: strays.prefault(EMPTY),
+  'on the air': onTheAir.prefault(EMPTY),
   tube: tubeSection.prefault(EMPTY),
   fault: readField(readPartFaults, PART_FAULT_EXPECTED, FAULT).prefault('none'),
 };
@@ -175,6 +177,10 @@ export const CHANGEABLE: ReadonlyMap<string, z.ZodType> = new Map<string, z.ZodT
   ...dottedFields(circuitShape),
   // a mapping that may also stand on one line, as a load may
   ['output.matching', output.shape.matching],
+  ['on the air.second station', onTheAir.shape['second station']],
+  ['on the air.static', onTheAir.shape.static],
+  ['on the air.beat oscillator', onTheAir.shape['beat oscillator']],
+  ['on the air.morse', onTheAir.shape.morse],
 ]);
 
 /** The whole parts list: the one definition that checking and the JSON Schema come from. */

@@ -12,6 +12,8 @@ export interface Setting {
   readonly key: string;
   readonly value: string;
   readonly where: string;
+  /** Whether commas belong to the value: a text to be sent makes one variant. */
+  readonly whole?: boolean;
 }
 
 /** One circuit of a run. */
@@ -107,7 +109,7 @@ interface FlagValues {
   readonly where: string;
 }
 
-function readSetting({ key: written, value, where }: Setting): FlagValues | { readonly fault: Fault } {
+function readSetting({ key: written, value, where, whole }: Setting): FlagValues | { readonly fault: Fault } {
   const plain = plainWords(written).toLowerCase();
   const known = [...CHANGEABLE.keys()];
   const key = known.find((one) => one.toLowerCase() === plain);
@@ -116,7 +118,7 @@ function readSetting({ key: written, value, where }: Setting): FlagValues | { re
     const hint = near === null ? {} : { hint: `nearest: ${near}` };
     return { fault: { code: 'unknown-key', where, got: written, expected: 'a key of the parts list', ...hint } };
   }
-  const values = value.split(',').map((one) => one.trim());
+  const values = (whole ? [value] : value.split(',')).map((one) => one.trim());
   if (values.some((one) => one === '')) {
     return {
       fault: { code: 'no-value', where, got: value || 'nothing', expected: 'a value, or values with commas between' },

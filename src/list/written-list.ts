@@ -1,6 +1,7 @@
 import { isMap, isScalar, isSeq, type Node, type ParsedNode } from 'yaml';
 import type * as z from 'zod';
 import { type Fault, InputError } from '../engine/errors.ts';
+import { AIR_LINES, airLineExample } from './air-lines.ts';
 import { mappingShape, nearestKey } from './dotted-keys.ts';
 import { CHANGEABLE, circuitShape, partsList } from './schema.ts';
 import { plainName, plainWords } from './words.ts';
@@ -166,6 +167,11 @@ class Reader {
         `its keys, indented below it: ${Object.keys(shape).join(', ')}`,
       );
       return;
+    }
+    // nothing of it would be heard
+    if (node.items.length === 0 && AIR_LINES.has(prefix)) {
+      const expected = `some of ${Object.keys(shape).join(', ')}, or one line such as ${airLineExample(prefix)}`;
+      this.fault('no-value', prefix, place, 'nothing in it', expected);
     }
     for (const [key, value, at] of this.pairs(node, Object.keys(shape), `${prefix}.`)) {
       const inner = mappingShape(shape[key] as z.core.$ZodType);

@@ -7,6 +7,7 @@ export type QuantityKind =
   | 'current'
   | 'power'
   | 'frequency'
+  | 'time'
   | 'fraction'
   | 'ratio'
   | 'number';
@@ -20,6 +21,7 @@ export const UNIT_SYMBOL: Readonly<Partial<Record<QuantityKind, string>>> = {
   current: 'A',
   power: 'W',
   frequency: 'Hz',
+  time: 's',
 };
 
 const PREFIX_OF_EXPONENT: Readonly<Record<number, string>> = {

@@ -64,6 +64,13 @@ const RULES: Readonly<Record<Exclude<QuantityKind, 'ratio'>, UnitRule>> = {
     units: 'Hz or c, with k, M',
     examples: '920 kHz, 1M2, 455kHz',
   },
+  time: {
+    unit: /(s|secs?|seconds?)?$/i,
+    prefixes: { ...MICRO_AND_BELOW },
+    noun: 'a time',
+    units: 's, with m, µ, n',
+    examples: '5 ms, 0.2 s',
+  },
   fraction: {
     unit: /(%|percent)?$/i,
     prefixes: { '': 0 },
