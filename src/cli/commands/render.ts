@@ -3,7 +3,7 @@ import { type Analysis, analyse } from '../../engine/circuits/analysis.ts';
 import type { Caution } from '../../engine/circuits/cautions.ts';
 import type { HearingCurve } from '../../engine/hearing/hearing-curves.ts';
 import { heardThrough } from '../../engine/hearing/hearing-filter.ts';
-import { type RenderedClip, renderClip } from '../../engine/renderer/render-clip.ts';
+import { type RenderedClip, renderClipInTurns } from '../../engine/renderer/render-clip.ts';
 import { TableStore } from '../../engine/renderer/table-store.ts';
 import { preEmphasise } from '../../engine/station/pre-emphasis.ts';
 import { type Programme, programmeFrom, toMono } from '../../engine/station/programme.ts';
@@ -58,9 +58,10 @@ export async function render(clipPath: string, list: string | null, options: Raw
     const total = programme.modulation.length;
     const heard = programme.modulation.every((value) => value === 0)
       ? stillClip(total)
-      : renderClip(analysis.rest, laws, programme.modulation, clip.sampleRateHertz, quality, (done) =>
-          progress.tell(`rendering ${variant.name}`, (k + done / Math.max(total, 1)) / variants.length),
-        );
+      : await renderClipInTurns(analysis.rest, laws, programme.modulation, clip.sampleRateHertz, quality, (done) => {
+          progress.tell(`rendering ${variant.name}`, (k + done / Math.max(total, 1)) / variants.length);
+          return progress.breathe();
+        });
     rendered.push(throughCurve(heard, variant.heard, clip.sampleRateHertz));
     await progress.breathe();
   }

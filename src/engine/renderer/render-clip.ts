@@ -31,6 +31,41 @@ export function renderClip(
   onBlock: (framesDone: number) => void = () => {},
   quadrature: Float64Array | null = null,
 ): RenderedClip {
+  const blocks = clipBlocks(rest, laws, modulation, clipRateHertz, quality, quadrature);
+  for (;;) {
+    const { done, value } = blocks.next();
+    if (done) return value;
+    onBlock(value);
+  }
+}
+
+/** The same, awaiting `onBlock` after each block, so that the caller can let other work and signals in. */
+export async function renderClipInTurns(
+  rest: RestPoint,
+  laws: StageLaws,
+  modulation: Float64Array,
+  clipRateHertz: number,
+  quality: Quality,
+  onBlock: (framesDone: number) => void | Promise<void>,
+  quadrature: Float64Array | null = null,
+): Promise<RenderedClip> {
+  const blocks = clipBlocks(rest, laws, modulation, clipRateHertz, quality, quadrature);
+  for (;;) {
+    const { done, value } = blocks.next();
+    if (done) return value;
+    await onBlock(value);
+  }
+}
+
+/** Renders block by block, giving the frames done. */
+function* clipBlocks(
+  rest: RestPoint,
+  laws: StageLaws,
+  modulation: Float64Array,
+  clipRateHertz: number,
+  quality: Quality,
+  quadrature: Float64Array | null,
+): Generator<number, RenderedClip> {
   const renderer = new DetectorRenderer(rest, laws, clipRateHertz, quality);
   const delay = renderer.delaySamples;
   const volts = new Float64Array(modulation.length);
@@ -52,7 +87,7 @@ export function renderClip(
       const size = Math.abs(value);
       if (size > peakVolts) peakVolts = size;
     }
-    onBlock(Math.min(from + frames, modulation.length));
+    yield Math.min(from + frames, modulation.length);
   }
   const { steps, passes, quick, unsettled } = renderer.counts;
   return {
