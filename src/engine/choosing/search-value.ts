@@ -1,4 +1,5 @@
 import { crossing, lastThatHolds, lowest } from './crossing.ts';
+import { bestOf, nearestByFigure, nearestOf } from './nearest-value.ts';
 
 /** Where a value is looked for, and among which a builder can pick. */
 export interface Scale {
@@ -77,7 +78,7 @@ export function* searchValue(scale: Scale, { errorAt, missAt }: Meeting): Genera
   exact.sort((a, b) => a - b);
   return {
     exact,
-    nearest: exact[0] ?? nearestOf(values, errors, errorAt),
+    nearest: exact[0] ?? nearestByFigure(values, nearestOf(values, errors, errorAt), misses, missAt, errorAt),
     misses: scale.members.map((member) => misses.get(member) ?? Number.POSITIVE_INFINITY),
     best: bestOf(scale.members, (member) => misses.get(member) ?? Number.POSITIVE_INFINITY),
   };
@@ -197,33 +198,4 @@ function bendAt(values: readonly number[], errors: readonly number[], k: number)
 
 function throughLogs(errorAt: (value: number) => number, a: number, b: number, atA: number, atB: number): number {
   return Math.exp(crossing((t) => errorAt(Math.exp(t)), Math.log(a), Math.log(b), atA, atB, AGREE));
-}
-
-/** The value of smallest error, looked at more closely between its neighbours. */
-function nearestOf(
-  values: readonly number[],
-  errors: readonly number[],
-  errorAt: (value: number) => number,
-): number | null {
-  let at = -1;
-  errors.forEach((error, k) => {
-    if (Number.isFinite(error) && !(Math.abs(error) >= Math.abs(errors[at] ?? Number.POSITIVE_INFINITY))) at = k;
-  });
-  const value = values[at];
-  if (value === undefined) return null;
-  const [below, above] = [values[at - 1] ?? 0, values[at + 1] ?? 0];
-  if (below === 0 || above === 0) return value;
-  const closer = lowest((t) => Math.abs(errorAt(Math.exp(t))), Math.log(below), Math.log(above), 1e-6);
-  return closer.value < Math.abs(errors[at] as number) ? Math.exp(closer.x) : value;
-}
-
-/** The member of smallest distance, the lower of two alike; null where all are infinitely far. */
-function bestOf(members: readonly number[], distance: (member: number) => number): number | null {
-  let best: number | null = null;
-  let least = Number.POSITIVE_INFINITY;
-  for (const member of members) {
-    const far = distance(member);
-    if (far < least) [least, best] = [far, member];
-  }
-  return best;
 }
