@@ -102,6 +102,11 @@ function signalText({ code, figure, limit, further = 0 }: Caution): string | nul
         `The transmitter's limiter held ${figure} samples at −100 % modulation, below which no carrier goes: set the ` +
         'modulation to 100 % or less to avoid it.'
       );
+    case 'unsettled':
+      return (
+        `At ${figure} moments of a clip of ${limit} samples the voltages did not settle: what is heard there is not to ` +
+        'be relied on. Bring level and parts nearer to usual ones, or render with --quality fine.'
+      );
     default:
       return null;
   }

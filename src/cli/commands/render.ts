@@ -3,19 +3,21 @@ import { type Analysis, analyse } from '../../engine/circuits/analysis.ts';
 import type { Caution } from '../../engine/circuits/cautions.ts';
 import type { HearingCurve } from '../../engine/hearing/hearing-curves.ts';
 import { heardThrough } from '../../engine/hearing/hearing-filter.ts';
-import { type RenderedClip, renderClipInTurns } from '../../engine/renderer/render-clip.ts';
+import type { RenderedClip } from '../../engine/renderer/render-clip.ts';
 import { TableStore } from '../../engine/renderer/table-store.ts';
-import { preEmphasise } from '../../engine/station/pre-emphasis.ts';
-import { type Programme, programmeFrom, toMono } from '../../engine/station/programme.ts';
+import type { Programme } from '../../engine/station/programme.ts';
+import type { OnTheAirRecord } from '../../results/air-record.ts';
 import { measuredRecord } from '../../results/measured-curve.ts';
 import type { Result } from '../../results/result.ts';
 import { resultJson } from '../../results/result-json.ts';
 import { safeFileNames } from '../../results/safe-names.ts';
 import { soundComment } from '../../results/sound-comment.ts';
 import { variantResult } from '../../results/variant-result.ts';
-import type { ReadSound } from '../../results/wav-read.ts';
 import { writeWav } from '../../results/wav-write.ts';
-import { readClip } from '../clip-read.ts';
+import { clipAndList, clipFor, otherClips } from '../air-input.ts';
+import { airSummary } from '../air-summary.ts';
+import { receivedClip } from '../received-clip.ts';
+import { type SentProgramme, sentProgramme, TEXT_RATE_HERTZ } from '../sent-programme.ts';
 import { EXIT, type Io } from '../io.ts';
 import { type RunVariant, variantsFrom } from '../list-input.ts';
 import { measuredFrom } from '../measured-input.ts';
@@ -29,53 +31,60 @@ import { levelSounds } from '../sound-set.ts';
 import { summaryText } from '../summary.ts';
 
 /** The main job: a clip through each variant. */
-export async function render(clipPath: string, list: string | null, options: RawOptions, io: Io): Promise<number> {
+export async function render(
+  first: string | null,
+  second: string | null,
+  options: RawOptions,
+  io: Io,
+): Promise<number> {
+  const { clipPath, list } = clipAndList(first, second);
   const quiet = flag(options, 'quiet');
   const match = choice(options, 'match', ['level', 'loudness'], 'level');
   const quality = choice(options, 'quality', ['normal', 'fine'], 'normal');
   const format = wavCoding(options);
   const variants = await variantsFrom(list, options);
-  const clip = await readClip(clipPath);
-  const inputs = list === null ? [clipPath] : [clipPath, list];
+  const clip = await clipFor(clipPath, variants);
+  const others = await otherClips(variants, list);
+  const rateHertz = clip?.sampleRateHertz ?? TEXT_RATE_HERTZ;
+  const inputs = [clipPath, list].filter((path) => path !== null);
   const measured = await measuredFrom(options);
-  const folder = text(options, 'out') ?? join('out', folderName(...inputs));
-  await checkFolder(folder, ...inputs, ...[text(options, 'measured')].filter((path) => path !== null));
-  for (const warning of clip.warnings) if (!quiet) io.err(`${clipPath}: ${warning}\n`);
+  const folder = text(options, 'out') ?? join('out', folderName(...(inputs.length > 0 ? inputs : ['morse'])));
+  const readBesides = [text(options, 'measured'), ...[...others.values()].map(({ path }) => path)];
+  await checkFolder(folder, ...inputs, ...readBesides.filter((path) => path !== null));
+  for (const warning of clip?.warnings ?? []) if (!quiet) io.err(`${clipPath}: ${warning}\n`);
 
   const progress = new Progress(io, quiet);
-  const programmes = new Map<string, Programme>();
+  const programmes = new Map<string, SentProgramme>();
   const tables = new TableStore();
   const analyses: Analysis[] = [];
   const rendered: RenderedClip[] = [];
+  const airs: (OnTheAirRecord | null)[] = [];
   let limitedSamples = 0;
   for (const [k, variant] of variants.entries()) {
-    const programme = programmeFor(variant, clip, programmes);
+    const programme = sentProgramme(variant, clip, programmes);
     limitedSamples = Math.max(limitedSamples, programme.limitedSamples);
     const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings));
-    analyses.push(withCautions(analysis, variant, programme));
     await progress.breathe();
-    const laws = tables.lawsFor(analysis.rest, largest(programme.modulation));
-    const total = programme.modulation.length;
-    const heard = programme.modulation.every((value) => value === 0)
-      ? stillClip(total)
-      : await renderClipInTurns(analysis.rest, laws, programme.modulation, clip.sampleRateHertz, quality, (done) => {
-          progress.tell(`rendering ${variant.name}`, (k + done / Math.max(total, 1)) / variants.length);
-          return progress.breathe();
-        });
-    rendered.push(throughCurve(heard, variant.heard, clip.sampleRateHertz));
+    const tell = (share: number): Promise<void> => {
+      progress.tell(`rendering ${variant.name}`, (k + share) / variants.length);
+      return progress.breathe();
+    };
+    const received = await receivedClip(analysis.rest, tables, { variant, programme, others, rateHertz, quality }, tell);
+    airs.push(received.onTheAir);
+    rendered.push(throughCurve(received.clip, variant.heard, rateHertz));
     await progress.breathe();
   }
   progress.clear();
 
-  const levels = levelSounds(rendered, clip.sampleRateHertz, match);
+  const levels = levelSounds(rendered, rateHertz, match);
   const stems = safeFileNames(variants.map((variant) => variant.name));
   const files: ResultFile[] = [];
   const result: Result = {
     format: 'presolder-result/1',
     clip: {
-      file: basename(clipPath),
-      seconds: clip.frames / clip.sampleRateHertz,
-      sampleRateHertz: clip.sampleRateHertz,
+      file: clipPath === null ? 'Morse text' : basename(clipPath),
+      seconds: Math.max(...rendered.map(({ volts }) => volts.length)) / rateHertz,
+      sampleRateHertz: rateHertz,
       limitedSamples,
     },
     fullScaleVolts: levels.fullScaleVolts,
@@ -87,7 +96,7 @@ export async function render(clipPath: string, list: string | null, options: Raw
       const comment = soundComment(variant.name, analysis.rest, levels.fullScaleVolts, sound.gainDecibels);
       const written = writeWav({
         samples: sound.samples,
-        sampleRateHertz: clip.sampleRateHertz,
+        sampleRateHertz: rateHertz,
         format,
         comment,
         ditherSeed: k + 1,
@@ -102,14 +111,16 @@ export async function render(clipPath: string, list: string | null, options: Raw
         },
         heard: variant.heard,
         measured,
+        onTheAir: airs[k] ?? null,
       });
     }),
   };
   await progress.pause();
-  const page = pageFiles(result, variants, clip, quality);
+  // the page sends the clip through the circuits itself, and knows no other station
+  const page = clip === null || airs.some((air) => air !== null) ? [] : pageFiles(result, variants, clip, quality);
   const { replaced } = await writeResults(folder, [...files, ...paperFiles(result), ...page]);
   if (flag(options, 'json')) io.out(resultJson(result));
-  else if (!quiet) io.out(`${summaryText(result)}\n`);
+  else if (!quiet) io.out(`${[summaryText(result), airSummary(result)].filter((part) => part !== '').join('\n')}\n`);
   if (!quiet) {
     io.err(
       `${replaced ? 'Replaced the earlier results in' : 'Wrote'} ${folder}: ${files.length} WAV files, tables, plot${page.length > 0 ? `, ${PAGE_FILE}` : ''}.\n`,
@@ -119,29 +130,17 @@ export async function render(clipPath: string, list: string | null, options: Raw
   return EXIT.done;
 }
 
-/** The clip as this variant's station sends it; variants with the same station share one. */
-function programmeFor(variant: RunVariant, clip: ReadSound, kept: Map<string, Programme>): Programme {
-  const { preEmphasis, channelLimit, side } = variant.sending;
-  const depth = variant.circuit.station.modulation;
-  const key = `${preEmphasis} ${channelLimit} ${side} ${depth}`;
-  const found = kept.get(key);
-  if (found) return found;
-  const mono = toMono(clip.channels, side);
-  const shaped = preEmphasise(mono, clip.sampleRateHertz, preEmphasis, channelLimit);
-  const made = programmeFrom(shaped, depth);
-  kept.set(key, made);
-  return made;
-}
-
-/** With what the parts themselves and the transmitter's limiter give cause for. */
-function withCautions(analysis: Analysis, variant: RunVariant, { limitedSamples }: Programme): Analysis {
+/** With what the parts themselves, the transmitter's limiter and the rendering give cause for. */
+function withCautions(
+  analysis: Analysis,
+  variant: RunVariant,
+  { limitedSamples }: Programme,
+  { unsettledSteps, volts }: RenderedClip,
+): Analysis {
   const limited: Caution[] = limitedSamples > 0 ? [{ code: 'limited', figure: limitedSamples, limit: 0 }] : [];
-  return { ...analysis, cautions: [...analysis.cautions, ...variant.cautions, ...limited] };
-}
-
-/** A carrier alone leaves the stage at rest. Rendered, its last digits would be brought up to full scale and heard. */
-function stillClip(frames: number): RenderedClip {
-  return { volts: new Float64Array(frames), peakVolts: 0, unsettledSteps: 0, passesPerStep: 0 };
+  const unsettled: Caution[] =
+    unsettledSteps > 0 ? [{ code: 'unsettled', figure: unsettledSteps, limit: volts.length }] : [];
+  return { ...analysis, cautions: [...analysis.cautions, ...variant.cautions, ...limited, ...unsettled] };
 }
 
 /** The rendered clip as it is heard; flat is the clip itself. */

@@ -39,7 +39,8 @@ export type CautionCode =
   | 'outside-rows'
   | 'bypass-inaudible'
   | 'textbook'
-  | 'limited';
+  | 'limited'
+  | 'unsettled';
 
 /** Something the builder should know: a code for the sentence, the figure that raised it and the limit it passed. */
 export interface Caution {
