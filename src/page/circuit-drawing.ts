@@ -15,7 +15,7 @@ import {
   triode,
   wire,
 } from './drawing-symbols.ts';
-import { partValues, valueIn, valueText } from './part-values.ts';
+import { partValues, valueText } from './part-values.ts';
 
 /** The part that costs most at the marked frequency. */
 export interface CostMark {
@@ -56,7 +56,8 @@ class Sheet {
     const text = valueText(this.circuit, part);
     const width = Math.max(34, textWidth(text, TEXT) + 10);
     const left = anchor === 'start' ? x - 5 : anchor === 'end' ? x - width + 5 : x - width / 2;
-    const now = valueIn(this.circuit, part) ?? 0;
+    // assistive software wants a plain number there; the text has the unit
+    const now = Number.parseFloat(text) || 0;
     this.values.push(
       `<g class="value" role="spinbutton" tabindex="0" data-key="${escapeXml(key)}" aria-label="${escapeXml(part.label)}" ` +
         `aria-valuenow="${now}" aria-valuetext="${escapeXml(text)}">` +

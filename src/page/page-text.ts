@@ -21,13 +21,14 @@ export interface PageParts extends PageScripts {
 export type Sha256 = (text: string) => string;
 
 /**
- * The policy of a page with these scripts. The engine and the player are started from the page's own text (blob:), and
- * the engine's loop is WebAssembly from its own text.
+ * The policy of a page with these scripts. The engine's worker is started from the page's own text (blob:), and so is the
+ * player, which browsers take for pages on disk only from an address that is the text itself (data:). The engine's loop is
+ * WebAssembly from its own text.
  */
 export function policyFor(scripts: PageScripts, sha256: Sha256): string {
   return [
     "default-src 'none'",
-    `script-src 'sha256-${sha256(scripts.client)}' blob: 'wasm-unsafe-eval'`,
+    `script-src 'sha256-${sha256(scripts.client)}' data: 'wasm-unsafe-eval'`,
     'worker-src blob:',
     `style-src 'sha256-${sha256(scripts.style)}'`,
     // the empty icon below, so that a published page asks its server for none

@@ -2,7 +2,7 @@ import { readQuantity } from '../../engine/parts/quantities.ts';
 import type { CircuitRecord, VariantResult } from '../../results/result.ts';
 import { circuitDrawing } from '../circuit-drawing.ts';
 import { costliest, rowAt } from '../in-words.ts';
-import { type PartValue, partValues, steppedText, valueIn, valueText } from '../part-values.ts';
+import { type PartValue, partValues, steppedText, valueText } from '../part-values.ts';
 import { type Bench, type Heard, MOST_VARIANTS } from './bench.ts';
 import { button, drawing, element, section } from './dom.ts';
 
@@ -148,7 +148,7 @@ export class DrawingSection {
           tabindex: '0',
           'data-key': part.key,
           'aria-label': part.label,
-          'aria-valuenow': `${valueIn(drawn, part) ?? 0}`,
+          'aria-valuenow': `${Number.parseFloat(text) || 0}`,
           'aria-valuetext': text,
         },
         text,

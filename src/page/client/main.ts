@@ -162,6 +162,9 @@ class Page {
 
   /** Brings everything up to date. */
   private refresh(): void {
+    this.listening.refresh();
+    // the drawing and the curves follow what is heard, and would tell what a trial hides
+    if (this.blind.isRunning) return;
     const variants = this.bench.variants.flatMap(({ result }) => (result ? [result] : []));
     const bench = this.bench.bench?.result;
     const shown = bench ? [...variants, bench] : variants;
@@ -171,7 +174,6 @@ class Page {
       this.words.replaceChildren(...inWords(shown).map((sentence) => element('p', { class: 'lead' }, sentence)));
       this.cautions.replaceChildren(...cautionsOf(shown).map((caution) => element('li', {}, caution)));
     }
-    this.listening.refresh();
     this.drawing.refresh(this.response.markedHertz);
     const selected = this.drawing.shown ? shown.indexOf(this.drawing.shown) : 0;
     this.response.refresh(shown, Math.max(0, selected));

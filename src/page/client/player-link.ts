@@ -45,9 +45,7 @@ export class PlayerLink {
 
   private async begin(): Promise<void> {
     const context = new AudioContext({ sampleRate: this.sampleRateHertz, latencyHint: 'interactive' });
-    const address = URL.createObjectURL(new Blob([this.programText], { type: 'text/javascript' }));
-    await context.audioWorklet.addModule(address);
-    URL.revokeObjectURL(address);
+    await context.audioWorklet.addModule(`data:text/javascript,${encodeURIComponent(this.programText)}`);
     this.node = new AudioWorkletNode(context, PLAYER, {
       numberOfInputs: 0,
       outputChannelCount: [1],
