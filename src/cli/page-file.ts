@@ -56,7 +56,7 @@ export function pageData(
       layers: variant.layers.slice(1),
       result: result.variants[k] as Result['variants'][number],
     })),
-    measured: null,
+    measured: result.measured ?? null,
     notes: '',
   };
 }

@@ -1,6 +1,6 @@
 import type { HearingCurve } from '../engine/hearing/hearing-curves.ts';
 import type { PlainKeys } from '../list/plain-layers.ts';
-import type { Result, VariantResult } from '../results/result.ts';
+import type { MeasuredRecord, Result, VariantResult } from '../results/result.ts';
 import type { CodedSamples } from './clip-coding.ts';
 
 /** The side of the clip that a station sends. */
@@ -10,12 +10,6 @@ export type Side = 'both' | 'left' | 'right';
 export interface PageVariant {
   readonly layers: readonly PlainKeys[];
   readonly result: VariantResult;
-}
-
-/** A curve that was measured on a real set, dB re 400 Hz. */
-export interface MeasuredCurve {
-  readonly name: string;
-  readonly points: readonly { readonly hertz: number; readonly decibels: number }[];
 }
 
 /** Everything that a page carries besides its program. */
@@ -38,14 +32,15 @@ export interface PageData {
   /** Hearing curves of the builder's own, by the name the list calls them. */
   readonly curves: readonly HearingCurve[];
   readonly variants: readonly PageVariant[];
-  readonly measured: MeasuredCurve | null;
+  /** A response measured on a real set; null when there is none. */
+  readonly measured: MeasuredRecord | null;
   /** The builder's own words. */
   readonly notes: string;
 }
 
 /** The result of the page's variants, as tables and files are made from it. */
-export function resultOf(data: Pick<PageData, 'clip' | 'fullScaleVolts' | 'variants'>): Result {
-  const { clip, fullScaleVolts, variants } = data;
+export function resultOf(data: Pick<PageData, 'clip' | 'fullScaleVolts' | 'measured' | 'variants'>): Result {
+  const { clip, fullScaleVolts, measured, variants } = data;
   return {
     format: 'presolder-result/1',
     clip: {
@@ -55,6 +50,7 @@ export function resultOf(data: Pick<PageData, 'clip' | 'fullScaleVolts' | 'varia
       limitedSamples: 0,
     },
     fullScaleVolts,
+    ...(measured ? { measured } : {}),
     variants: variants.map((variant) => variant.result),
   };
 }

@@ -1,9 +1,8 @@
 import { COST_PARTS } from '../results/cost-parts.ts';
 import { type Area, decibelRange } from '../results/plot-axes.ts';
-import type { VariantResult } from '../results/result.ts';
+import type { MeasuredRecord, VariantResult } from '../results/result.ts';
 import { escapeXml, px } from '../results/svg-text.ts';
 import { hertzOfShare, type LogPanel, logPanel, smoothPath } from './log-panel.ts';
-import type { MeasuredCurve } from './page-data.ts';
 
 /** What the response drawing shows. */
 export interface ResponseView {
@@ -12,7 +11,7 @@ export interface ResponseView {
   readonly selected: number;
   readonly unit: 'decibels' | 'volts';
   readonly markedHertz: number;
-  readonly measured: MeasuredCurve | null;
+  readonly measured: MeasuredRecord | null;
   /** Width of the drawing, px. */
   readonly width: number;
 }
@@ -150,7 +149,7 @@ function curve(points: readonly CurvePoint[], panel: LogPanel, name: string, str
   );
 }
 
-function dots({ points }: MeasuredCurve, panel: LogPanel): string {
+function dots({ points }: MeasuredRecord, panel: LogPanel): string {
   const { range, x, y } = panel;
   return points
     .filter(({ hertz, decibels }) => hertz >= 20 && hertz <= 20_000 && decibels >= range.low && decibels <= range.high)

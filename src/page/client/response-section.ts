@@ -1,9 +1,8 @@
 import { THIRD_OCTAVE_NOMINAL_HERTZ } from '../../engine/parts/third-octaves.ts';
 import { COST_PARTS } from '../../results/cost-parts.ts';
-import type { VariantResult } from '../../results/result.ts';
+import type { MeasuredRecord, VariantResult } from '../../results/result.ts';
 import { readTwoColumns } from '../../results/two-columns.ts';
 import { rowAt } from '../in-words.ts';
-import type { MeasuredCurve } from '../page-data.ts';
 import { hertzAt, lineClass, responseDrawing } from '../response-drawing.ts';
 import { drawing, element, section, table } from './dom.ts';
 import { faultTexts } from './fault-texts.ts';
@@ -19,7 +18,7 @@ const decibels = (value: number | undefined): string =>
 export class ResponseSection {
   readonly root: HTMLElement;
   markedHertz = 5000;
-  measured: MeasuredCurve | null;
+  measured: MeasuredRecord | null;
   private variants: readonly VariantResult[] = [];
   private selected = 0;
   private readonly onMark: () => void;
@@ -32,7 +31,7 @@ export class ResponseSection {
   private readonly unit: HTMLSelectElement;
   private readonly fault = element('p', { class: 'fault', role: 'alert' });
 
-  constructor(measured: MeasuredCurve | null, onMark: () => void) {
+  constructor(measured: MeasuredRecord | null, onMark: () => void) {
     this.measured = measured;
     this.onMark = onMark;
     this.marked = element('input', {
@@ -98,7 +97,7 @@ export class ResponseSection {
     this.draw();
     this.legend.replaceChildren(
       ...variants.map((variant, k) => legendItem(lineClass(k), `${k + 1}`, variant.name)),
-      ...(this.measured ? [legendItem('measured', '', `measured: ${this.measured.name}`)] : []),
+      ...(this.measured ? [legendItem('measured', '', `measured: ${this.measured.file}`)] : []),
     );
     this.costLegend.replaceChildren(...COST_PARTS.map(({ name }, k) => legendItem(`cost-${k + 1}`, '', name)));
     this.tables.replaceChildren(
@@ -157,7 +156,7 @@ export class ResponseSection {
       Math.abs(Math.log(point.hertz / 400)) < Math.abs(Math.log(best.hertz / 400)) ? point : best,
     ).decibels;
     this.measured = {
-      name: file.name,
+      file: file.name,
       points: all.map(({ hertz, decibels: own }) => ({ hertz, decibels: own - reference })),
     };
     this.tell([]);
