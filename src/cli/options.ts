@@ -25,6 +25,8 @@ export interface KeySetting {
   readonly key: string;
   readonly value: string;
   readonly where: string;
+  /** Whether commas belong to the value. */
+  readonly whole?: boolean;
 }
 
 /** Raw option values as the parser hands them over. */
@@ -50,6 +52,10 @@ export function keySettings(options: RawOptions): KeySetting[] {
     const value = options[flag.replace(/-(\w)/g, (_, letter: string) => letter.toUpperCase())];
     if (typeof value === 'string') settings.push({ key, value, where: `--${flag}` });
   }
+  const sent = text(options, 'morse');
+  if (sent !== null) settings.push({ key: 'on the air.morse', value: sent, where: '--morse', whole: true });
+  const speed = text(options, 'speed');
+  if (speed !== null) settings.push({ key: 'on the air.morse.speed', value: speed, where: '--speed' });
   const sets = Array.isArray(options.set) ? options.set : [];
   for (const text of sets.map(String)) {
     const at = text.indexOf('=');

@@ -69,13 +69,16 @@ Examples:
 
   addPartFlags(program.command('render'))
     .description('The main job: a clip through each variant, as WAV files with tables and a plot.')
-    .argument('<clip>', 'programme: WAV, or FLAC, MP3, Ogg')
+    .argument('[clip]', 'programme: WAV, or FLAC, MP3, Ogg; none for a text in Morse')
     .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
     .option('--measured <FILE>', 'a measured response, Hz and dB or volts, laid over plot and tables')
     .option('--out <DIR>', 'folder for the results; left out: a folder under out/')
+    .option('--morse <TEXT>', 'sends this in Morse, in place of a clip')
+    .option('--speed <WPM>', 'its speed in words a minute; a comma list makes variants')
     .option('--match <HOW>', 'level keeps the true differences, loudness makes all equally loud', 'level')
     .option('--wav <BITS>', '16, 24 or 32f (float)', '24')
     .option('--quality <Q>', 'normal, or fine (twice the solutions a second)', 'normal')
+    .option('--open', 'open the listening page when it is written')
     .option('--json', 'print the result file, nothing else')
     .option('--quiet', 'no progress, no summary')
     .addHelpText(
@@ -84,10 +87,11 @@ Examples:
 Examples:
   presolder render speech.wav my-set.yaml
   presolder render speech.wav my-set.yaml --bypass 47p,100p,250p --match loudness
-  presolder render speech.wav --tube 12AX7,76 --leak 1M,2M2 --out out/tubes`,
+  presolder render speech.wav --tube 12AX7,76 --leak 1M,2M2 --out out/tubes
+  presolder render my-set.yaml --morse 'CQ CQ' --speed 13 --set 'on the air.beat oscillator=800 Hz'`,
     )
-    .action((clip: string, list: string | undefined, options: Record<string, unknown>) =>
-      finish(import('./commands/render.ts').then((module) => module.render(clip, list ?? null, options, io))),
+    .action((clip: string | undefined, list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/render.ts').then((module) => module.render(clip ?? null, list ?? null, options, io))),
     );
 
   addMeterFlag(addPartFlags(program.command('respond')))
@@ -175,6 +179,21 @@ Examples:
     )
     .action((part: string, list: string | undefined, options: Record<string, unknown>) =>
       finish(import('./commands/choose.ts').then((module) => module.choose(part, list ?? null, options, io))),
+    );
+
+  addPartFlags(program.command('listen'))
+    .description('Plays the clip in a loop through the engine, live: keys switch variants and step parts.')
+    .argument('<clip>', 'programme: WAV, or FLAC, MP3, Ogg')
+    .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')
+    .addHelpText(
+      'after',
+      `
+Keys: 1-9 variant, left/right part, up/down its value, space pause, l level or loudness, w write WAV and list, q leave.
+Example:
+  presolder listen speech.wav my-set.yaml --bypass 47p,100p,1n`,
+    )
+    .action((clip: string, list: string | undefined, options: Record<string, unknown>) =>
+      finish(import('./commands/listen.ts').then((module) => module.listen(clip, list ?? null, options, io))),
     );
 
   program

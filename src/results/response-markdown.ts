@@ -1,4 +1,5 @@
 import { formatQuantity, type QuantityKind } from '../engine/parts/format-quantity.ts';
+import { AIR_NOTE, airRows } from './air-table.ts';
 import { gatherCautions, gatheredText } from './caution-list.ts';
 import { COST_PARTS } from './cost-parts.ts';
 import { measuredAt } from './measured-curve.ts';
@@ -58,6 +59,7 @@ export function responseMarkdown(result: Result): string {
     section('Rest point', 'Carrier on, not modulated.', 'quantity', restRows(variants)),
     section('Socket voltages', SOCKET_NOTE, 'electrode', socketTable(variants)),
     section('Distortion', 'Percent of the fundamental.', 'signal', distortionRows(variants)),
+    airSection(variants),
     section('Sensitivity', '400 Hz at 30 % modulation.', 'carrier', sensitivityRows(variants)),
     cautionList(variants),
   ]
@@ -115,6 +117,14 @@ function heardSection(all: readonly VariantResult[]): string {
   ]);
   const heads = ['Hz', ...curves.map((variant) => markdownText(variant.heardThrough?.name ?? ''))];
   return `### Heard through\n\ndB re 400 Hz, to be added to the response: the clips go through it, the tables do not.\n\n${table(heads, rows)}\n`;
+}
+
+/** What is on the air, for the variants that have something there. */
+function airSection(all: readonly VariantResult[]): string {
+  const rows = airRows(all).map(([name, ...cells]) => [name as string, ...cells.map(markdownText)]);
+  if (rows.length === 0) return '';
+  const heads = ['at the output, rms', ...all.map((variant) => markdownText(variant.name))];
+  return `### On the air\n\n${AIR_NOTE}\n\n${table(heads, rows)}\n`;
 }
 
 function cornerRows(variants: readonly VariantResult[]): Row[] {

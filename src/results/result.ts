@@ -1,6 +1,7 @@
 import type { Output, Plate } from '../engine/circuits/circuit.ts';
 import type { SocketRow } from '../engine/circuits/meter-readings.ts';
 import type { TubeLaw } from '../engine/tubes/tube.ts';
+import type { OnTheAirRecord } from './air-record.ts';
 
 /** The result file's shape. Keys carry their units; numbers are base SI units unless the key says otherwise. */
 export interface Result {
@@ -41,6 +42,8 @@ export interface VariantResult {
   readonly distortion: readonly DistortionRow[];
   readonly sensitivity: readonly SensitivityRow[];
   readonly sound?: SoundRecord;
+  /** What is on the air besides the wanted station, and how well it is heard; absent where there is nothing. */
+  readonly onTheAir?: OnTheAirRecord;
   /** What it is heard through; absent when that is flat. The sound goes through it, the response does not. */
   readonly heardThrough?: { readonly name: string; readonly source: string };
   /** How far the response is from the measured one, rms over its readings; absent when none was given. */

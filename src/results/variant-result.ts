@@ -2,6 +2,7 @@ import type { Analysis } from '../engine/circuits/analysis.ts';
 import type { DetectorCircuit } from '../engine/circuits/circuit.ts';
 import type { RestPoint } from '../engine/circuits/rest-point.ts';
 import { curveDecibels, type HearingCurve } from '../engine/hearing/hearing-curves.ts';
+import type { OnTheAirRecord } from './air-record.ts';
 import { cautionText } from './caution-text.ts';
 import { type MeasuredCurve, rmsDifference } from './measured-curve.ts';
 import type { CircuitRecord, SoundRecord, VariantResult } from './result.ts';
@@ -61,9 +62,14 @@ export function variantResult(
   name: string,
   changes: Readonly<Record<string, string>>,
   analysis: Analysis,
-  more: { readonly sound?: SoundRecord; readonly heard?: HearingCurve; readonly measured?: MeasuredCurve | null } = {},
+  more: {
+    readonly sound?: SoundRecord;
+    readonly heard?: HearingCurve;
+    readonly measured?: MeasuredCurve | null;
+    readonly onTheAir?: OnTheAirRecord | null;
+  } = {},
 ): VariantResult {
-  const { sound, heard, measured } = more;
+  const { sound, heard, measured, onTheAir } = more;
   const curve = heard && heard.name !== 'flat' ? heard : null;
   const level = curve ? curveDecibels(curve, 400) : 0;
   return {
@@ -80,6 +86,7 @@ export function variantResult(
     distortion: analysis.distortion,
     sensitivity: analysis.sensitivity,
     ...(sound ? { sound } : {}),
+    ...(onTheAir ? { onTheAir } : {}),
     ...(curve ? { heardThrough: { name: curve.name, source: curve.source } } : {}),
     ...(measured ? { measured: { rmsDifferenceDecibels: rmsDifference(analysis.rest, measured) } } : {}),
     cautions: analysis.cautions.map(cautionText),

@@ -190,7 +190,7 @@ describe('flags', () => {
   it('no command of that name, no clip', async () => {
     await refused(['rendr', clip], 'rendr', 'Did you mean render?');
     await refused(['--colour'], '--colour');
-    await refused(['render'], "'clip'");
+    await refused(['render'], 'no clip');
     await refused(['render', clip, '--bypass'], '--bypass', 'argument missing');
   });
 });

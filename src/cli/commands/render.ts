@@ -16,17 +16,18 @@ import { variantResult } from '../../results/variant-result.ts';
 import { writeWav } from '../../results/wav-write.ts';
 import { clipAndList, clipFor, otherClips } from '../air-input.ts';
 import { airSummary } from '../air-summary.ts';
-import { receivedClip } from '../received-clip.ts';
-import { type SentProgramme, sentProgramme, TEXT_RATE_HERTZ } from '../sent-programme.ts';
 import { EXIT, type Io } from '../io.ts';
 import { type RunVariant, variantsFrom } from '../list-input.ts';
 import { measuredFrom } from '../measured-input.ts';
 import { ofVariant } from '../of-variant.ts';
+import { openPage } from '../open-page.ts';
 import { choice, flag, type RawOptions, text, wavCoding } from '../options.ts';
 import { PAGE_FILE, pageFiles } from '../page-file.ts';
 import { Progress } from '../progress.ts';
+import { receivedClip } from '../received-clip.ts';
 import { paperFiles } from '../result-files.ts';
 import { checkFolder, folderName, type ResultFile, writeResults } from '../result-folder.ts';
+import { type SentProgramme, sentProgramme, TEXT_RATE_HERTZ } from '../sent-programme.ts';
 import { levelSounds } from '../sound-set.ts';
 import { summaryText } from '../summary.ts';
 
@@ -69,7 +70,13 @@ export async function render(
       progress.tell(`rendering ${variant.name}`, (k + share) / variants.length);
       return progress.breathe();
     };
-    const received = await receivedClip(analysis.rest, tables, { variant, programme, others, rateHertz, quality }, tell);
+    const received = await receivedClip(
+      analysis.rest,
+      tables,
+      { variant, programme, others, rateHertz, quality },
+      tell,
+    );
+    analyses.push(withCautions(analysis, variant, programme, received.clip));
     airs.push(received.onTheAir);
     rendered.push(throughCurve(received.clip, variant.heard, rateHertz));
     await progress.breathe();
@@ -126,6 +133,10 @@ export async function render(
       `${replaced ? 'Replaced the earlier results in' : 'Wrote'} ${folder}: ${files.length} WAV files, tables, plot${page.length > 0 ? `, ${PAGE_FILE}` : ''}.\n`,
     );
     io.err('Turn the volume down before the first play: full scale is loud, and hearing does not grow back.\n');
+  }
+  if (flag(options, 'open')) {
+    const failed = page.length === 0 ? 'this run has no listening page' : await openPage(join(folder, PAGE_FILE));
+    if (failed !== null && !quiet) io.err(`Not opened: ${failed}.\n`);
   }
   return EXIT.done;
 }

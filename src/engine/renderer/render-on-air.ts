@@ -3,7 +3,7 @@ import { largestExcess } from '../station/envelope.ts';
 import { airEnvelope, airRateFactor, disturbed, type OnTheAir, type OtherClip } from '../station/on-the-air.ts';
 import { resampled } from '../station/resampled.ts';
 import type { Quality } from './detector-renderer.ts';
-import { type RenderedClip, renderClip } from './render-clip.ts';
+import { type RenderedClip, renderClipInTurns } from './render-clip.ts';
 import type { TableStore } from './table-store.ts';
 
 /** A clip received with all that is on the air. */
@@ -35,14 +35,14 @@ export interface AirRequest {
  * Renders a clip with what is on the air besides, and once more without where there is something to disturb it, so that
  * the two can be told apart. A steady voltage of the output is taken off: it cannot be heard.
  *
- * @param onShare  told how much is done, 0 to 1; may throw to stop
+ * @param onShare  told how much is done, 0 to 1, and awaited; may throw to stop
  */
-export function renderOnAir(
+export async function renderOnAir(
   rest: RestPoint,
   tables: TableStore,
   request: AirRequest,
-  onShare: (share: number) => void = () => {},
-): AirRender {
+  onShare: (share: number) => void | Promise<void> = () => {},
+): Promise<AirRender> {
   const { air, otherClip, modulation, before, clipRateHertz, quality } = request;
   const factor = airRateFactor(air, clipRateHertz);
   const rateHertz = factor * clipRateHertz;
@@ -50,18 +50,27 @@ export function renderOnAir(
   const wanted = new Float64Array(lead + modulation.length + TAIL_FRAMES).fill(before);
   wanted.set(modulation, lead);
   const raised = factor === 1 ? wanted : resampled(wanted, clipRateHertz, rateHertz);
-  const runs = disturbed(air) ? [true, false] : [true];
-  const [all, alone] = runs.map((others, k) => {
+  const runs = disturbed(air) ? 2 : 1;
+  const received = async (run: number): Promise<RenderedClip> => {
     const { levelVoltsRms } = rest.circuit.station;
-    const envelope = airEnvelope(raised, air, others, otherClip, levelVoltsRms, rateHertz);
+    const envelope = airEnvelope(raised, air, run === 0, otherClip, levelVoltsRms, rateHertz);
     const laws = tables.lawsFor(rest, BETWEEN_SAMPLES * (1 + largestExcess(envelope)) - 1);
-    const tell = (done: number): void => onShare((k + done / raised.length) / runs.length);
-    const whole = renderClip(rest, laws, envelope.modulation, rateHertz, quality, tell, envelope.quadrature);
-    const volts = factor === 1 ? whole.volts : resampled(whole.volts, rateHertz, clipRateHertz);
-    return { ...whole, volts: withoutMean(volts.slice(lead, lead + modulation.length)) };
-  });
-  const clip = all as RenderedClip;
-  return { clip: { ...clip, peakVolts: largestSize(clip.volts) }, aloneVolts: alone?.volts ?? null };
+    const tell = (done: number): void | Promise<void> => onShare((run + done / raised.length) / runs);
+    const whole = await renderClipInTurns(
+      rest,
+      laws,
+      envelope.modulation,
+      rateHertz,
+      quality,
+      tell,
+      envelope.quadrature,
+    );
+    const atClip = factor === 1 ? whole.volts : resampled(whole.volts, rateHertz, clipRateHertz);
+    const volts = withoutMean(atClip.slice(lead, lead + modulation.length));
+    return { ...whole, volts, peakVolts: largestSize(volts) };
+  };
+  const clip = await received(0);
+  return { clip, aloneVolts: runs === 2 ? (await received(1)).volts : null };
 }
 
 function withoutMean(volts: Float64Array): Float64Array {

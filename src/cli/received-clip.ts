@@ -1,0 +1,55 @@
+import type { RestPoint } from '../engine/circuits/rest-point.ts';
+import type { Quality } from '../engine/renderer/detector-renderer.ts';
+import { type RenderedClip, renderClipInTurns } from '../engine/renderer/render-clip.ts';
+import { renderOnAir } from '../engine/renderer/render-on-air.ts';
+import type { TableStore } from '../engine/renderer/table-store.ts';
+import type { OnTheAirRecord } from '../results/air-record.ts';
+import type { OtherClips } from './air-input.ts';
+import { airRecord } from './air-record.ts';
+import type { RunVariant } from './list-input.ts';
+import type { SentProgramme } from './sent-programme.ts';
+
+export interface ToReceive {
+  readonly variant: RunVariant;
+  readonly programme: SentProgramme;
+  readonly others: OtherClips;
+  readonly rateHertz: number;
+  readonly quality: Quality;
+}
+
+/** A clip as it comes out of a variant's detector, with what is on the air besides. */
+export interface ReceivedClip {
+  readonly clip: RenderedClip;
+  readonly onTheAir: OnTheAirRecord | null;
+}
+
+/** @param tell  told the share done, 0 to 1, and awaited */
+export async function receivedClip(
+  rest: RestPoint,
+  tables: TableStore,
+  { variant, programme, others, rateHertz, quality }: ToReceive,
+  tell: (share: number) => Promise<void>,
+): Promise<ReceivedClip> {
+  const { modulation, before } = programme;
+  const listed = variant.onTheAir;
+  if (listed === null) {
+    if (modulation.every((value) => value === 0)) return { clip: stillClip(modulation.length), onTheAir: null };
+    const laws = tables.lawsFor(
+      rest,
+      modulation.reduce((most, value) => Math.max(most, value), 0),
+    );
+    const clip = await renderClipInTurns(rest, laws, modulation, rateHertz, quality, (done) =>
+      tell(done / modulation.length),
+    );
+    return { clip, onTheAir: null };
+  }
+  const otherClip = others.get(listed.otherClip ?? '') ?? null;
+  const request = { air: listed.air, otherClip, modulation, before, clipRateHertz: rateHertz, quality };
+  const received = await renderOnAir(rest, tables, request, tell);
+  return { clip: received.clip, onTheAir: airRecord(listed, received, rateHertz) };
+}
+
+/** A carrier alone leaves the stage at rest. Rendered, its last digits would be brought up to full scale and heard. */
+function stillClip(frames: number): RenderedClip {
+  return { volts: new Float64Array(frames), peakVolts: 0, unsettledSteps: 0, passesPerStep: 0 };
+}
