@@ -4,7 +4,7 @@ import { InputError } from '../engine/errors.ts';
 import { isCode, writeFault } from './write-faults.ts';
 
 /** Writes one new file whole; refuses to replace one. */
-export async function writeNewFile(path: string, contents: string): Promise<void> {
+export async function writeNewFile(path: string, contents: string | Uint8Array): Promise<void> {
   const place = resolve(path);
   try {
     const file = await open(place, 'wx');
