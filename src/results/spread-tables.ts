@@ -65,11 +65,13 @@ export function spreadMethod(result: SpreadResult): string {
     (result.parts === 'old'
       ? 'capacitors ±10 % (mica), resistors -10/+30 % (carbon, drifted)'
       : 'capacitors and resistors ±5 % (film)') +
-    ", the tube's current and slope ±25 % together, its grid current ×/÷ 3, all else as written. The dial is set again " +
+    ", a tube's current and slope ±25 % together, its grid current ×/÷ 3, all else as written. The dial is set again " +
     'for every circuit as for the nominal one. Shares of the variance, in decibels, are those each part carries by ' +
     'itself, by a fit of lines and parabolas to the random circuits; what is left acts together.'
   );
 }
+
+const hasPlate = ({ plateVolts }: SpreadVariant): boolean => plateVolts.nominal !== 0;
 
 function partsTable(result: SpreadResult, variant: SpreadVariant): SpreadTable {
   const sorted = [...variant.parts].sort((a, b) => (b.share.fiveKilohertz ?? 0) - (a.share.fiveKilohertz ?? 0));
@@ -112,7 +114,7 @@ function figuresTable(variant: SpreadVariant): SpreadTable {
       row('low corner, -3 dB', variant.lowCornerHertz, quantity('frequency'), 'below 1 Hz'),
       row('high corner, -3 dB', variant.highCornerHertz, quantity('frequency'), 'above 16 kHz'),
       row('second harmonic', variant.secondPercent, second),
-      row('plate at rest', variant.plateVolts, quantity('voltage')),
+      ...(hasPlate(variant) ? [row('plate at rest', variant.plateVolts, quantity('voltage'))] : []),
       row('loaded Q', variant.loadedQ, quantity('number')),
     ],
   };
@@ -162,7 +164,7 @@ function cornersTable(variant: SpreadVariant): SpreadTable {
           `${change(figures.levelDecibels)}`,
           hertz(figures.highCornerHertz, 'above 16 kHz'),
           second(figures.secondPercent),
-          formatQuantity(figures.plateVolts, 'voltage', 3),
+          hasPlate(variant) ? formatQuantity(figures.plateVolts, 'voltage', 3) : '-',
         ],
   );
   return {

@@ -2,8 +2,9 @@ import { describe, expect, it } from 'vitest';
 import type { DetectorCircuit } from '../../src/engine/circuits/circuit.ts';
 import { InputError } from '../../src/engine/errors.ts';
 import { splitTolerance, toleranceText } from '../../src/engine/parts/tolerance.ts';
+import { nominalValue, withFactors } from '../../src/engine/spread/off-nominal.ts';
 import { tolerancedParts } from '../../src/engine/spread/part-tolerances.ts';
-import { nominalValue, VARIED_PARTS, withFactors } from '../../src/engine/spread/varied-parts.ts';
+import { VARIED_PARTS } from '../../src/engine/spread/varied-parts.ts';
 import { triodePoint } from '../../src/engine/tubes/laws.ts';
 import { CHANGEABLE } from '../../src/list/schema.ts';
 import { statedTolerances } from '../../src/list/stated-tolerances.ts';
@@ -185,6 +186,31 @@ describe('the parts that vary', () => {
       '80p',
       '100p',
     ],
+    ['detector.cathode resistor', 'detector: { kind: plate bend, cathode resistor: # }', '8k', '10k'],
+    [
+      'detector.cathode capacitor',
+      'detector: { kind: infinite impedance, cathode resistor: 47k, cathode capacitor: # }',
+      '200p',
+      '250p',
+    ],
+    ['detector.perveance', 'detector: { kind: diode, perveance: # }', '4e-4', '5e-4'],
+    [
+      'detector.saturation current',
+      'detector: { kind: crystal, diode: germanium, saturation current: # }',
+      '0.4u',
+      '0.5u',
+    ],
+    ['detector.series resistance', 'detector: { kind: crystal, diode: germanium, series resistance: # }', '200', '250'],
+    ['detector.diode capacitance', 'detector: { kind: diode, diode capacitance: # }', '4p', '5p'],
+    ['detector.diode load', 'detector: { kind: diode, diode load: # }', '400k', '500k'],
+    ['detector.diode bypass', 'detector: { kind: diode, diode bypass: # }', '100p', '125p'],
+    ['detector.filter resistor', 'detector: { kind: diode, filter resistor: # }', '40k', '50k'],
+    [
+      'detector.filter capacitor',
+      'detector: { kind: diode, filter resistor: 40k, filter capacitor: # }',
+      '100p',
+      '125p',
+    ],
   ])('%s off its value is the list with that value', (key, list, value, scaled) => {
     const part = VARIED_PARTS.find((one) => one.key === key)!;
     const circuit = circuitOf(list.replace('#', value));
@@ -196,7 +222,7 @@ describe('the parts that vary', () => {
 
   it('every part but the tube is held so', () => {
     // the list above has one line a part: a new part needs its line
-    expect(VARIED_PARTS.length).toBe(30);
+    expect(VARIED_PARTS.length).toBe(40);
   });
 
   it("a tube's current and slope go together, at any point of its curves", () => {
@@ -213,6 +239,25 @@ describe('the parts that vary', () => {
       expect(b.plateAmps / a.plateAmps).toBeCloseTo(1.25, 4);
       expect(b.siemens / a.siemens).toBeCloseTo(1.25, 4);
     }
+  });
+
+  it('are those that a detector uses, none of another', () => {
+    const varying = (text: string): string[] => tolerancedParts(circuitOf(text), {}, 'old').map((part) => part.name);
+    const tube = ['tube, current and slope', 'grid current at 0 V'];
+    const fed = ['coupling', 'resistance it feeds'];
+    expect(varying('detector: { kind: plate bend, cathode resistor: 10k }')).toEqual(
+      ['bypass', 'load, resistance', ...fed, ...tube].concat(['cathode resistor', 'cathode capacitor']),
+    );
+    expect(varying('detector: { kind: infinite impedance }')).toEqual(
+      ['bypass', ...fed, ...tube].concat(['cathode resistor', 'cathode capacitor']),
+    );
+    expect(varying('detector: { kind: infinite impedance }\nplate: { dropping resistor: 10k }')).not.toContain(
+      'bypass',
+    );
+    expect(varying('detector: { kind: diode }')).toEqual([...fed, 'diode, perveance', 'diode load', 'diode bypass']);
+    expect(varying('detector: { kind: crystal, diode: germanium, filter resistor: 47k }')).toEqual(
+      [...fed, 'diode load', 'diode bypass'].concat(['filter resistor', 'filter capacitor']),
+    );
   });
 
   it('the kind of part gives the tolerance where the list states none', () => {

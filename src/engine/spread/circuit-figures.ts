@@ -6,7 +6,8 @@ import { restPoint } from '../circuits/rest-point.ts';
 import { SURVEYED, steadyTone } from '../circuits/steady-state.ts';
 import { InputError } from '../errors.ts';
 import { THIRD_OCTAVE_NOMINAL_HERTZ } from '../parts/third-octaves.ts';
-import { type VariedPart, withFactors } from './varied-parts.ts';
+import { withFactors } from './off-nominal.ts';
+import type { VariedPart } from './varied-parts.ts';
 
 /** Modulation at which the second harmonic is quoted. */
 export const HARMONIC_MODULATION = 0.8;
@@ -20,6 +21,7 @@ export interface CircuitFigures {
   /** Half-power corners re 400 Hz; null: not reached between 1 Hz and 16 kHz. */
   readonly lowCornerHertz: number | null;
   readonly highCornerHertz: number | null;
+  /** 0 for a diode or crystal, which has none. */
   readonly plateVolts: number;
   readonly loadedQ: number;
   /** Of 400 Hz at 80 % modulation. */
@@ -48,7 +50,7 @@ export function circuitFigures(circuit: DetectorCircuit): CircuitFigures {
     levelVoltsRms: (reference * TEST_MODULATION) / Math.SQRT2,
     lowCornerHertz: lowHertz,
     highCornerHertz: highHertz,
-    plateVolts: rest.plateVolts,
+    plateVolts: circuit.detector.diode ? 0 : rest.plateVolts,
     loadedQ: rest.tuned.loadedQ,
     secondPercent: harmonicPercent(steadyTone(rest, REFERENCE_HERTZ, HARMONIC_MODULATION, SURVEYED), 2),
   };

@@ -1,6 +1,7 @@
 import type { DetectorCircuit } from '../circuits/circuit.ts';
 import { EXACT, type Tolerance, withinFactor, withinFractions } from '../parts/tolerance.ts';
-import { nominalValue, type PartFamily, VARIED_PARTS, type VariedPart } from './varied-parts.ts';
+import { nominalValue } from './off-nominal.ts';
+import { type PartFamily, VARIED_PARTS, type VariedPart } from './varied-parts.ts';
 
 /** What the set is built of where the list does not say. */
 export type PartsAge = 'old' | 'new';

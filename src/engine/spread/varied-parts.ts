@@ -1,4 +1,4 @@
-import type { DetectorCircuit } from '../circuits/circuit.ts';
+import type { DetectorKind } from '../circuits/circuit.ts';
 import type { QuantityKind } from '../parts/format-quantity.ts';
 
 /** How a part is made, which gives it a tolerance where the list states none; null: it is then taken as it stands. */
@@ -15,7 +15,17 @@ export interface VariedPart {
   readonly paths: readonly [string, ...string[]];
   /** −1: the circuit holds its reciprocal. */
   readonly power: 1 | -1;
+  /** Detectors that use it: a circuit holds values of others, which do nothing there. */
+  readonly kinds: readonly DetectorKind[];
 }
+
+const GRID_LEAK: readonly DetectorKind[] = ['grid leak'];
+const WITH_CATHODE_LEAD: readonly DetectorKind[] = ['plate bend', 'infinite impedance'];
+/** A follower's plate has no load, only its bypass. */
+const WITH_LOAD: readonly DetectorKind[] = ['grid leak', 'plate bend'];
+const WITH_TUBE: readonly DetectorKind[] = [...GRID_LEAK, ...WITH_CATHODE_LEAD];
+const WITH_DIODE: readonly DetectorKind[] = ['diode', 'crystal'];
+const ALL: readonly DetectorKind[] = [...WITH_TUBE, ...WITH_DIODE];
 
 function part(
   key: string,
@@ -23,16 +33,17 @@ function part(
   family: PartFamily,
   kind: QuantityKind,
   path: string,
+  kinds: readonly DetectorKind[],
   ...along: readonly string[]
 ): VariedPart {
-  return { key, name, family, kind, paths: [path, ...along], power: 1 };
+  return { key, name, family, kind, paths: [path, ...along], power: 1, kinds };
 }
 
 /** A value of the plate load. */
 function ofLoad(name: string, kind: QuantityKind, field: string, ...along: readonly string[]): VariedPart {
   const family = field === 'ohms' ? 'resistor' : null;
   const inLoad = (one: string): string => `plate.load.${one}`;
-  return part(inLoad(name), `load, ${name}`, family, kind, inLoad(field), ...along.map(inLoad));
+  return part(inLoad(name), `load, ${name}`, family, kind, inLoad(field), WITH_LOAD, ...along.map(inLoad));
 }
 
 /**
@@ -40,28 +51,49 @@ function ofLoad(name: string, kind: QuantityKind, field: string, ...along: reado
  * which of the others vary. New ones go to the end, so that a seed keeps its meaning.
  */
 export const VARIED_PARTS: readonly VariedPart[] = [
-  part('detector.grid capacitor', 'grid capacitor', 'capacitor', 'capacitance', 'detector.gridCapacitorFarads'),
-  part('detector.leak', 'leak', 'resistor', 'resistance', 'detector.leakOhms'),
-  part('plate.bypass', 'bypass', 'capacitor', 'capacitance', 'plate.bypassFarads'),
+  part(
+    'detector.grid capacitor',
+    'grid capacitor',
+    'capacitor',
+    'capacitance',
+    'detector.gridCapacitorFarads',
+    GRID_LEAK,
+  ),
+  part('detector.leak', 'leak', 'resistor', 'resistance', 'detector.leakOhms', GRID_LEAK),
+  part('plate.bypass', 'bypass', 'capacitor', 'capacitance', 'plate.bypassFarads', WITH_TUBE),
   ofLoad('resistance', 'resistance', 'ohms'),
-  part('output.coupling', 'coupling', 'capacitor', 'capacitance', 'output.couplingFarads'),
-  part('output.load resistance', 'resistance it feeds', 'resistor', 'resistance', 'output.loadOhms'),
-  part('detector.tube', 'tube, current and slope', 'tube', 'number', 'tube.law.G'),
-  part('tube.grid current.at zero volts', 'grid current at 0 V', 'grid current', 'current', 'tube.law.Gg'),
-  part('plate.dropping resistor', 'dropping resistor', 'resistor', 'resistance', 'plate.dropping.ohms'),
-  part('plate.dropping capacitor', 'dropping capacitor', 'capacitor', 'capacitance', 'plate.dropping.farads'),
-  part('plate.second bypass', 'second bypass', 'capacitor', 'capacitance', 'plate.carrierChoke.bypassFarads'),
-  part('plate.carrier choke', 'carrier choke', null, 'inductance', 'plate.carrierChoke.henries'),
-  part('plate.supply', 'supply', null, 'voltage', 'plate.supplyVolts'),
-  part('output.load capacitance', 'capacitance it feeds', null, 'capacitance', 'output.loadFarads'),
-  part('tuned circuit.coil', 'coil', null, 'inductance', 'tunedCircuit.coilHenries'),
+  part('output.coupling', 'coupling', 'capacitor', 'capacitance', 'output.couplingFarads', ALL),
+  part('output.load resistance', 'resistance it feeds', 'resistor', 'resistance', 'output.loadOhms', ALL),
+  part('detector.tube', 'tube, current and slope', 'tube', 'number', 'tube.law.G', WITH_TUBE),
+  part('tube.grid current.at zero volts', 'grid current at 0 V', 'grid current', 'current', 'tube.law.Gg', WITH_TUBE),
+  part('plate.dropping resistor', 'dropping resistor', 'resistor', 'resistance', 'plate.dropping.ohms', WITH_TUBE),
+  part(
+    'plate.dropping capacitor',
+    'dropping capacitor',
+    'capacitor',
+    'capacitance',
+    'plate.dropping.farads',
+    WITH_TUBE,
+  ),
+  part(
+    'plate.second bypass',
+    'second bypass',
+    'capacitor',
+    'capacitance',
+    'plate.carrierChoke.bypassFarads',
+    WITH_LOAD,
+  ),
+  part('plate.carrier choke', 'carrier choke', null, 'inductance', 'plate.carrierChoke.henries', WITH_LOAD),
+  part('plate.supply', 'supply', null, 'voltage', 'plate.supplyVolts', WITH_TUBE),
+  part('output.load capacitance', 'capacitance it feeds', null, 'capacitance', 'output.loadFarads', ALL),
+  part('tuned circuit.coil', 'coil', null, 'inductance', 'tunedCircuit.coilHenries', ALL),
   // a tuning capacitance stands for the coil that it tunes to the carrier
   {
-    ...part('tuned circuit.capacitor', 'tuning capacitor', null, 'capacitance', 'tunedCircuit.coilHenries'),
+    ...part('tuned circuit.capacitor', 'tuning capacitor', null, 'capacitance', 'tunedCircuit.coilHenries', ALL),
     power: -1,
   },
-  part('tuned circuit.unloaded Q', 'unloaded Q', null, 'number', 'tunedCircuit.unloadedQ'),
-  part('tuned circuit.loaded Q', 'loaded Q', null, 'number', 'tunedCircuit.loadedQ'),
+  part('tuned circuit.unloaded Q', 'unloaded Q', null, 'number', 'tunedCircuit.unloadedQ', ALL),
+  part('tuned circuit.loaded Q', 'loaded Q', null, 'number', 'tunedCircuit.loadedQ', ALL),
   ofLoad('inductance', 'inductance', 'henries'),
   ofLoad('dc resistance', 'resistance', 'dcOhms'),
   ofLoad('core loss', 'resistance', 'coreLossOhms'),
@@ -85,42 +117,65 @@ export const VARIED_PARTS: readonly VariedPart[] = [
     null,
     'resistance',
     'detector.capacitorLeakageOhms',
+    GRID_LEAK,
+  ),
+  part(
+    'detector.cathode resistor',
+    'cathode resistor',
+    'resistor',
+    'resistance',
+    'detector.cathode.ohms',
+    WITH_CATHODE_LEAD,
+  ),
+  part(
+    'detector.cathode capacitor',
+    'cathode capacitor',
+    'capacitor',
+    'capacitance',
+    'detector.cathode.farads',
+    WITH_CATHODE_LEAD,
+  ),
+  part('detector.perveance', 'diode, perveance', 'tube', 'number', 'detector.diode.law.perveance', WITH_DIODE),
+  part(
+    'detector.saturation current',
+    'crystal, saturation current',
+    null,
+    'current',
+    'detector.diode.law.saturationAmps',
+    WITH_DIODE,
+  ),
+  part(
+    'detector.series resistance',
+    'crystal, series resistance',
+    null,
+    'resistance',
+    'detector.diode.law.seriesOhms',
+    WITH_DIODE,
+  ),
+  part(
+    'detector.diode capacitance',
+    'diode, capacitance',
+    null,
+    'capacitance',
+    'detector.diode.capacitanceFarads',
+    WITH_DIODE,
+  ),
+  part('detector.diode load', 'diode load', 'resistor', 'resistance', 'detector.diode.loadOhms', WITH_DIODE),
+  part('detector.diode bypass', 'diode bypass', 'capacitor', 'capacitance', 'detector.diode.bypassFarads', WITH_DIODE),
+  part(
+    'detector.filter resistor',
+    'filter resistor',
+    'resistor',
+    'resistance',
+    'detector.diode.filterOhms',
+    WITH_DIODE,
+  ),
+  part(
+    'detector.filter capacitor',
+    'filter capacitor',
+    'capacitor',
+    'capacitance',
+    'detector.diode.filterFarads',
+    WITH_DIODE,
   ),
 ];
-
-/**
- * A part's nominal value in a circuit, base SI units; null where the circuit has no such part. A tube's is 1: its
- * current and slope are taken together as a factor on those of its law.
- */
-export function nominalValue(circuit: DetectorCircuit, { paths: [path], family, power }: VariedPart): number | null {
-  const value = path.split('.').reduce<unknown>(memberOf, circuit);
-  if (typeof value !== 'number' || !(value > 0)) return null;
-  if (family === 'tube') return 1;
-  const { law } = circuit.tube;
-  if (family === 'grid current') return law.Gg * (Math.LN2 / law.Cg) ** law.xi;
-  return power === 1 ? value : 1 / ((2 * Math.PI * circuit.station.carrierHertz) ** 2 * value);
-}
-
-/** The circuit with each part at its factor times the nominal value. */
-export function withFactors(
-  circuit: DetectorCircuit,
-  parts: readonly VariedPart[],
-  factors: ArrayLike<number>,
-): DetectorCircuit {
-  return parts.reduce((changed, { paths, power }, k) => {
-    const factor = factors[k] as number;
-    return paths.reduce((one, path) => scaledAt(one, path.split('.'), power === 1 ? factor : 1 / factor), changed);
-  }, circuit);
-}
-
-/** A copy with one number scaled; as it was where there is no number at that path. */
-function scaledAt<Held>(held: Held, path: readonly string[], factor: number): Held {
-  const [first, ...rest] = path;
-  if (first === undefined) return (typeof held === 'number' ? held * factor : held) as Held;
-  if (typeof held !== 'object' || held === null || !(first in held)) return held;
-  return { ...held, [first]: scaledAt(memberOf(held, first), rest, factor) };
-}
-
-function memberOf(held: unknown, key: string): unknown {
-  return typeof held === 'object' && held !== null ? Reflect.get(held, key) : undefined;
-}
