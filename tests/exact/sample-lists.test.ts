@@ -1,6 +1,9 @@
 import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { responseRows, totalPercent } from '../../src/engine/circuits/analysis.ts';
+import type { DetectorCircuit } from '../../src/engine/circuits/circuit.ts';
+import { magnitude } from '../../src/engine/circuits/complex.ts';
+import { LinearResponse } from '../../src/engine/circuits/response.ts';
 import { restPoint } from '../../src/engine/circuits/rest-point.ts';
 import { steadyTone } from '../../src/engine/circuits/steady-state.ts';
 import { listVariants } from '../../src/list/variants.ts';
@@ -16,7 +19,7 @@ describe('the parts lists', () => {
       }),
     );
 
-  it.each(['first-one-tube-set.yaml', 'strong-station.yaml', 'restoration.yaml'])(
+  it.each(['first-one-tube-set.yaml', 'strong-station.yaml', 'restoration.yaml', 'plate-loads.yaml'])(
     '%s opens with the shock caution',
     (name) => {
       expect(sampleText(name)).toMatch(/^# SHOCK: /);
@@ -50,5 +53,29 @@ describe('the parts lists', () => {
     // 1 dB: the smallest step an ear notices in a band of treble (common practice, no source)
     expect(Math.abs(decibels.get('restored')! - decibels.get('as drawn')!)).toBeLessThan(1);
     expect(decibels.get('as drawn')! - decibels.get('as found')!).toBeGreaterThan(3);
+  });
+
+  it('the plate loads sound alike in the treble, each louder than the last, the transformer by far', () => {
+    const decibels = decibelsAt5000('plate-loads.yaml');
+    expect([...decibels.keys()]).toEqual(['22 kΩ', '56 kΩ', '120 kΩ', 'choke', 'transformer']);
+    const levels = [...decibels.values()];
+    // 0.5 dB: half of what an ear notices (common practice, no source), and what the steps of E6 leave
+    expect(Math.max(...levels) - Math.min(...levels)).toBeLessThan(0.5);
+    const loudness = listVariants(sampleText('plate-loads.yaml'), 'plate-loads.yaml').map(({ circuit }) => {
+      const { output } = new LinearResponse(restPoint(circuit)).at(400);
+      return 20 * Math.log10(magnitude(output));
+    });
+    expect(loudness).toEqual([...loudness].sort((a, b) => a - b));
+    // 8 dB: a step-up of 1:3 is 9.5 dB, less what its losses take
+    expect(loudness[4]! - loudness[3]!).toBeGreaterThan(8);
+  });
+
+  it('the bypass of 22 kΩ on 120 kΩ takes more than 2 dB of it', () => {
+    const variants = listVariants(sampleText('plate-loads.yaml'), 'plate-loads.yaml');
+    const [low, , high] = variants.map(({ circuit }) => circuit);
+    const { bypassFarads } = low!.plate;
+    const swapped = { ...high!, plate: { ...high!.plate, bypassFarads } };
+    const at5000 = (circuit: DetectorCircuit): number => new LinearResponse(restPoint(circuit)).decibels(5000);
+    expect(at5000(high!) - at5000(swapped)).toBeGreaterThan(2);
   });
 });
