@@ -83,9 +83,15 @@ function signalText({ code, figure, limit, further = 0 }: Caution): string | nul
       );
     case 'slope-limit':
       return (
-        `The grid follows the stated modulation only up to ${hertz(figure)}, short of the ${hertz(limit)} that a ` +
+        `The detector follows the stated modulation only up to ${hertz(figure)}, short of the ${hertz(limit)} that a ` +
         `programme's strong peaks reach (${PRACTICE}); at ${hertz(limit)} it follows ${percent(Math.min(further, 1))}. Beyond, ` +
-        `it cuts across the troughs (diagonal clipping). Bring leak × grid capacitor down ${(limit / figure).toFixed(1)} times.`
+        `it cuts across the troughs (diagonal clipping). Bring leak × capacitor down ${(limit / figure).toFixed(1)} times.`
+      );
+    case 'peak-clipping':
+      return (
+        `The diode follows ${percent(figure)} modulation, short of the ${percent(limit)} stated: what its load feeds takes so ` +
+        "much of the audio that the troughs are cut (F. E. Terman, Radio Engineers' Handbook, 1943, from memory). Feed a " +
+        'higher resistance, or take a lower diode load.'
       );
     case 'carrier-on-plate':
       return (

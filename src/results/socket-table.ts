@@ -8,12 +8,13 @@ const ELECTRODES: readonly (readonly [Electrode, string])[] = [
   ['grid', 'grid'],
   ['cathode', 'cathode'],
   ['supply', 'supply at the load'],
+  ['diode load', 'live end of the diode load'],
   ['behind coupling', 'behind the coupling capacitor'],
 ];
 
 /** What stands over the table. */
 export const SOCKET_NOTE =
-  'Volts against the cathode, carrier on: true, and as a meter of that resistance reads them, for a meter loads what it ' +
+  'Volts against the chassis, carrier on: true, and as a meter of that resistance reads them, for a meter loads what it ' +
   'measures. Analogue ranges are the smallest that hold the true voltage (common practice, no source). Points that every ' +
   'meter reads true have one row.';
 

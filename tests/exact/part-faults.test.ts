@@ -90,6 +90,16 @@ describe('a fault that cannot be', () => {
     expect(refusal('plate: { load: transformer 1:3 }\nfault: leaky coupling 2M\n')).toMatch(/a coupling capacitor/);
   });
 
+  it.each([
+    ['diode', 'weak tube 60 %'],
+    ['crystal', 'leaky bypass 500k'],
+    ['infinite impedance', 'leaky bypass 500k'],
+    ['plate bend', 'leak drifted +80 %'],
+  ])('a %s detector knows no %s', (kind, fault) => {
+    const message = refusal(`detector: { kind: ${kind} }\nfault: ${fault}\n`);
+    expect(message).toMatch(new RegExp(`set\\.yaml:2:8: .*a fault of a part that is in a ${kind} detector`));
+  });
+
   it('is told of on the command line by its flag', async () => {
     const { status, err, out } = await ran(['respond', '--fault', 'open leak']);
     expect([status, out]).toEqual([2, '']);

@@ -6,8 +6,9 @@ import { LinearResponse } from '../../src/engine/circuits/response.ts';
 import { restPoint } from '../../src/engine/circuits/rest-point.ts';
 import {
   carrierAtOutputVoltsRms,
+  chargingSwing,
+  followedDepth,
   followedHertz,
-  gridCurrentSwing,
   gridFarads,
 } from '../../src/engine/circuits/signal-cautions.ts';
 import { listVariants } from '../../src/list/variants.ts';
@@ -118,6 +119,28 @@ const PAIRS: readonly (readonly [CautionCode, string, string])[] = [
     'detector: { tube: 30 }\nplate: { supply: 400 V }',
     'detector: { tube: 30 }\nplate: { supply: 300 V }',
   ],
+  [
+    'peak-clipping',
+    'station: { level: 5 V }\ndetector: { kind: diode, diode load: 500k }',
+    'station: { level: 5 V }\ndetector: { kind: diode, diode load: 100k }',
+  ],
+  [
+    'slope-limit',
+    'station: { level: 5 V }\ndetector: { kind: diode, diode bypass: 500p }\noutput: { load resistance: 50M }',
+    'station: { level: 5 V }\ndetector: { kind: diode, diode bypass: 100p }\noutput: { load resistance: 50M }',
+  ],
+  [
+    'resistor-watts',
+    'detector: { kind: infinite impedance, cathode resistor: 2k, tube: 6SN7-GT }\nplate: { supply: 500 V }',
+    'detector: { kind: infinite impedance, cathode resistor: 47k, tube: 6SN7-GT }\nplate: { supply: 500 V }',
+  ],
+  [
+    'next-grid-volts',
+    'detector: { kind: infinite impedance }\nfault: leaky coupling 500k',
+    'detector: { kind: infinite impedance }',
+  ],
+  ['phones-in-plate', 'plate: { load: phones }', 'plate: { load: phones }\ndetector: { kind: infinite impedance }'],
+  ['shock', 'detector: { kind: plate bend }', 'detector: { kind: diode }'],
   ['textbook', 'detector: { law: square }', 'detector: { law: tube }'],
 ];
 
@@ -243,9 +266,23 @@ describe('the slope limit', () => {
   // 2 MΩ with 250 pF follows 30 % at 1 kHz and no more: 1/√(1 + (ωRC)²) = 0.303
   it('2 MΩ with 250 pF just passes the standard depth of 30 % at 1 kHz', () => {
     const rest = restPoint(textbook(2e6, 250e-12, 0.3));
-    const depth = 1 / gridCurrentSwing(rest, new LinearResponse(rest), 1000);
+    const depth = 1 / chargingSwing(rest, new LinearResponse(rest), 1000)!;
     // 5 % as above
     expect(Math.abs(depth / 0.303 - 1)).toBeLessThan(0.05);
+  });
+
+  // m_max = R_ac/R_dc: F. Langford-Smith, Radiotron Designer's Handbook, 4th ed., chapter 27, from memory
+  it.each([
+    ['1 MΩ', 500e3, 1 / (1 / 500e3 + 1 / 1e6)],
+    ['1 MΩ', 100e3, 1 / (1 / 100e3 + 1 / 1e6)],
+  ])('a diode that feeds %s from %d Ω follows R_ac/R_dc', (following, ohms, ac) => {
+    const text =
+      'station: { level: 10 V }\ntuned circuit: { loaded Q: 10 }\n' +
+      `detector: { kind: diode, diode load: ${ohms}, diode bypass: 20p }\n` +
+      `output: { load resistance: ${following}, load capacitance: 0, coupling: 100n }`;
+    const rest = restPoint(listVariants(text, 'set.yaml')[0]!.circuit);
+    // 3 %: a diode of some kilohms stands a hundredth below the carrier's crests
+    expect(Math.abs(followedDepth(rest, 400)! / (ac / ohms) - 1)).toBeLessThan(0.03);
   });
 
   it('no modulation, or a weak signal whose grid conducts throughout, has none', () => {

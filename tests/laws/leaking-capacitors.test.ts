@@ -1,9 +1,11 @@
 import { describe, expect, it } from 'vitest';
 import type { DetectorCircuit } from '../../src/engine/circuits/circuit.ts';
-import { restPoint } from '../../src/engine/circuits/rest-point.ts';
+import { socketRows } from '../../src/engine/circuits/meter-readings.ts';
+import { type RestPoint, restPoint } from '../../src/engine/circuits/rest-point.ts';
 import { proveTone } from '../../src/engine/proof/tone-proof.ts';
 import { referenceRest } from '../../src/engine/reference/reference-rest.ts';
 import { TableStore } from '../../src/engine/renderer/table-store.ts';
+import { listVariants } from '../../src/list/variants.ts';
 import { gridLeak, stiff } from './grid-leak-circuit.ts';
 
 const tables = new TableStore();
@@ -18,6 +20,24 @@ function leaking(bypassLeakOhms: number | null, couplingLeakOhms: number | null)
   };
 }
 
+/** Other detectors as the list describes them, on the same carrier. */
+function listed(lines: string): DetectorCircuit {
+  const text = `station: { carrier: 530k, level: 0.5 V }\ntuned circuit: { loaded Q: 30 }\n${lines}`;
+  return listVariants(text, 'set.yaml')[0]!.circuit;
+}
+
+const OTHERS = [
+  ['plate bend with a leaky bypass', 'detector: { kind: plate bend, cathode resistor: 10k }\nfault: leaky bypass 200k'],
+  [
+    'infinite impedance with a leaky coupling capacitor',
+    'detector: { kind: infinite impedance, cathode capacitor: 1n }\nfault: leaky coupling 500k',
+  ],
+  [
+    'a diode with a leaky coupling capacitor',
+    'detector: { kind: diode, diode load: 500k, diode bypass: 200p }\nfault: leaky coupling 500k',
+  ],
+] as const;
+
 const CASES = [
   ['a leaky bypass', leaking(200e3, null)],
   ['a leaky coupling capacitor', leaking(null, 1e6)],
@@ -28,6 +48,15 @@ describe('capacitors that leak', () => {
   it.each(CASES)('%s: renderer and integration of every cycle agree on a tone', (_, circuit) => {
     const rest = restPoint(circuit);
     expect(proveTone(rest, tables.lawsFor(rest, 0.8), 1000, 0.8)).toMatchObject({ holds: true });
+  });
+
+  it.each(OTHERS)('%s: they agree too, and the leak shows in the direct volts', (_, lines) => {
+    const rest = restPoint(listed(lines));
+    expect(proveTone(rest, tables.lawsFor(rest, 0.5), 1000, 0.5)).toMatchObject({ holds: true });
+    const volts = (of: RestPoint): readonly number[] => socketRows(of, []).map((row) => row.volts);
+    const sound = volts(restPoint(listed(lines.replace(/fault.*/, 'fault: none'))));
+    // more than a meter misses
+    expect(Math.max(...volts(rest).map((value, k) => Math.abs(value - sound[k]!)))).toBeGreaterThan(0.1);
   });
 
   it.each(CASES)('%s: both find the same rest point, and another than with sound capacitors', (_, circuit) => {

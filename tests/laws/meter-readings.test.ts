@@ -9,6 +9,7 @@ import {
   socketRows,
 } from '../../src/engine/circuits/meter-readings.ts';
 import { restPoint } from '../../src/engine/circuits/rest-point.ts';
+import { listVariants } from '../../src/list/variants.ts';
 import { gridLeak } from './grid-leak-circuit.ts';
 
 /** A tube that draws nothing at all, so that every voltage is a divider of resistors. */
@@ -127,6 +128,48 @@ describe('what a meter reads of a tube at work', () => {
   it('no row for a coupling capacitor that is not there', () => {
     const straight = { ...drawing, output: { ...drawing.output, couplingFarads: null } };
     expect(socketRows(restPoint(straight)).map(({ electrode }) => electrode)).not.toContain('behind coupling');
+  });
+});
+
+describe('other detectors', () => {
+  const listed = (lines: string): DetectorCircuit =>
+    listVariants(`tuned circuit: { loaded Q: 40 }\n${lines}`, 'set.yaml')[0]!.circuit;
+  const bent = (cathodeOhms: number): DetectorCircuit =>
+    listed(`detector: { kind: plate bend, cathode resistor: ${cathodeOhms} }\nplate: { load: 100k }`);
+
+  it('plate bend: everything against the chassis, the cathode at the volts of its resistor', () => {
+    const rest = restPoint(bent(10e3));
+    const rows = new Map(socketRows(rest).map((row) => [row.electrode, row]));
+    const { plateAmps: amps } = rest.currents;
+    // Ohm's law; the digits are those of the linear solution, with an ohm of winding in the grid's return
+    expect(rows.get('cathode')!.volts).toBeCloseTo(amps * 10e3, 6);
+    expect(rows.get('plate')!.volts).toBeCloseTo(90 - amps * 100e3, 6);
+    expect(rows.get('plate')!.volts - rows.get('cathode')!.volts).toBeCloseTo(rest.plateVolts, 6);
+    expect(rows.get('grid')!.volts).toBeCloseTo(0, 6);
+    expect(rows.get('supply')!.volts).toBe(90);
+  });
+
+  it('plate bend: a meter on the cathode is a smaller cathode resistor', () => {
+    const [, , analogue] = socketRows(restPoint(bent(10e3))).find(({ electrode }) => electrode === 'cathode')!.readings;
+    const ohms = 1 / (1 / 10e3 + 1 / analogue!.meterOhms);
+    // 1e-4: the resistor is bypassed for the carrier, but not to nothing
+    expect(analogue!.volts / (restPoint(bent(ohms)).currents.plateAmps * ohms)).toBeCloseTo(1, 4);
+  });
+
+  it('infinite impedance: the cathode stands above the grid, and follows the meter little', () => {
+    const rest = restPoint(listed('detector: { kind: infinite impedance }'));
+    const rows = new Map(socketRows(rest).map((row) => [row.electrode, row]));
+    expect(rows.get('cathode')!.volts).toBeCloseTo(rest.currents.plateAmps * 47e3, 6);
+    expect(rows.get('cathode')!.readings[0]!.volts / rows.get('cathode')!.volts).toBeGreaterThan(0.99);
+    expect(rows.get('plate')!.volts).toBeGreaterThan(89);
+  });
+
+  it('a diode has its load and what follows, and a meter loads it', () => {
+    const rows = socketRows(restPoint(listed('station: { level: 2 V }\ndetector: { kind: diode, diode load: 500k }')));
+    expect(rows.map(({ electrode }) => electrode)).toEqual(['diode load', 'behind coupling']);
+    // near the crest of 2.83 V, and lower with 5 kΩ of meter across
+    expect(rows[0]!.volts).toBeGreaterThan(2);
+    expect(rows[0]!.readings[2]!.volts).toBeLessThan(0.8 * rows[0]!.volts);
   });
 });
 

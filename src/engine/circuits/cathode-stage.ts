@@ -42,7 +42,13 @@ function stampStage(network: Network, circuit: DetectorCircuit, ideal: IdealPart
   network.resistor(plate, network.fixed(plateParts.supplyVolts, chassis), plateParts.dropping?.ohms ?? STOPPER_OHMS);
   network.capacitor(plate, chassis, plateParts.dropping?.farads ?? plateParts.bypassFarads);
   const { heard, coupledNode }: OutputSide = stampOutput(network, CATHODE, output, ideal.load === true, chassis);
-  return { grid, plate, chassis, side: { heard, points: { feedNode: null, loadNode: plate, coupledNode } } };
+  const chassisNode = chassis === CATHODE ? null : chassis;
+  return {
+    grid,
+    plate,
+    chassis,
+    side: { heard, points: { chassisNode, feedNode: null, loadNode: plate, coupledNode } },
+  };
 }
 
 /** The audio network: the coil is a short, so the grid is at the chassis, or at its bias against it. */

@@ -30,6 +30,7 @@ export type CautionCode =
   | 'next-grid-volts'
   | 'small-grid-capacitor'
   | 'slope-limit'
+  | 'peak-clipping'
   | 'carrier-on-plate'
   | 'ripple'
   | 'plate-harmonic'
@@ -57,9 +58,7 @@ export interface Caution {
 
 /** Cautions that follow from the rest point, the signal and the parts; what can hurt comes first. */
 export function restCautions(rest: RestPoint, ratings: Ratings | null): Caution[] {
-  // what is said of the signal is said of a grid's charging; a diode has no plate to overload
-  const { kind } = rest.circuit.detector;
+  // a diode has no supply and no plate to overload
   const parts = rest.circuit.detector.diode ? [] : partCautions(rest, ratings);
-  const signal = kind === 'grid leak' ? signalCautions(rest, ratings) : [];
-  return [...parts, ...signal, ...averagingCautions(rest)];
+  return [...parts, ...signalCautions(rest, ratings), ...averagingCautions(rest)];
 }

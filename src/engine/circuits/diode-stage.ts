@@ -68,7 +68,7 @@ export function diodeAudio(circuit: DetectorCircuit, ideal: IdealParts = {}): Au
     gridNode: anode,
     plateNode: idle,
     output: { index: probe.index, weight: probe.weight * diodeParts(circuit).volume },
-    points: { feedNode: null, loadNode: idle, coupledNode: side.coupledNode },
+    points: { chassisNode: chassis, feedNode: null, loadNode: idle, coupledNode: side.coupledNode },
   };
 }
 

@@ -20,7 +20,7 @@ export const COMMON_METERS: readonly Meter[] = [
   { kind: 'per volt', ohmsPerVolt: 1e3, rangeVolts: null },
 ];
 
-export type Electrode = 'plate' | 'grid' | 'cathode' | 'supply' | 'behind coupling';
+export type Electrode = 'plate' | 'grid' | 'cathode' | 'supply' | 'diode load' | 'behind coupling';
 
 export interface MeterReading {
   /** What the meter is called: `10 MΩ`, `20 kΩ/V`. */
@@ -32,7 +32,7 @@ export interface MeterReading {
   readonly volts: number;
 }
 
-/** One electrode of the socket, or point of its wiring, against the cathode. */
+/** One electrode of the socket, or point of its wiring, against the chassis. */
 export interface SocketRow {
   readonly electrode: Electrode;
   /** With no meter connected. */
@@ -48,26 +48,34 @@ export function meterName(meter: Meter): string {
 
 /**
  * The voltages of the socket at rest, and what each meter makes of them: its resistance is put from the electrode to the
- * cathode and the rest point solved again, the carrier held. A point of no resistance (the cathode, a supply without a
- * dropping resistor) reads true.
+ * chassis and the rest point solved again, the carrier held. A point of no resistance (a cathode at chassis level, a
+ * supply without a dropping resistor) reads true. Of a diode the points are the live end of its load and what follows.
  */
 export function socketRows(rest: RestPoint, meters: readonly Meter[] = COMMON_METERS): SocketRow[] {
   const { gridNode, plateNode, points } = rest.audio;
-  const row = (electrode: Electrode, node: number | null, volts: number): SocketRow => ({
-    electrode,
-    volts,
-    readings: meters.map((meter) =>
-      reading(meter, volts, (ohms) => (node === null ? volts : (restWith(rest, node, 1 / ohms)[node] as number))),
-    ),
-  });
-  const at = (node: number): number => rest.unknowns[node] as number;
-  const { feedNode, coupledNode } = points;
+  const { chassisNode, feedNode, coupledNode } = points;
+  const between = (volts: Float64Array, node: number | null): number =>
+    (node === null ? 0 : (volts[node] as number)) - (chassisNode === null ? 0 : (volts[chassisNode] as number));
+  const at = (electrode: Electrode, node: number | null): SocketRow => {
+    const volts = between(rest.unknowns, node);
+    const loaded = (ohms: number): number => between(restWith(rest, node, chassisNode, 1 / ohms), node);
+    const isChassis = node === chassisNode;
+    return { electrode, volts, readings: meters.map((meter) => reading(meter, volts, isChassis ? () => 0 : loaded)) };
+  };
+  const { supplyVolts } = rest.circuit.plate;
+  const supply: SocketRow =
+    feedNode === null
+      ? {
+          electrode: 'supply',
+          volts: supplyVolts,
+          readings: meters.map((meter) => reading(meter, supplyVolts, () => supplyVolts)),
+        }
+      : at('supply', feedNode);
   return [
-    row('plate', plateNode, rest.plateVolts),
-    row('grid', gridNode, rest.gridVolts),
-    row('cathode', null, 0),
-    row('supply', feedNode, feedNode === null ? rest.circuit.plate.supplyVolts : at(feedNode)),
-    ...(coupledNode === null ? [] : [row('behind coupling', coupledNode, at(coupledNode))]),
+    ...(rest.circuit.detector.diode
+      ? [at('diode load', null)]
+      : [at('plate', plateNode), at('grid', gridNode), at('cathode', null), supply]),
+    ...(coupledNode === null ? [] : [at('behind coupling', coupledNode)]),
   ];
 }
 

@@ -13,26 +13,27 @@ const STRAY_GRID_VOLTS = 0.1;
 
 /** What supply, tube, load and leaking parts give cause for at rest. */
 export function partCautions(rest: RestPoint, ratings: Ratings | null): Caution[] {
-  const { plate } = rest.circuit;
+  const { plate, detector } = rest.circuit;
   const found: Caution[] = [];
-  const { supplyAmps, loadAmps, loadWatts, droppingWatts, coupledVolts } = directCurrents(rest);
+  const { supplyAmps, loadWatts, droppingWatts, cathodeWatts, coupledVolts } = directCurrents(rest);
+  const inPlate = detector.kind === 'infinite impedance' ? null : plate.load.kind;
   const supply = plate.supplyVolts;
   if (supply >= SHOCK_VOLTS) found.push({ code: 'shock', figure: supply, limit: SHOCK_VOLTS });
-  if (plate.load.kind === 'phones' && supply > 0) found.push({ code: 'phones-in-plate', figure: supply, limit: 0 });
+  if (inPlate === 'phones' && supply > 0) found.push({ code: 'phones-in-plate', figure: supply, limit: 0 });
   found.push(...tubeCautions(rest, ratings));
-  if (plate.load.kind === 'resistor') found.push(...resistorCaution('plate load', loadWatts));
+  if (inPlate === 'resistor') found.push(...resistorCaution('plate load', loadWatts));
+  found.push(...resistorCaution('cathode resistor', cathodeWatts));
   if (plate.dropping) found.push(...resistorCaution('dropping resistor', droppingWatts));
   const { windingAmps, windingSource, batteryAmpHours, feedsGrid } = ratings ?? {};
-  if (windingAmps && loadAmps > windingAmps) {
+  if (windingAmps && inPlate !== null && supplyAmps > windingAmps) {
     const source = windingSource === undefined ? {} : { source: windingSource };
-    found.push({ code: 'winding-amps', name: plate.load.kind, figure: loadAmps, limit: windingAmps, ...source });
+    found.push({ code: 'winding-amps', name: inPlate, figure: supplyAmps, limit: windingAmps, ...source });
   }
   if (batteryAmpHours && supplyAmps > 0) {
     const further = batteryAmpHours / supplyAmps;
     found.push({ code: 'battery-life', figure: supplyAmps, limit: batteryAmpHours, further });
   }
-  // volts are counted from the cathode, which is the chassis of a grid leak alone
-  if (feedsGrid && rest.circuit.detector.kind === 'grid leak' && Math.abs(coupledVolts) > STRAY_GRID_VOLTS) {
+  if (feedsGrid && Math.abs(coupledVolts) > STRAY_GRID_VOLTS) {
     found.push({ code: 'next-grid-volts', figure: coupledVolts, limit: STRAY_GRID_VOLTS });
   }
   return found;

@@ -1,6 +1,6 @@
 import { InputError } from '../errors.ts';
 import { formatQuantity } from '../parts/format-quantity.ts';
-import type { DetectorCircuit } from './circuit.ts';
+import type { Detector, DetectorCircuit } from './circuit.ts';
 
 /** A part that has failed, as found on the bench. */
 export type PartFault =
@@ -10,6 +10,16 @@ export type PartFault =
   /** Change of the leak re its value: 0.8 is 1.8 times. */
   | { readonly kind: 'leak drifted'; readonly by: number }
   | { readonly kind: 'open bypass' | 'open leak' | 'shorted bypass' };
+
+const OF_PLATE = ['leaky coupling', 'leaky bypass', 'weak tube', 'open bypass', 'shorted bypass'] as const;
+/** Faults of the parts that each detector has and the equations know. */
+const PARTS_OF: Readonly<Record<Detector['kind'], readonly PartFault['kind'][]>> = {
+  'grid leak': [...OF_PLATE, 'leak drifted', 'open leak'],
+  'plate bend': OF_PLATE,
+  'infinite impedance': ['leaky coupling', 'weak tube'],
+  diode: ['leaky coupling'],
+  crystal: ['leaky coupling'],
+};
 
 /**
  * The circuit with its parts failed. Raises InputError `no-such-part` for a fault of a part that the circuit does not
@@ -21,6 +31,9 @@ export function withFaults(circuit: DetectorCircuit, faults: readonly PartFault[
 
 function withFault(circuit: DetectorCircuit, fault: PartFault): DetectorCircuit {
   const { plate, output, tube, detector } = circuit;
+  if (!PARTS_OF[detector.kind].includes(fault.kind)) {
+    throw refused('no-such-part', fault.kind, `a fault of a part that is in a ${detector.kind} detector`);
+  }
   if (/bypass/.test(fault.kind) && plate.bypassFarads === 0) {
     throw refused('no-such-part', fault.kind, 'a plate bypass that could fail: this circuit has none');
   }

@@ -22,8 +22,10 @@ export interface Probe {
   readonly weight: number;
 }
 
-/** Points of the plate side besides the plate that a meter is put to. */
+/** Points besides the tube's electrodes that a meter is put to. */
 export interface MeterPoints {
+  /** What voltages are read against; null: the network's reference itself, a cathode at chassis level. */
+  readonly chassisNode: number | null;
   /** Where the load is fed behind a dropping resistor; null: at the supply itself. */
   readonly feedNode: number | null;
   /** The load's end at the tube: the plate, or behind a carrier choke. */
@@ -75,7 +77,8 @@ export function stampPlateSide(
     supply = feedNode;
   }
   const { heard, coupledNode } = stampLoad(network, top, supply, circuit, ideal.load === true, ground);
-  return { heard, points: { feedNode, loadNode: top, coupledNode } };
+  const chassisNode = ground === CATHODE ? null : ground;
+  return { heard, points: { chassisNode, feedNode, loadNode: top, coupledNode } };
 }
 
 /** The load between two points, and what it feeds. */

@@ -208,14 +208,21 @@ function solveRest(circuit: DetectorCircuit): RestPoint {
 }
 
 /**
- * The direct volts of every unknown with one more conductance from a node to the cathode, S, such as a meter's; the
- * carrier at the tuned circuit is held. Raises InputError `no-rest-point`.
+ * The direct volts of every unknown with one more conductance between two nodes, S, such as a meter's; null is the
+ * cathode. The carrier at the tuned circuit is held. Raises InputError `no-rest-point`.
  */
-export function restWith(rest: RestPoint, node: number, siemens: number): Float64Array {
+export function restWith(rest: RestPoint, from: number | null, to: number | null, siemens: number): Float64Array {
   const { audio } = rest;
+  const n = audio.system.size;
   const conductance = audio.system.conductance.slice();
-  const place = node * audio.system.size + node;
-  conductance[place] = (conductance[place] as number) + siemens;
+  const add = (row: number | null, column: number | null, value: number): void => {
+    if (row === null || column === null) return;
+    conductance[row * n + column] = (conductance[row * n + column] as number) + value;
+  };
+  add(from, from, siemens);
+  add(to, to, siemens);
+  add(from, to, -siemens);
+  add(to, from, -siemens);
   const loaded = { ...audio, system: { ...audio.system, conductance } };
   const w: [number, number] = [rest.gridVolts, rest.plateVolts];
   const currents = emptyCurrents();
