@@ -67,7 +67,7 @@ Examples:
   presolder render speech.wav --bypass 47p,100p,1n three bypass values on the standard set`,
     );
 
-  addPartFlags(program.command('render'))
+  addMeterFlag(addPartFlags(program.command('render')))
     .description('The main job: a clip through each variant, as WAV files with tables and a plot.')
     .argument('[clip]', 'programme: WAV, or FLAC, MP3, Ogg; none for a text in Morse')
     .argument('[list]', 'parts list (YAML); left out: the standard one-tube set')

@@ -40,5 +40,7 @@ variants:
   as drawn: {}
   brighter: { plate.bypass: 100p }
   mellower: { plate.bypass: 2n2 }
+# A part that has failed, to compare its voltages and its sound:
+#  worn: { fault: weak tube 60 % }    # or: leaky coupling 2 MΩ, leaky bypass 500 kΩ, leak drifted +80 %, open bypass
 `;
 }

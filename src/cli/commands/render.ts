@@ -21,7 +21,7 @@ import { type RunVariant, variantsFrom } from '../list-input.ts';
 import { measuredFrom } from '../measured-input.ts';
 import { ofVariant } from '../of-variant.ts';
 import { openPage } from '../open-page.ts';
-import { choice, flag, type RawOptions, text, wavCoding } from '../options.ts';
+import { choice, flag, metersOf, type RawOptions, text, wavCoding } from '../options.ts';
 import { PAGE_FILE, pageFiles } from '../page-file.ts';
 import { Progress } from '../progress.ts';
 import { receivedClip } from '../received-clip.ts';
@@ -43,6 +43,7 @@ export async function render(
   const match = choice(options, 'match', ['level', 'loudness'], 'level');
   const quality = choice(options, 'quality', ['normal', 'fine'], 'normal');
   const format = wavCoding(options);
+  const meters = metersOf(options);
   const variants = await variantsFrom(list, options);
   const clip = await clipFor(clipPath, variants);
   const others = await otherClips(variants, list);
@@ -64,7 +65,7 @@ export async function render(
   for (const [k, variant] of variants.entries()) {
     const programme = sentProgramme(variant, clip, programmes);
     limitedSamples = Math.max(limitedSamples, programme.limitedSamples);
-    const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings));
+    const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings, meters));
     await progress.breathe();
     const tell = (share: number): Promise<void> => {
       progress.tell(`rendering ${variant.name}`, (k + share) / variants.length);
