@@ -77,7 +77,7 @@ class Sheet {
         ? `<rect class="mark" x="${px(box[0])}" y="${px(box[1])}" width="${px(box[2])}" height="${px(box[3])}" rx="6"/>`
         : '';
     return (
-      `<svg class="circuit" viewBox="0 ${ABOVE} ${px(width)} ${HEIGHT - ABOVE}" role="group" aria-label="${escapeXml(title)}">` +
+      `<svg class="circuit" width="${px(width)}" viewBox="0 ${ABOVE} ${px(width)} ${HEIGHT - ABOVE}" role="group" aria-label="${escapeXml(title)}">` +
       `${marked}<g class="lines">${this.parts.join('')}</g>${this.values.join('')}</svg>`
     );
   }
@@ -118,7 +118,7 @@ function drawTunedCircuit(sheet: Sheet, { tunedCircuit, station }: CircuitRecord
   sheet.value('station.modulation', [78, GRID - 84]);
   if (tunedCircuit.coilHenries === null) {
     sheet.add(label([6, BUS + 26], 'loaded Q'));
-    sheet.value('tuned circuit.loaded Q', [76, BUS + 26]);
+    sheet.value('tuned circuit.loaded Q', [92, BUS + 26]);
   } else {
     sheet.value('tuned circuit.coil', [72, GRID + 38]);
     sheet.add(label([6, BUS + 26], 'Q'));
@@ -194,7 +194,9 @@ function drawPlate(sheet: Sheet, circuit: CircuitRecord): number {
   } else sheet.add(joint([TUBE_X, PLATE]));
   const outputY = drawLoad(sheet, circuit, loadX);
   drawSupply(sheet, circuit, loadX);
-  return outputY === null ? x + 40 : drawOutput(sheet, circuit, outputY === PLATE ? x : loadX + 46, outputY);
+  return outputY === null
+    ? x + 40
+    : drawOutput(sheet, circuit, outputY === PLATE ? x : Math.max(loadX + 46, x), outputY);
 }
 
 /** Returns the height at which the output leaves, null when the load itself is heard. */
@@ -223,9 +225,9 @@ function drawLoad(sheet: Sheet, { plate }: CircuitRecord, x: number): number | n
       sheet.add(
         coil(from, to, -1),
         core(x + 23, middle),
-        coil([second, middle - 40], [second, middle + 40], -1),
-        wire([second, middle + 40], [second, middle + 48]),
-        chassis([second, middle + 48]),
+        coil([second, middle - 40], [second, middle + 34], -1),
+        wire([second, middle + 34], [second, middle + 38]),
+        chassis([second, middle + 38]),
       );
       sheet.value('plate.load.ratio', [x - 24, middle - 8], 'end');
       sheet.value('plate.load.primary inductance', [x - 24, middle + 22], 'end');

@@ -62,9 +62,10 @@ function jobFor(message: ToWorker, workshop: Workshop): Job | null {
   }
 }
 
-/** Parts first, the newest of them before the others; then answers and wholes in the order they were asked for. */
+/** First stretches first, the newest before the others; then more of parts; then the rest in the order it was asked for. */
 function nextJob(): Job | undefined {
-  return state.jobs.findLast((job) => job.stage === 'part') ?? state.jobs[0];
+  const newest = (stage: Stage): Job | undefined => state.jobs.findLast((job) => job.stage === stage);
+  return newest('part') ?? newest('more') ?? state.jobs[0];
 }
 
 function turn(): void {

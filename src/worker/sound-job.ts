@@ -16,8 +16,8 @@ const PART_SHARE = 1 / 8;
 /** Seconds between two chances to take up something more urgent. */
 const TURN_SECONDS = 0.25;
 
-/** What a job does next: a part is urgent, the rest can wait. */
-export type Stage = 'part' | 'whole';
+/** What a job does next: the first stretch of its part is urgent, more of the part less so, the whole can wait. */
+export type Stage = 'part' | 'more' | 'whole';
 
 /**
  * Renders one circuit in small turns: the stretch around the place that is heard first, then the whole clip from its
@@ -73,7 +73,7 @@ function* part(
     const samples = scaled(heard.subarray(posted, end), fullScaleVolts);
     post({ kind: 'part', id, from, length, first: posted === from - start, samples });
     posted = end;
-    yield 'part';
+    yield 'more';
   }
 }
 

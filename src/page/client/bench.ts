@@ -39,6 +39,8 @@ export class Bench {
   position = 0;
   /** What was on the bench before, heard until the present one can be. */
   private fallback: Heard | null = null;
+  /** The bench whose figures were asked for. */
+  private figuresOf: Heard | null = null;
   /** The variant that the bench came from. */
   private origin: Heard | null = null;
   private readonly engine: EngineLink;
@@ -110,12 +112,19 @@ export class Bench {
     else if (old) this.fallback = old;
     this.bench = made;
     this.render(made, true);
-    this.engine.ask({ kind: 'figures', name: BENCH_NAME, circuit: { layers: made.layers } }, (answer) => {
-      if (answer.kind === 'figures') made.result = answer.variant;
-      if (answer.kind === 'figures' && this.bench === made) this.onChange();
-    });
     this.selected = made;
     this.onChange();
+  }
+
+  /** Asks for the figures of what is on the bench, once its sound has come: ears first. */
+  private askFigures(): void {
+    const { bench } = this;
+    if (!bench || bench.result || this.figuresOf === bench) return;
+    this.figuresOf = bench;
+    this.engine.ask({ kind: 'figures', name: BENCH_NAME, circuit: { layers: bench.layers } }, (answer) => {
+      if (answer.kind === 'figures') bench.result = answer.variant;
+      if (answer.kind === 'figures' && this.bench === bench) this.onChange();
+    });
   }
 
   /** What was on the bench before has served. */
@@ -210,6 +219,7 @@ export class Bench {
         } else if (answer.kind === 'whole') {
           this.takeWhole(heard, answer);
           this.settled();
+          this.askFigures();
         } else if (answer.kind === 'part') {
           for (const sample of answer.samples) heard.peak = Math.max(heard.peak, Math.abs(sample));
           if (answer.first) {
@@ -222,6 +232,7 @@ export class Bench {
             heard.part = true;
             if (this.selected === heard) this.player.tell({ kind: 'select', name });
             this.settled();
+            this.askFigures();
             this.onChange();
           }
         }

@@ -59,6 +59,7 @@ class Page {
   private readonly words = element('div', { id: 'in-words' });
   private readonly cautions = element('ul', { class: 'cautions' });
   private shown: readonly VariantResult[] = [];
+  private benchShown: VariantResult | null = null;
   private readonly shortcuts = element('input', { type: 'checkbox', id: 'shortcuts', checked: '' });
 
   constructor(data: PageData, engineText: string) {
@@ -166,7 +167,9 @@ class Page {
     // the drawing and the curves follow what is heard, and would tell what a trial hides
     if (this.blind.isRunning) return;
     const variants = this.bench.variants.flatMap(({ result }) => (result ? [result] : []));
-    const bench = this.bench.bench?.result;
+    // until the new figures have come the old ones stay
+    const bench = this.bench.bench ? (this.bench.bench.result ?? this.benchShown) : null;
+    this.benchShown = bench;
     const shown = bench ? [...variants, bench] : variants;
     const changed = shown.length !== this.shown.length || shown.some((variant, k) => variant !== this.shown[k]);
     if (changed) {
@@ -175,8 +178,9 @@ class Page {
       this.cautions.replaceChildren(...cautionsOf(shown).map((caution) => element('li', {}, caution)));
     }
     this.drawing.refresh(this.response.markedHertz);
-    const selected = this.drawing.shown ? shown.indexOf(this.drawing.shown) : 0;
-    this.response.refresh(shown, Math.max(0, selected));
+    const onBench = this.bench.selected.kind === 'bench' && bench !== null;
+    const selected = onBench ? shown.length - 1 : this.drawing.shown ? shown.indexOf(this.drawing.shown) : 0;
+    this.response.refresh(this.shown, Math.max(0, selected));
     this.working.refresh(this.shown);
     this.blind.refresh();
     this.writeUp.refresh();

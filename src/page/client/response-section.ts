@@ -21,6 +21,8 @@ export class ResponseSection {
   measured: MeasuredRecord | null;
   private variants: readonly VariantResult[] = [];
   private selected = 0;
+  /** What was shown last: the same is not drawn again. */
+  private last: readonly unknown[] = [];
   private readonly onMark: () => void;
   private readonly holder = element('div', { class: 'drawn' });
   private readonly legend = element('ul', { class: 'legend', 'aria-label': 'Curves' });
@@ -92,6 +94,9 @@ export class ResponseSection {
 
   /** Shows these variants, the selected one's cost below. */
   refresh(variants: readonly VariantResult[], selected: number): void {
+    const now = [variants, selected, this.markedHertz, this.measured];
+    if (now.every((one, k) => one === this.last[k])) return;
+    this.last = now;
     this.variants = variants;
     this.selected = selected;
     this.draw();
