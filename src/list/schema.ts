@@ -5,7 +5,17 @@ import { SOCKET_STRAYS } from '../engine/tubes/socketed-tube.ts';
 import { onTheAir } from './air-section.ts';
 import { CAPACITY_EXPECTED, readBatteryCapacity } from './battery-capacity.ts';
 import { dottedFields } from './dotted-keys.ts';
-import { choiceOr, length, quantity, quantityOr, quantityOrNone, quantityOrNull, readField, words } from './fields.ts';
+import {
+  choice,
+  choiceOr,
+  length,
+  quantity,
+  quantityOr,
+  quantityOrNone,
+  quantityOrNull,
+  readField,
+  words,
+} from './fields.ts';
 import { PART_FAULT_EXPECTED, readPartFaults } from './part-fault-words.ts';
 import { plateLoad, transformerKeys } from './plate-load.ts';
 import { tubeSection } from './tube-section.ts';
@@ -96,7 +106,7 @@ const detector = z.strictObject({
     { atLeast: 1e-7, atMost: 0.1 },
     'Plate current without carrier that a plate bend is biased for (0.2 mA when no bias is stated)',
   ).optional(),
-  diode: choiceOr(['vacuum', 'germanium', 'galena'], 'vacuum', 'Kind of diode or crystal').optional(),
+  diode: choice(['vacuum', 'germanium', 'galena'], 'Kind of diode or crystal').optional(),
   perveance: quantity('number', { above: 0, atMost: 1 }, 'Of a vacuum diode, A/V^1.5').optional(),
   'saturation current': quantity('current', { above: 0, atMost: 0.01 }, 'Of a crystal').optional(),
   ideality: quantity('number', { atLeast: 0.5, atMost: 10 }, 'Of a crystal').optional(),
