@@ -3,10 +3,13 @@ import { choosePair } from '../engine/choosing/choose-two.ts';
 import { CircuitFigures, type Figure, unlessImpossible } from '../engine/choosing/figures.ts';
 import type { FigureGoal, Goal } from '../engine/choosing/goals.ts';
 import { mostHelpful, obstacles, type Trial } from '../engine/choosing/in-the-way.ts';
+import { restCautions } from '../engine/circuits/cautions.ts';
 import type { CostPart } from '../engine/circuits/cost-by-part.ts';
+import { restPoint } from '../engine/circuits/rest-point.ts';
 import { InputError } from '../engine/errors.ts';
-import type { AdjustableVariant } from '../list/adjustable.ts';
+import type { AdjustableVariant, PartValues } from '../list/adjustable.ts';
 import { chosenPart, standingValue } from '../list/part-names.ts';
+import { cautionText } from '../results/caution-text.ts';
 import type { PartScale } from './choice-input.ts';
 import { type ChoiceRow, choiceRows, goalFigures, neighbours, type Role } from './choice-rows.ts';
 import { driven } from './driven.ts';
@@ -31,6 +34,8 @@ export interface ChoiceAnswer {
   readonly best: readonly number[] | null;
   readonly rows: readonly ChoiceRow[];
   readonly inTheWay: InTheWay | null;
+  /** What the circuit with the nearest values gives cause for. */
+  readonly cautions: readonly string[];
 }
 
 /** Points a decade at which a part's whole range is looked at: fewer where each takes a whole steady tone. */
@@ -58,8 +63,7 @@ export async function answered(
     members: members.filter((member) => member === 0 || (member >= low && member <= high)),
     zero: part.limits.orZero === true,
   }));
-  const circuitAt = (values: readonly number[]) =>
-    variant.circuitWith(new Map(scales.map(({ part }, k) => [part.key, values[k] as number]))).circuit;
+  const circuitAt = (values: readonly number[]) => variant.circuitWith(valuesOf(scales, values)).circuit;
   let exact: readonly (readonly number[])[];
   let nearest: readonly number[] | null;
   let best: readonly number[] | null;
@@ -97,7 +101,20 @@ export async function answered(
     best,
     rows: choiceRows(wanted, best, scales, goalFigures(goals), variant),
     inTheWay: exact.length > 0 || nearest === null ? null : inTheWay(variant, goals, scales, nearest),
+    cautions: nearest === null ? [] : cautionsAt(variant, valuesOf(scales, nearest)),
   };
+}
+
+/** Values by the keys of their parts. */
+function valuesOf(scales: readonly PartScale[], values: readonly number[]): PartValues {
+  return new Map(scales.map(({ part }, k) => [part.key, values[k] as number]));
+}
+
+/** What a builder should know of a circuit with these values before it is built. */
+export function cautionsAt(variant: AdjustableVariant, values: PartValues): string[] {
+  const built = unlessImpossible(() => variant.circuitWith(values));
+  const rest = built && unlessImpossible(() => restPoint(built.circuit));
+  return built && rest ? [...restCautions(rest, built.ratings), ...built.cautions].map(cautionText) : [];
 }
 
 /** Where a search of several values begins: what stands on the list, or the middle of the range. */
@@ -143,7 +160,7 @@ function inTheWay(
   scales: readonly PartScale[],
   nearest: readonly number[],
 ): InTheWay | null {
-  const values = new Map(scales.map(({ part }, k) => [part.key, nearest[k] as number]));
+  const values = valuesOf(scales, nearest);
   const figures = unlessImpossible(() => new CircuitFigures(variant.circuitWith(values).circuit));
   const missed = goals
     .map((goal) => (goal.kind === 'figure' ? goal : goal.limit))

@@ -17,6 +17,7 @@ export function choiceText(answer: ChoiceAnswer, goals: readonly Goal[], scales:
   const lines = [`${onePlainLine(answer.variant)}: ${names} until ${goals.map(goalWords).join('; ')}`, ''];
   if (answer.rows.length > 0) lines.push(rowsTable(answer, goals, scales), '', remarks(scales));
   lines.push('', verdict(answer, goals, scales));
+  if (answer.cautions.length > 0) lines.push('', ...answer.cautions.map((caution) => `Caution: ${caution}`));
   return lines.join('\n');
 }
 

@@ -43,7 +43,12 @@ function scaleKeys(): Map<string, ChosenPart> {
     if (!held || held.kind === 'fraction' || (held.limits.atLeast ?? 0) < 0) continue;
     parts.set(key, {
       key,
-      name: key === 'plate.load.resistance' ? 'load' : lastWords(key),
+      name:
+        key === 'plate.load.resistance'
+          ? 'load'
+          : key.startsWith('strays.')
+            ? `stray ${lastWords(key)}`
+            : lastWords(key),
       kind: held.kind,
       limits: held.limits,
     });

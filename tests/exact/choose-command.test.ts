@@ -145,6 +145,7 @@ describe('a part chosen by a goal', () => {
     expect(out).toMatch(/best of E6$/m);
     expect(out).toContain('Searched: bypass 1 pF to 1 µF.');
     expect(out).toMatch(/^Exact: bypass [\d.]+ (p|n)F/m);
+    expect(out).toMatch(/^Caution: 90 V supply/m);
   });
 
   it('two parts for two goals', async () => {
@@ -293,6 +294,7 @@ describe('what is wrong is told, and nothing is answered', () => {
       'the lower',
     ],
     ['a range of one', ['bypass', '--until', 'corner 1 kHz', '--between', '1n'], 'two values'],
+    ['no carrier', ['bypass', '--level', '0 V', '--until', 'corner 1 kHz'], 'station.level', 'a carrier'],
     ['no such measurement', ['bypass', '--fit', 'nowhere.csv'], 'no file nowhere.csv'],
     ['a list with a fault', ['bypass', 'BAD', '--until', 'corner 1 kHz'], ':1:', 'plate.suply'],
   ];

@@ -41,6 +41,17 @@ export async function choose(named: string, list: string | null, options: RawOpt
       expected: 'one part for one goal, or two parts for two goals that each give a figure a value',
     });
   }
+  if (
+    variants.some(({ list: { station } }) => station.level === 0) &&
+    !parts.some(({ key }) => key === 'station.level')
+  ) {
+    throw new InputError({
+      code: 'no-carrier',
+      where: 'station.level',
+      got: '0 V',
+      expected: 'a carrier: with none there is nothing to choose by',
+    });
+  }
   const first = variants[0] as AdjustableVariant;
   const trial = new Map(partScales(parts, first, options).map((scale) => [scale.part.key, startOf(scale)]));
   const apart = apartFrom(variants, trial);
