@@ -19,14 +19,14 @@ export function clipAndList(first: string | null, second: string | null): Named 
 }
 
 /** The clip, or null where every variant sends a text. Throws InputError `no-clip`, `clip-unused`, those of `readClip`. */
-export async function clipFor(clipPath: string | null, variants: readonly RunVariant[]): Promise<ReadSound | null> {
+export async function clipFor({ clipPath, list }: Named, variants: readonly RunVariant[]): Promise<ReadSound | null> {
   const wants = variants.find(({ onTheAir }) => onTheAir === null || !sendsText(onTheAir.keying));
   if (clipPath === null) {
     if (wants === undefined) return null;
     throw new InputError({
       code: 'no-clip',
-      where: 'render',
-      got: 'no clip',
+      where: list ?? 'render',
+      got: list === null ? 'no clip' : 'a parts list and no clip',
       expected: 'a clip before the parts list, or a text to be sent in Morse: --morse, or on the list',
       ...(variants.length > 1 ? { hint: `${JSON.stringify(wants.name)} is a programme's` } : {}),
     });

@@ -1,6 +1,6 @@
 import * as z from 'zod';
 import { readQuantity } from '../engine/parts/quantities.ts';
-import { choiceOr, quantityOr, quantityOrNone, type Reading, readField, type Written, words } from './fields.ts';
+import { choiceOr, quantityOr, type Reading, readField, type Written, words } from './fields.ts';
 
 /** A level as written: volts, or decibels re the wanted station's. */
 export type AirLevel = { readonly volts: number } | { readonly decibels: number } | null;
@@ -70,7 +70,7 @@ const morse = z.strictObject({
 /** What is on the air besides the wanted station, and how that is keyed. */
 export const onTheAir = z.strictObject({
   'second station': secondStation.optional().meta({ description: 'A station on another frequency' }),
-  noise: quantityOrNone('none', 'voltage', VOLTS, 'Rms in the noise band, at the tap'),
+  noise: levelOr('none', 'Rms in the noise band, at the tap'),
   'noise band': quantityOr(
     '10 kHz',
     'frequency',

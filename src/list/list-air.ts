@@ -48,7 +48,7 @@ export function listedAir(list: CircuitList): ListedAir | null {
       : null;
   const air: OnTheAir = {
     secondStation,
-    noise: noise !== null && noise > 0 ? { levelVoltsRms: noise, bandHertz } : null,
+    noise: heard(noise, 'noise') ? { levelVoltsRms: volts(noise, 'noise'), bandHertz } : null,
     statics,
     beatOscillator,
     seed: Math.round(written.seed),

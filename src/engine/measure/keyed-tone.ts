@@ -23,7 +23,7 @@ const OWN_RISE_PERIODS = 0.966;
  * @param pitchHertz  above 0, below a quarter of the rate
  */
 export function keyedTone(output: Float64Array, pitchHertz: number, rateHertz: number): KeyedTone {
-  const outline = outlineOf(output, pitchHertz, rateHertz);
+  const outline = outlineOf(withoutThumps(output, rateHertz / pitchHertz), pitchHertz, rateHertz);
   let top = 0;
   for (const value of outline) top = Math.max(top, value);
   const down = outline.filter((value) => value > 0.5 * top).sort();
@@ -42,6 +42,19 @@ export function keyedTone(output: Float64Array, pitchHertz: number, rateHertz: n
     riseSeconds: rises.length === 0 ? null : Math.sqrt(Math.max(0, mean * mean - own * own)),
     bandwidthHertz: occupiedHertz(output, pitchHertz, rateHertz),
   };
+}
+
+/** Less its mean over one period about each sample: a key that moves the plate current thumps louder than a weak tone. */
+function withoutThumps(output: Float64Array, period: number): Float64Array {
+  const reach = Math.floor(period / 2 + 0.5);
+  return output.map((value, n) => {
+    let sum = 0;
+    for (let k = Math.max(-reach, -n); k <= Math.min(reach, output.length - 1 - n); k++) {
+      // the outermost samples count by the part of them that lies within the period
+      sum += Math.min(1, period / 2 + 0.5 - Math.abs(k)) * (output[n + k] as number);
+    }
+    return value - sum / period;
+  });
 }
 
 /** Amplitude of what lies about the pitch: mixed down and averaged over two periods of it under a raised cosine. */

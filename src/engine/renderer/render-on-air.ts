@@ -13,7 +13,7 @@ export interface AirRender {
   readonly aloneVolts: Float64Array | null;
 }
 
-/** The detector hears the others this long before the clip begins, s: it starts at rest, and they would come as a thump. */
+/** A detector starts at rest, and the others would come as a thump: it hears them before the clip begins, s. */
 const LEAD_SECONDS = 0.4;
 /** Clip samples after the end, so that its last ones have what the filters look ahead to. */
 const TAIL_FRAMES = 128;
@@ -29,6 +29,8 @@ export interface AirRequest {
   readonly before: number;
   readonly clipRateHertz: number;
   readonly quality: Quality;
+  /** How long the detector hears the others before the clip begins, s; left out: 0.4, for the slowest supplies and transformers. */
+  readonly leadSeconds?: number;
 }
 
 /**
@@ -46,7 +48,7 @@ export async function renderOnAir(
   const { air, otherClip, modulation, before, clipRateHertz, quality } = request;
   const factor = airRateFactor(air, clipRateHertz);
   const rateHertz = factor * clipRateHertz;
-  const lead = Math.round(LEAD_SECONDS * clipRateHertz);
+  const lead = Math.round((request.leadSeconds ?? LEAD_SECONDS) * clipRateHertz);
   const wanted = new Float64Array(lead + modulation.length + TAIL_FRAMES).fill(before);
   wanted.set(modulation, lead);
   const raised = factor === 1 ? wanted : resampled(wanted, clipRateHertz, rateHertz);
