@@ -121,7 +121,7 @@ describe('a parts list that is none', () => {
     );
     await refused(['render', at('good.yaml'), large, ...out()], large, 'the clip comes first');
     rmSync(large);
-    await refused(['render', at('good.yaml'), ...out()], at('good.yaml'), 'a text file, not audio');
+    await refused(['render', at('good.yaml'), ...out()], at('good.yaml'), 'and no clip; expected a clip before the parts list');
   });
 });
 

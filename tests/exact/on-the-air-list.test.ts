@@ -49,6 +49,11 @@ on the air:
     });
   });
 
+  it('noise re the station, as the others', () => {
+    const [found] = airOf('station: { level: 10 mV }\non the air: { noise: -40 dB }');
+    expect(found?.air.noise?.levelVoltsRms).toBeCloseTo(1e-4, 15);
+  });
+
   it('one line for a section, and none takes it away', () => {
     const [both, less] = airOf(`
 on the air: { second station: other.wav, static: 2 mV, beat oscillator: 700 Hz, morse: CQ }

@@ -45,7 +45,7 @@ export async function render(
   const format = wavCoding(options);
   const meters = metersOf(options);
   const variants = await variantsFrom(list, options);
-  const clip = await clipFor(clipPath, variants);
+  const clip = await clipFor({ clipPath, list }, variants);
   const others = await otherClips(variants, list);
   const rateHertz = clip?.sampleRateHertz ?? TEXT_RATE_HERTZ;
   const inputs = [clipPath, list].filter((path) => path !== null);
