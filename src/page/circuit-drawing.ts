@@ -194,9 +194,10 @@ function drawPlate(sheet: Sheet, circuit: CircuitRecord): number {
   } else sheet.add(joint([TUBE_X, PLATE]));
   const outputY = drawLoad(sheet, circuit, loadX);
   drawSupply(sheet, circuit, loadX);
-  return outputY === null
-    ? x + 40
-    : drawOutput(sheet, circuit, outputY === PLATE ? x : Math.max(loadX + 46, x), outputY);
+  if (outputY === null) return x + 40;
+  // from a transformer the output runs on above until it is clear of the bypass
+  if (outputY !== PLATE) sheet.add(wire([loadX + 46, outputY], [Math.max(loadX + 46, x), outputY]));
+  return drawOutput(sheet, circuit, outputY === PLATE ? x : Math.max(loadX + 46, x), outputY);
 }
 
 /** Returns the height at which the output leaves, null when the load itself is heard. */
