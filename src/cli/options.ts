@@ -120,3 +120,13 @@ export function text(options: RawOptions, name: string): string | null {
   const value = options[name];
   return typeof value === 'string' ? value : null;
 }
+
+/** A whole number given by a flag. Raises InputError `not-whole`. */
+export function wholeNumber(options: RawOptions, name: string, standard: number, least: number, most: number): number {
+  const written = text(options, name);
+  if (written === null) return standard;
+  const value = Number(written);
+  if (/^\d+$/.test(written) && value >= least && value <= most) return value;
+  const expected = `a whole number from ${least} to ${most}`;
+  throw new InputError({ code: 'not-whole', where: `--${name}`, got: JSON.stringify(written), expected });
+}

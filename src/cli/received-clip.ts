@@ -1,4 +1,6 @@
 import type { RestPoint } from '../engine/circuits/rest-point.ts';
+import type { HearingCurve } from '../engine/hearing/hearing-curves.ts';
+import { heardThrough } from '../engine/hearing/hearing-filter.ts';
 import type { Quality } from '../engine/renderer/detector-renderer.ts';
 import { type RenderedClip, renderClipInTurns } from '../engine/renderer/render-clip.ts';
 import { renderOnAir } from '../engine/renderer/render-on-air.ts';
@@ -47,6 +49,26 @@ export async function receivedClip(
   const request = { air: listed.air, otherClip, modulation, before, clipRateHertz: rateHertz, quality };
   const received = await renderOnAir(rest, tables, request, tell);
   return { clip: received.clip, onTheAir: airRecord(listed, received, rateHertz) };
+}
+
+/** The same as it is heard: through the variant's curve. */
+export async function heardClip(
+  rest: RestPoint,
+  tables: TableStore,
+  given: ToReceive,
+  tell: (share: number) => Promise<void>,
+): Promise<ReceivedClip> {
+  const { clip, onTheAir } = await receivedClip(rest, tables, given, tell);
+  return { clip: throughCurve(clip, given.variant.heard, given.rateHertz), onTheAir };
+}
+
+/** The rendered clip through a curve; flat is the clip itself. */
+function throughCurve(clip: RenderedClip, curve: HearingCurve, rateHertz: number): RenderedClip {
+  const volts = heardThrough(clip.volts, curve, rateHertz);
+  if (volts === clip.volts) return clip;
+  let peakVolts = 0;
+  for (const value of volts) peakVolts = Math.max(peakVolts, Math.abs(value));
+  return { ...clip, volts, peakVolts };
 }
 
 /** A carrier alone leaves the stage at rest. Rendered, its last digits would be brought up to full scale and heard. */

@@ -77,6 +77,7 @@ Examples:
     .option('--speed <WPM>', 'its speed in words a minute; a comma list makes variants')
     .option('--match <HOW>', 'level keeps the true differences, loudness makes all equally loud', 'level')
     .option('--wav <BITS>', '16, 24 or 32f (float)', '24')
+    .option('--workers <N>', "threads; left out: the machine's cores for long clips")
     .option('--quality <Q>', 'normal, or fine (twice the solutions a second)', 'normal')
     .option('--open', 'open the listening page when it is written')
     .option('--json', 'print the result file, nothing else')

@@ -1,8 +1,7 @@
+import { availableParallelism } from 'node:os';
 import { basename, join } from 'node:path';
 import { type Analysis, analyse } from '../../engine/circuits/analysis.ts';
 import type { Caution } from '../../engine/circuits/cautions.ts';
-import type { HearingCurve } from '../../engine/hearing/hearing-curves.ts';
-import { heardThrough } from '../../engine/hearing/hearing-filter.ts';
 import type { RenderedClip } from '../../engine/renderer/render-clip.ts';
 import { TableStore } from '../../engine/renderer/table-store.ts';
 import type { Programme } from '../../engine/station/programme.ts';
@@ -21,15 +20,16 @@ import { type RunVariant, variantsFrom } from '../list-input.ts';
 import { measuredFrom } from '../measured-input.ts';
 import { ofVariant } from '../of-variant.ts';
 import { openPage } from '../open-page.ts';
-import { choice, flag, metersOf, type RawOptions, text, wavCoding } from '../options.ts';
+import { choice, flag, metersOf, type RawOptions, text, wavCoding, wholeNumber } from '../options.ts';
 import { PAGE_FILE, pageFiles } from '../page-file.ts';
 import { Progress } from '../progress.ts';
-import { receivedClip } from '../received-clip.ts';
+import { heardClip, type ReceivedClip } from '../received-clip.ts';
 import { paperFiles } from '../result-files.ts';
 import { checkFolder, folderName, type ResultFile, writeResults } from '../result-folder.ts';
 import { type SentProgramme, sentProgramme, TEXT_RATE_HERTZ } from '../sent-programme.ts';
 import { levelSounds } from '../sound-set.ts';
 import { summaryText } from '../summary.ts';
+import { openPool } from '../worker/pool.ts';
 
 /** The main job: a clip through each variant. */
 export async function render(
@@ -62,25 +62,37 @@ export async function render(
   const rendered: RenderedClip[] = [];
   const airs: (OnTheAirRecord | null)[] = [];
   let limitedSamples = 0;
-  for (const [k, variant] of variants.entries()) {
-    const programme = sentProgramme(variant, clip, programmes);
-    limitedSamples = Math.max(limitedSamples, programme.limitedSamples);
-    const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings, meters));
-    await progress.breathe();
-    const tell = (share: number): Promise<void> => {
-      progress.tell(`rendering ${variant.name}`, (k + share) / variants.length);
-      return progress.breathe();
-    };
-    const received = await receivedClip(
-      analysis.rest,
-      tables,
-      { variant, programme, others, rateHertz, quality },
-      tell,
-    );
-    analyses.push(withCautions(analysis, variant, programme, received.clip));
-    airs.push(received.onTheAir);
-    rendered.push(throughCurve(received.clip, variant.heard, rateHertz));
-    await progress.breathe();
+  const seconds = (clip?.frames ?? 0) / rateHertz;
+  const workers = workersFor(options, variants.length, seconds);
+  const pool = workers > 1 ? await openPool(workers) : null;
+  try {
+    const given = variants.map((variant) => {
+      const programme = sentProgramme(variant, clip, programmes);
+      limitedSamples = Math.max(limitedSamples, programme.limitedSamples);
+      return { variant, programme, others, rateHertz, quality };
+    });
+    // sounds on other threads, when there are any, while this one works out the tables
+    const sounds = pool === null ? null : given.map((one) => pool.run('sound', one));
+    for (const sound of sounds ?? []) sound.catch(() => {});
+    for (const [k, one] of given.entries()) {
+      const { variant, programme } = one;
+      const analysis = ofVariant(variant.name, () => analyse(variant.circuit, variant.ratings, meters));
+      await progress.breathe();
+      const tell = (share: number): Promise<void> => {
+        progress.tell(`rendering ${variant.name}`, (k + share) / variants.length);
+        return progress.breathe();
+      };
+      const received =
+        sounds === null
+          ? await heardClip(analysis.rest, tables, one, tell)
+          : await whileTelling(sounds[k] as Promise<ReceivedClip>, () => tell(0));
+      analyses.push(withCautions(analysis, variant, programme, received.clip));
+      airs.push(received.onTheAir);
+      rendered.push(received.clip);
+      await progress.breathe();
+    }
+  } finally {
+    await pool?.close();
   }
   progress.clear();
 
@@ -155,15 +167,22 @@ function withCautions(
   return { ...analysis, cautions: [...analysis.cautions, ...variant.cautions, ...limited, ...unsettled] };
 }
 
-/** The rendered clip as it is heard; flat is the clip itself. */
-function throughCurve(clip: RenderedClip, curve: HearingCurve, rateHertz: number): RenderedClip {
-  const volts = heardThrough(clip.volts, curve, rateHertz);
-  if (volts === clip.volts) return clip;
-  return { ...clip, volts, peakVolts: Math.max(largest(volts), largest(volts.map((value) => -value))) };
+/** Shortest programme, all variants together, for which threads are started: they take a fifth of a second to. */
+const POOLED_SECONDS = 60;
+
+/** Threads for the sounds: as asked for, else a core a variant where there is enough to do. */
+function workersFor(options: RawOptions, variants: number, seconds: number): number {
+  const cores = availableParallelism();
+  const asked = text(options, 'workers');
+  if (asked === null) return seconds * variants < POOLED_SECONDS ? 1 : Math.min(cores, variants);
+  return Math.min(wholeNumber(options, 'workers', cores, 1, 64), variants);
 }
 
-function largest(samples: Float64Array): number {
-  let most = 0;
-  for (const value of samples) if (value > most) most = value;
-  return most;
+/** Awaits a sound, letting signals in meanwhile. */
+async function whileTelling(sound: Promise<ReceivedClip>, tell: () => Promise<void>): Promise<ReceivedClip> {
+  for (;;) {
+    const made = await Promise.race([sound, new Promise<null>((resolve) => setTimeout(() => resolve(null), 100))]);
+    if (made !== null) return made;
+    await tell();
+  }
 }

@@ -2,7 +2,6 @@ import { availableParallelism } from 'node:os';
 import { restCautions } from '../../engine/circuits/cautions.ts';
 import type { DetectorCircuit } from '../../engine/circuits/circuit.ts';
 import { restPoint } from '../../engine/circuits/rest-point.ts';
-import { InputError } from '../../engine/errors.ts';
 import { type CircuitOutcome, circuitFigures } from '../../engine/spread/circuit-figures.ts';
 import { gatherSpread, planCorners, planSpread } from '../../engine/spread/spread.ts';
 import type { VariedPart } from '../../engine/spread/varied-parts.ts';
@@ -16,7 +15,7 @@ import { type SpreadResult, type SpreadVariant, spreadVariant } from '../../resu
 import { EXIT, type Io } from '../io.ts';
 import { type RunVariant, variantsFrom } from '../list-input.ts';
 import { ofVariant } from '../of-variant.ts';
-import { choice, flag, type RawOptions, text } from '../options.ts';
+import { choice, flag, type RawOptions, text, wholeNumber } from '../options.ts';
 import { Progress } from '../progress.ts';
 import { checkFolder, writeResults } from '../result-folder.ts';
 import { spreadSummary } from '../spread-summary.ts';
@@ -101,14 +100,4 @@ async function outcomesOf(
     return made;
   });
   return (await Promise.all(jobs)).flat();
-}
-
-/** A whole number given by a flag. Raises InputError `not-whole`. */
-function wholeNumber(options: RawOptions, name: string, standard: number, least: number, most: number): number {
-  const written = text(options, name);
-  if (written === null) return standard;
-  const value = Number(written);
-  if (/^\d+$/.test(written) && value >= least && value <= most) return value;
-  const expected = `a whole number from ${least} to ${most}`;
-  throw new InputError({ code: 'not-whole', where: `--${name}`, got: JSON.stringify(written), expected });
 }

@@ -1,6 +1,9 @@
 import type { DetectorCircuit } from '../../engine/circuits/circuit.ts';
+import { restPoint } from '../../engine/circuits/rest-point.ts';
+import { TableStore } from '../../engine/renderer/table-store.ts';
 import { type CircuitOutcome, figuresWith } from '../../engine/spread/circuit-figures.ts';
 import type { VariedPart } from '../../engine/spread/varied-parts.ts';
+import { heardClip, type ReceivedClip, type ToReceive } from '../received-clip.ts';
 
 /** One circuit with its parts off their values, as many times as there are rows of factors. */
 export interface CircuitsJob {
@@ -15,6 +18,7 @@ export interface CircuitsJob {
  */
 export interface JobKinds {
   readonly circuits: { readonly given: CircuitsJob; readonly made: CircuitOutcome[] };
+  readonly sound: { readonly given: ToReceive; readonly made: ReceivedClip };
 }
 
 export type JobKind = keyof JobKinds;
@@ -22,6 +26,13 @@ export type Given<Kind extends JobKind> = JobKinds[Kind]['given'];
 export type Made<Kind extends JobKind> = JobKinds[Kind]['made'];
 
 /** How each kind is done. */
-export const JOBS: { readonly [Kind in JobKind]: (given: Given<Kind>) => Made<Kind> | Promise<Made<Kind>> } = {
-  circuits: ({ circuit, parts, factors }) => factors.map((row) => figuresWith(circuit, parts, row)),
-};
+export type Jobs = { readonly [Kind in JobKind]: (given: Given<Kind>) => Made<Kind> | Promise<Made<Kind>> };
+
+/** The jobs of one thread, which keeps the tables that its sounds share. */
+export function makeJobs(): Jobs {
+  const tables = new TableStore();
+  return {
+    circuits: ({ circuit, parts, factors }) => factors.map((row) => figuresWith(circuit, parts, row)),
+    sound: (given) => heardClip(restPoint(given.variant.circuit), tables, given, async () => {}),
+  };
+}

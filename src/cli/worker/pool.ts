@@ -1,7 +1,7 @@
 import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { type Fault, InputError } from '../../engine/errors.ts';
-import { type Given, JOBS, type JobKind, type Made } from './jobs.ts';
+import { type Given, type JobKind, type Made, makeJobs } from './jobs.ts';
 
 const CLOSED = 'the pool is closed';
 
@@ -35,6 +35,7 @@ export async function openPool(workers: number, file: string | null = workerFile
 }
 
 function onThisThread(): WorkPool {
+  const jobs = makeJobs();
   let closed = false;
   let last: Promise<unknown> = Promise.resolve();
   return {
@@ -43,7 +44,7 @@ function onThisThread(): WorkPool {
       const job = last.then(async () => {
         await new Promise((resolve) => setImmediate(resolve));
         if (closed) throw new Error(CLOSED);
-        return JOBS[kind](given);
+        return jobs[kind](given);
       });
       last = job.catch(() => {});
       return job;
