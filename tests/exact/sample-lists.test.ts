@@ -19,12 +19,16 @@ describe('the parts lists', () => {
       }),
     );
 
-  it.each(['first-one-tube-set.yaml', 'strong-station.yaml', 'restoration.yaml', 'plate-loads.yaml'])(
-    '%s opens with the shock caution',
-    (name) => {
-      expect(sampleText(name)).toMatch(/^# SHOCK: /);
-    },
-  );
+  it.each([
+    'first-one-tube-set.yaml',
+    'strong-station.yaml',
+    'restoration.yaml',
+    'plate-loads.yaml',
+    'crowded-evening.yaml',
+    'morse.yaml',
+  ])('%s opens with the shock caution', (name) => {
+    expect(sampleText(name)).toMatch(/^# SHOCK: /);
+  });
 
   it('the bypasses of the first set differ by what anyone hears', () => {
     const decibels = decibelsAt5000('first-one-tube-set.yaml');
