@@ -43,7 +43,7 @@ const SENTENCES: readonly (readonly [Caution, readonly string[]])[] = [
   [{ code: 'slope-limit', figure: 414, limit: 1000, further: 0.562 }, ['414 Hz', '1 kHz', '56 %', 'down 2.4 times']],
   [{ code: 'peak-clipping', figure: 0.665, limit: 0.8 }, ['67 %', '80 %', 'a lower diode load']],
   [{ code: 'carrier-on-plate', figure: 0.628, limit: 0.5, further: 680e-12 }, ['630 mV', '500 mV', 'about 680 pF']],
-  [{ code: 'ripple', figure: 11.66, limit: 20 }, ['11.7', '20', 'capacitor mends it']],
+  [{ code: 'ripple', figure: 11.66, limit: 20 }, ['11.7', '20', 'A larger leak or grid capacitor']],
   [{ code: 'plate-harmonic', figure: 0.113, limit: 0.05 }, ['11 %', '5 %', 'More plate bypass']],
   [{ code: 'bare-plate', figure: 0.0128, limit: 0.01 }, ['1.3 %', '1 %', 'More plate bypass']],
   [{ code: 'little-bypass', figure: 6.8e-12, limit: 50e-12 }, ['6.8 pF', '50 pF', '0.3 dB', 'More plate bypass']],
