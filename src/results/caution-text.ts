@@ -123,8 +123,8 @@ function validityText({ code, figure, limit }: Caution): string {
     case 'ripple':
       return (
         `Carrier × resistance × capacitance of what the detector charges is ${figure.toFixed(1)}, below ${limit} (${MEASURED}): the ` +
-        "carrier's ripple there is no longer small and the figures here can be off by a few tenths of a decibel. A " +
-        'larger leak or grid capacitor (of a diode its load or bypass, of a cathode its resistor or capacitor) mends it.'
+        "carrier's ripple there is no longer small and the figures can be off by a few tenths of a decibel. A larger leak " +
+        'or grid capacitor, or of others their load or bypass, mends it.'
       );
     case 'plate-harmonic':
       return (
