@@ -95,7 +95,8 @@ function phonesOf(load: Extract<WrittenLoad, { kind: 'phones' }>): PhonesLoad {
     henries: load.inductance ?? scale * named.henries,
     eddyLossOhms: eddy === undefined ? (named.eddyLossOhms === null ? null : scale * named.eddyLossOhms) : eddy,
     selfFarads: load['self capacitance'] ?? named.selfFarads,
-    ...(height === null
+    // windings without turns are no motor
+    ...(height === null || height === 0
       ? { resonanceOhms: null, resonanceHenries: null, resonanceFarads: null }
       : resonanceParts(hertz, height, q)),
   };

@@ -1,3 +1,4 @@
+import { InputError } from '../errors.ts';
 import { THIRD_OCTAVE_NOMINAL_HERTZ } from '../parts/third-octaves.ts';
 import { type Caution, type Ratings, restCautions } from './cautions.ts';
 import type { DetectorCircuit } from './circuit.ts';
@@ -177,6 +178,21 @@ export function totalPercent(tone: SteadyTone): number {
   return Math.sqrt(sum);
 }
 
+/** The sensitivity curve. A level at which the circuit comes to no rest or no steady tone has no row: its own may. */
+function sensitivityRows(circuit: DetectorCircuit): SensitivityFigure[] {
+  return SENSITIVITY_LEVELS.flatMap((levelVoltsRms) => {
+    try {
+      const at = restPoint({ ...circuit, station: { ...circuit.station, levelVoltsRms } });
+      const tone = steadyTone(at, REFERENCE_HERTZ, TEST_MODULATION);
+      const audioVoltsRmsAt30Percent = (tone.output[1] as number) / Math.SQRT2;
+      return [{ levelVoltsRms, audioVoltsRmsAt30Percent, secondPercent: harmonicPercent(tone, 2) }];
+    } catch (error) {
+      if (!(error instanceof InputError)) throw error;
+      return [];
+    }
+  });
+}
+
 /** The whole analysis of one circuit. Raises InputError as `restPoint` and `steadyTone` do. */
 export function analyse(
   circuit: DetectorCircuit,
@@ -196,15 +212,7 @@ export function analyse(
       totalPercent: totalPercent(tone),
     };
   });
-  const sensitivity = SENSITIVITY_LEVELS.map((levelVoltsRms) => {
-    const at = restPoint({ ...circuit, station: { ...circuit.station, levelVoltsRms } });
-    const tone = steadyTone(at, REFERENCE_HERTZ, TEST_MODULATION);
-    return {
-      levelVoltsRms,
-      audioVoltsRmsAt30Percent: (tone.output[1] as number) / Math.SQRT2,
-      secondPercent: harmonicPercent(tone, 2),
-    };
-  });
+  const sensitivity = sensitivityRows(circuit);
   const cautions = restCautions(rest, ratings);
   const treble = response.find((row) => row.hertz === 5000);
   // a bypass that costs less than a barely audible half decibel behind a load that costs far more

@@ -53,6 +53,11 @@ function harmonicPaths(rest: RestPoint, hertz: number, highest: number): Harmoni
 }
 
 const MOST_SAMPLES = 128;
+/**
+ * Instants at which the stage may be worked out for one tone before the search is given up: a circuit that settles takes
+ * well under half of it, one that does not would go on for minutes.
+ */
+const MOST_EVALUATIONS = 16_000;
 
 /** How finely a steady tone is solved. */
 export interface ToneFineness {
@@ -88,8 +93,9 @@ export const SURVEYED: ToneFineness = { instants: 16, tailShare: 0.05, residualV
  */
 export function steadyTone(rest: RestPoint, hertz: number, depth: number, fineness = QUOTED): SteadyTone {
   let start: Start | null = null;
+  const effort = { left: MOST_EVALUATIONS };
   for (let samples = fineness.instants; ; samples *= 2) {
-    const { tone, tail, reached } = steadyToneAt(rest, hertz, depth, samples, start, fineness);
+    const { tone, tail, reached } = steadyToneAt(rest, hertz, depth, samples, start, fineness, effort);
     if (tail < fineness.tailShare || samples >= MOST_SAMPLES) return tone;
     start = {
       w: interleavedTwice(reached.w),
@@ -121,6 +127,8 @@ interface Ports {
   /** One an instant: each begins its search for the carrier's amplitudes where it ended the last one. */
   readonly stages: readonly Stage[];
   readonly fineness: ToneFineness;
+  /** Instants that may still be worked out. */
+  readonly effort: { left: number };
 }
 
 function steadyToneAt(
@@ -130,13 +138,14 @@ function steadyToneAt(
   samples: number,
   start: Start | null,
   fineness: ToneFineness,
+  effort: { left: number },
 ): { tone: SteadyTone; tail: number; reached: Start } {
   const highest = samples / 2 - 1;
   const paths = harmonicPaths(rest, hertz, highest);
   const w = start?.w ?? startFromLinear(rest, hertz, depth, samples);
   let envelope = start?.envelope ?? envelopeOf(rest, hertz, depth, samples);
   const stages = Array.from({ length: samples }, () => new Stage(rest.laws, rest.path));
-  const ports: Ports = { rest, paths, impulse: impulseOhms(paths, samples), stages, fineness };
+  const ports: Ports = { rest, paths, impulse: impulseOhms(paths, samples), stages, fineness, effort };
   let found: Found;
   if (rest.tuned.tank) {
     ({ found, envelope } = solveWithTank(ports, rest.tuned.tank, hertz, depth, w, envelope));
@@ -167,8 +176,9 @@ function solveRaised(ports: Ports, envelopeAt: (share: number) => Float64Array, 
     w[k] = rest.gridVolts;
     w[k + 1] = rest.plateVolts;
   }
-  for (let part = 1; part <= 16; part++) found = solveAt(ports, envelopeAt(part / 16), w);
-  return found;
+  for (let part = 1; part <= 16 && ports.effort.left > 0; part++) found = solveAt(ports, envelopeAt(part / 16), w);
+  // stopped on the way, it is the solution of another envelope
+  return ports.effort.left > 0 ? found : { ...found, residual: Number.POSITIVE_INFINITY };
 }
 
 /** Ports and coil together: the ports under an envelope, the coil under the admittance they give, until they agree. */
@@ -291,7 +301,7 @@ interface Found {
 
 /** Newton on the port volts of one period; `w` moves to the solution. */
 function solveAt(ports: Ports, envelope: Float64Array, w: Float64Array): Found {
-  const { paths, impulse, stages } = ports;
+  const { paths, impulse, stages, effort } = ports;
   const { residualVolts } = ports.fineness;
   const samples = envelope.length;
   const size = 2 * samples;
@@ -301,6 +311,7 @@ function solveAt(ports: Ports, envelope: Float64Array, w: Float64Array): Found {
   const slopes = new Float64Array(2 * size);
   const error = new Float64Array(size);
   const evaluate = (trial: Float64Array): number => {
+    effort.left -= samples;
     for (let k = 0; k < samples; k++) {
       (stages[k] as Stage).evaluate(trial[2 * k] as number, trial[2 * k + 1] as number, envelope[k] as number, out);
       currents[2 * k] = out.gridAmps;
@@ -332,7 +343,7 @@ function solveAt(ports: Ports, envelope: Float64Array, w: Float64Array): Found {
   const matrix = new Float64Array(size * size);
   const move = new Float64Array(size);
   const trial = new Float64Array(size);
-  for (let pass = 0; pass < 40 && residual > residualVolts; pass++) {
+  for (let pass = 0; pass < 40 && residual > residualVolts && effort.left > 0; pass++) {
     for (let k = 0; k < samples; k++) {
       for (let j = 0; j < samples; j++) {
         for (let r = 0; r < 2; r++) {
@@ -350,7 +361,7 @@ function solveAt(ports: Ports, envelope: Float64Array, w: Float64Array): Found {
     if (!solveReal(matrix, size, move, 1)) break;
     let share = 1;
     let next = Number.POSITIVE_INFINITY;
-    for (let halving = 0; halving < 12; halving++) {
+    for (let halving = 0; halving < 12 && effort.left > 0; halving++) {
       for (let k = 0; k < size; k++) trial[k] = (w[k] as number) - share * (move[k] as number);
       next = evaluate(trial);
       if (next < residual) break;

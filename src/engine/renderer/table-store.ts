@@ -30,7 +30,7 @@ export class TableStore {
     const { diode } = rest.circuit.detector;
     const gridName = diode ? `diode ${JSON.stringify(diode.law)}` : `grid ${law.Gg} ${law.Cg} ${law.xi}`;
     if (diode) {
-      const top = diodeTop(diode.law);
+      const top = Math.min(diodeTop(diode.law), Math.max(LEAST_DIODE_TOP, 4 * carrier));
       const idle = this.table('idle', cathode, 1, 1);
       return { ...rest.laws, grid: this.table(gridName, grid, top, carrier), cathode: idle };
     }
@@ -50,6 +50,9 @@ export class TableStore {
     return made;
   }
 }
+
+/** A poor diode's table is cut at four times the carrier's crest, and not below this, V: past it, its last slope goes on. */
+const LEAST_DIODE_TOP = 32;
 
 /** Crest that a diode's table reaches, V: where it carries more than any detector's load asks for at a crest. */
 function diodeTop(law: DiodeLaw): number {
