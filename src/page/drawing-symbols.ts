@@ -63,6 +63,23 @@ export function coil(a: Point, b: Point, side: 1 | -1 = 1): string {
   });
 }
 
+/** Diode or crystal that lets current from the first point to the second. */
+export function diode(a: Point, b: Point): string {
+  return between(a, b, 9, ([x, y]) => {
+    const triangle = `<path class="paper" d="M${px(x - 9)} ${px(y - 10)}v20l18 -10z"/>`;
+    return `${triangle}<path class="heavy" d="M${px(x + 9)} ${px(y - 11)}v22"/>`;
+  });
+}
+
+/** Battery of two cells, its plus at the first point. */
+export function battery(a: Point, b: Point): string {
+  return between(a, b, 9, ([x, y]) => {
+    const bar = (at: number, half: number, name: string): string =>
+      `<path class="${name}" d="M${px(x + at)} ${px(y - half)}v${2 * half}"/>`;
+    return bar(-9, 14, 'thin') + bar(-3, 7, 'heavy') + bar(3, 14, 'thin') + bar(9, 7, 'heavy');
+  });
+}
+
 /** Two lines of an iron core beside a vertical winding. */
 export function core(x: number, middle: number): string {
   return wire([x - 2.5, middle - 30], [x - 2.5, middle + 30]) + wire([x + 2.5, middle - 30], [x + 2.5, middle + 30]);

@@ -46,6 +46,19 @@ const ALWAYS: readonly PartValue[] = [
   value('plate.supply', 'Supply', 'voltage', 'plate.supplyVolts', null, { by: 'list', values: SUPPLIES }),
   value('plate.bypass', 'Plate bypass', 'capacitance', 'plate.bypassFarads', '0'),
 ];
+/** What stands in the cathode lead of a plate bend or an infinite-impedance detector. */
+const CATHODE = [
+  value('detector.cathode resistor', 'Cathode resistor', 'resistance', 'detector.cathodeOhms'),
+  value('detector.cathode capacitor', 'Cathode capacitor', 'capacitance', 'detector.cathodeFarads', '0'),
+];
+const BIAS = value('detector.bias', 'Bias battery', 'voltage', 'detector.biasVolts', null, { by: 'equal', step: 0.5 });
+const DIODE = [
+  value('detector.diode load', 'Diode load', 'resistance', 'detector.loadOhms'),
+  value('detector.diode bypass', 'Diode bypass', 'capacitance', 'detector.bypassFarads', '0'),
+  value('detector.filter resistor', 'Filter resistor', 'resistance', 'detector.filterOhms', 'none'),
+  value('detector.filter capacitor', 'Filter capacitor', 'capacitance', 'detector.filterFarads', '0'),
+  value('detector.volume', 'Volume control', 'fraction', 'detector.volume', null, { by: 'equal', step: 0.1 }),
+];
 const STIFF = [value('tuned circuit.loaded Q', 'Loaded Q', 'number', 'tunedCircuit.loadedQ')];
 const COIL = [
   value('tuned circuit.coil', 'Coil', 'inductance', 'tunedCircuit.coilHenries'),
@@ -102,27 +115,38 @@ const OUTPUT = [
 
 /** The values that this circuit has, in the order in which the signal meets them. */
 export function partValues(circuit: CircuitRecord): readonly PartValue[] {
-  const { tunedCircuit, plate, output } = circuit;
+  const { tunedCircuit, detector, plate, output } = circuit;
   const [carrier, level, modulation, gridCapacitor, leak, supply, bypass] = ALWAYS as PartValue[];
-  const intoPhones = plate.load.kind === 'phones';
+  const there = (parts: readonly PartValue[]): PartValue[] => parts.filter((part) => valueIn(circuit, part) !== null);
+  const diode = detector.kind === 'diode' || detector.kind === 'crystal';
+  const filtered = valueAt(circuit, ['detector', 'filterOhms']) !== null;
+  const follower = detector.kind === 'infinite impedance';
+  const intoPhones = plate.load.kind === 'phones' && !diode && !follower;
+  const feeds = OUTPUT.filter(({ path }) => path[1] !== 'couplingFarads' || output.couplingFarads !== null);
   return [
     carrier!,
     level!,
     modulation!,
     ...(tunedCircuit.coilHenries === null ? STIFF : COIL),
-    gridCapacitor!,
-    leak!,
-    bypass!,
-    ...(plate.carrierChoke ? CARRIER_CHOKE : []),
-    ...LOADS[plate.load.kind],
-    ...(plate.dropping ? DROPPING : []),
-    supply!,
-    ...(intoPhones ? [] : OUTPUT.filter(({ path }) => path[1] !== 'couplingFarads' || output.couplingFarads !== null)),
+    ...(detector.kind === 'grid leak' ? [gridCapacitor!, leak!] : []),
+    ...(valueAt(circuit, ['detector', 'cathodeOhms']) === null ? [] : CATHODE),
+    ...(valueIn(circuit, BIAS) ? [BIAS] : []),
+    ...(diode ? there(DIODE).filter(({ path }) => path[1] !== 'filterFarads' || filtered) : [bypass!]),
+    ...(plate.carrierChoke && !diode && !follower ? CARRIER_CHOKE : []),
+    ...(diode || follower ? [] : LOADS[plate.load.kind]),
+    ...(plate.dropping && !diode ? DROPPING : []),
+    ...(diode ? [] : [supply!]),
+    ...(intoPhones ? [] : feeds),
   ];
 }
 
 /** The value of a part in base units; null: absent. */
 export function valueIn(circuit: CircuitRecord, { path }: PartValue): number | null {
+  return valueAt(circuit, path);
+}
+
+/** A number deep in the record; null where there is none. */
+export function valueAt(circuit: CircuitRecord, path: readonly string[]): number | null {
   let at: unknown = circuit;
   for (const name of path) at = typeof at === 'object' && at !== null ? (at as Record<string, unknown>)[name] : null;
   return typeof at === 'number' ? at : null;
@@ -150,7 +174,8 @@ export function steppedText(circuit: CircuitRecord, part: PartValue, steps: numb
     return steps > 0 ? (first[part.kind as keyof typeof first] ?? null) : null;
   }
   const next = stepped(now, part.stepping, steps);
-  return next > 0 ? formatQuantity(next, part.kind, 6) : null;
+  // a bias is below zero and stays there
+  return next > 0 === now > 0 && next !== 0 ? formatQuantity(next, part.kind, 6) : null;
 }
 
 function stepped(now: number, stepping: Stepping, steps: number): number {

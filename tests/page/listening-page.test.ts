@@ -380,7 +380,7 @@ function describeInBrowser(path: string): void {
       await context.close();
     });
 
-    it('draws and changes every load, carrier choke, dropping resistor, and the textbook laws', async () => {
+    it('draws and changes every load and detector, carrier choke, dropping resistor, and the textbook laws', async () => {
       noisyClip(at('short.wav'), 0.3);
       writeFileSync(
         at('loads.yaml'),
@@ -391,6 +391,9 @@ variants:
   phones: { plate.load: phones 2 kΩ }
   dropped: { plate.dropping resistor: 47k, detector.law: square }
   across: { detector.law: linear, detector.leak position: across capacitor }
+  bend: { detector.kind: plate bend, station.level: 1 V }
+  follower: { detector.kind: infinite impedance, station.level: 1 V }
+  diode: { detector.kind: diode, station.level: 1 V }
 `,
       );
       command.run('render', 'short.wav', 'loads.yaml', '--out', 'loads', '--quiet');
@@ -401,6 +404,9 @@ variants:
         'plate.load.dc resistance',
         'plate.dropping resistor',
         'detector.leak',
+        'detector.cathode resistor',
+        'output.coupling',
+        'detector.diode bypass',
       ];
       for (const [k, key] of keys.entries()) {
         await page.click(`#hear-${k + 1}`);
