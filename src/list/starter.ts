@@ -35,6 +35,11 @@ output:
   coupling: 10 nF
   into: next grid           # next grid, ceramic earpiece, crystal earpiece
 
+# What is on the air besides, and Morse; samples/crowded-evening.yaml and samples/morse.yaml have more of it.
+# on the air:
+#   second station: { clip: other.wav, offset: 9 kHz, level: -10 dB }
+#   noise: 50 µV
+
 # What changes, by name. Each variant becomes one WAV file and one curve.
 variants:
   as drawn: {}

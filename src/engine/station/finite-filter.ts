@@ -5,7 +5,7 @@ export interface FiniteFilter {
 }
 
 /** Modified Bessel function I0 by its power series; 1e-16 for the arguments of a window (below 20). */
-function besselI0(x: number): number {
+export function besselI0(x: number): number {
   let term = 1;
   let sum = 1;
   for (let k = 1; term > 1e-17 * sum; k++) {

@@ -1,3 +1,5 @@
+import { besselI0 } from './finite-filter.ts';
+
 /** What passes unchanged, and from where on nothing does; Hz. */
 export interface Band {
   readonly passHertz: number;
@@ -8,17 +10,6 @@ export interface Band {
 const STOP_DECIBELS = 100;
 /** Kernel values to a sample of the source: the straight line between two of them is off by 2e-6, −114 dB. */
 const FINENESS = 512;
-
-/** Modified Bessel function I0 by its power series. */
-function besselI0(x: number): number {
-  let term = 1;
-  let sum = 1;
-  for (let k = 1; term > 1e-17 * sum; k++) {
-    term *= (x / (2 * k)) ** 2;
-    sum += term;
-  }
-  return sum;
-}
 
 /** All that fits both rates: flat to 0.45 of the lower one, nothing above its half. */
 export function sharedBand(fromHertz: number, toHertz: number): Band {
