@@ -1,6 +1,6 @@
 // Builds what ships: the command as one file, the worker it starts on other threads, and the audio-thread processor for
 // browsers. Another folder than out/build may be named.
-import { rm, writeFile } from 'node:fs/promises';
+import { readdir, readFile, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { build } from 'esbuild';
@@ -33,7 +33,8 @@ for (const codec of [
 }
 
 await rm(out, { recursive: true, force: true });
-await build({
+const { metafile } = await build({
+  metafile: true,
   entryPoints: {
     presolder: join(root, 'src', 'cli', 'main.ts'),
     worker: join(root, 'src', 'cli', 'worker', 'entry.ts'),
@@ -78,3 +79,20 @@ const bundled = await build({
 const code = Buffer.from(bundled.outputFiles[0].contents).toString('base64');
 const { partsListSchema } = await import(`data:text/javascript;base64,${code}`);
 await writeFile(join(out, 'parts-list.schema.json'), `${JSON.stringify(partsListSchema(), null, 2)}\n`);
+
+// what else is in the bundles, under whose licence: their terms ask for the text to go along
+const carried = new Set();
+for (const input of Object.keys(metafile.inputs)) {
+  const found = /^(.*node_modules\/(?:@[^/]+\/)?[^/]+)\//.exec(input.replaceAll('\\', '/'));
+  if (found) carried.add(found[1]);
+}
+const notices = [];
+for (const folder of [...carried].sort()) {
+  const { name, version, license } = JSON.parse(await readFile(join(root, folder, 'package.json'), 'utf8'));
+  const files = await readdir(join(root, folder));
+  const file = files.find((one) => /^(licen[cs]e|copying)/i.test(one));
+  const text =
+    file === undefined ? '(the package carries no text of its own)' : await readFile(join(root, folder, file), 'utf8');
+  notices.push(`${name} ${version}, ${license}\n\n${text.trim()}\n`);
+}
+await writeFile(join(out, 'licences.txt'), `${notices.join('\n----\n\n')}`);
