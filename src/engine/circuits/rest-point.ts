@@ -62,7 +62,7 @@ function directPath(audio: AudioStage): DirectPath {
 function settle(stage: Stage, path: DirectPath, peak: number, w: [number, number], out: StageCurrents): number {
   const [r11, r12, r21, r22] = path.ohms;
   const error = (v: number, p: number): [number, number] => {
-    stage.evaluate(v, p, peak, out);
+    if (!stage.evaluate(v, p, peak, out)) return [Number.POSITIVE_INFINITY, Number.POSITIVE_INFINITY];
     return [
       v - path.open[0] + r11 * out.gridAmps + r12 * out.plateAmps,
       p - path.open[1] + r21 * out.gridAmps + r22 * out.plateAmps,

@@ -123,10 +123,17 @@ export class Stage {
       m12 = -rg * (t[GRID_BY_TUBE] as number) * cka;
       m21 = -ru * (t[TUBE_BY_GRID] as number) * cga;
       m22 = 1 - ru * (t[TUBE_BY_TUBE] as number) * cka;
-      const det = m11 * m22 - m12 * m21;
-      const fg = ag - rg;
+      let fg = ag - rg;
       const fu = au - ru;
       if (settled) break;
+      if (ag > 2 * rg) {
+        // far up an exponential a plain pass comes down one e-fold at a time; logarithms of the two come down at once
+        const share = rg > 0 ? ag / rg : 1;
+        fg = ag * Math.log(share);
+        m11 = 1 + (m11 - 1) * share;
+        m12 *= share;
+      }
+      const det = m11 * m22 - m12 * m21;
       let dg = (m22 * fg - m12 * fu) / det;
       let du = (m11 * fu - m21 * fg) / det;
       if (!(det > 0)) {
