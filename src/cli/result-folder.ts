@@ -1,8 +1,8 @@
-import { randomBytes } from 'node:crypto';
 import { mkdir, readdir, readFile, rename, rm, rmdir, stat, writeFile } from 'node:fs/promises';
 import { basename, dirname, isAbsolute, join, relative, resolve, sep } from 'node:path';
 import { InputError } from '../engine/errors.ts';
 import { safeFileNames } from '../results/safe-names.ts';
+import { asidePath, clearAside, clearStale, putBack, setUpName } from './earlier-set.ts';
 import { isCode, writeFault } from './write-faults.ts';
 
 /** One file of a result. */
@@ -11,9 +11,6 @@ export interface ResultFile {
   readonly contents: string | Uint8Array;
 }
 
-/** Set-up folders of runs that were killed are cleared by the next run once they are this old, ms. */
-const STALE_MILLISECONDS = 3_600_000;
-const SETTING_UP = '.presolder-unfinished-';
 /** Files of every result beside its sounds. */
 const PAPER_FILES = ['result.json', 'response.csv', 'response.md', 'response.svg', 'sensitivity.svg', 'listening.html'];
 /** Files of a spread; the first says what they are. */
@@ -92,11 +89,13 @@ function hasKey<Key extends string>(value: unknown, key: Key): value is Record<K
 }
 
 /**
- * Checks before the work that the results will have a place, so that nobody waits for nothing. Leaves no trace.
+ * Checks before the work that the results will have a place, so that nobody waits for nothing. Leaves no trace, but
+ * puts back earlier results that a killed run has left aside.
  *
  * @param inputs  files of the run, which no result may replace
  */
 export async function checkFolder(folder: string, ...inputs: readonly string[]): Promise<void> {
+  await putBack(resolve(folder));
   await standing(folder);
   const held = inputs.find((input) => isWithin(resolve(folder), resolve(input)));
   if (held !== undefined) {
@@ -134,9 +133,10 @@ async function nearestFolder(folder: string): Promise<string> {
 export async function writeResults(folder: string, files: readonly ResultFile[]): Promise<{ replaced: boolean }> {
   const place = resolve(folder);
   const parent = dirname(place);
+  await putBack(place);
   const found = await standing(folder);
   const setUp = join(parent, setUpName());
-  const old = `${setUp}-old`;
+  const old = asidePath(place);
   let made: string | undefined;
   try {
     made = await mkdir(parent, { recursive: true });
@@ -148,7 +148,8 @@ export async function writeResults(folder: string, files: readonly ResultFile[])
     try {
       await rename(setUp, place);
     } catch (error) {
-      if (found === 'results') await rename(old, place);
+      // should that fail too, the next run puts it back
+      if (found === 'results') await rename(old, place).catch(() => {});
       else if (found === 'empty') await mkdir(place);
       throw error;
     }
@@ -157,13 +158,8 @@ export async function writeResults(folder: string, files: readonly ResultFile[])
     await removeEmpty(parent, made).catch(() => {});
     throw writeFault(folder, error, RESULTS_EXPECTED);
   }
-  if (found === 'results') {
-    // the new set stands: should something hold the old one open, a later run clears what is named so
-    const spent = join(parent, setUpName());
-    await rename(old, spent)
-      .then(() => rm(spent, { recursive: true, force: true }))
-      .catch(() => {});
-  }
+  // the new set stands whole: what earlier ones are still aside is spent
+  await clearAside(place);
   return { replaced: found === 'results' };
 }
 
@@ -171,24 +167,6 @@ export async function writeResults(folder: string, files: readonly ResultFile[])
 async function removeEmpty(deepest: string, first: string | undefined): Promise<void> {
   if (first === undefined) return;
   for (let folder = deepest; isWithin(first, folder); folder = dirname(folder)) await rmdir(folder);
-}
-
-function setUpName(): string {
-  return SETTING_UP + randomBytes(4).toString('hex');
-}
-
-async function clearStale(parent: string): Promise<void> {
-  for (const name of await readdir(parent)) {
-    if (!name.startsWith(SETTING_UP)) continue;
-    const path = join(parent, name);
-    try {
-      const age = Date.now() - (await stat(path)).mtimeMs;
-      // a set moved aside by a run that died between two renames is the only copy: never throw it away
-      if (age > STALE_MILLISECONDS && !name.endsWith('-old')) await rm(path, { recursive: true, force: true });
-    } catch {
-      // another run's, gone meanwhile or not ours to clear
-    }
-  }
 }
 
 /** Name of the folder for a clip and a list: their names without folders and endings, safe for every file system. */
