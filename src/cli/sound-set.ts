@@ -1,8 +1,6 @@
 import { integratedLoudness } from '../engine/measure/loudness.ts';
+import { matchedGains, PEAK_DECIBELS } from '../engine/measure/matched-levels.ts';
 import type { RenderedClip } from '../engine/renderer/render-clip.ts';
-
-/** Level that the loudest peak of a set is brought to, dB re full scale: room for players that resample. */
-const PEAK_DECIBELS = -1;
 
 /** How a set of rendered variants is put into files. */
 export interface SoundLevels {
@@ -25,20 +23,11 @@ export function levelSounds(
   const fullScaleVolts = largest > 0 ? largest / 10 ** (PEAK_DECIBELS / 20) : 1;
   const flat = clips.map((clip) => clip.volts.map((volts) => volts / fullScaleVolts));
   const loudness = flat.map((samples) => integratedLoudness([samples], rateHertz));
-  const gains = flat.map(() => 0);
-  if (match === 'loudness') {
-    // the common loudness is what the variant with least room to grow can reach
-    let common = Number.POSITIVE_INFINITY;
-    clips.forEach((clip, k) => {
-      const own = loudness[k];
-      if (own === null || own === undefined || !(clip.peakVolts > 0)) return;
-      const room = PEAK_DECIBELS - 20 * Math.log10(clip.peakVolts / fullScaleVolts);
-      common = Math.min(common, own + room);
-    });
-    loudness.forEach((own, k) => {
-      if (own !== null && Number.isFinite(common)) gains[k] = common - own;
-    });
-  }
+  const measured = clips.map(({ peakVolts }, k) => ({
+    peak: peakVolts / fullScaleVolts,
+    loudnessLufs: loudness[k] ?? null,
+  }));
+  const gains = match === 'loudness' ? matchedGains(measured) : flat.map(() => 0);
   return {
     fullScaleVolts,
     sounds: flat.map((samples, k) => {

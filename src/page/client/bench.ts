@@ -43,6 +43,7 @@ export class Bench {
   private figuresOf: Heard | null = null;
   /** The variant that the bench came from. */
   private origin: Heard | null = null;
+  private readonly frames: number;
   private readonly engine: EngineLink;
   private readonly player: PlayerLink;
   private readonly onChange: () => void;
@@ -55,6 +56,7 @@ export class Bench {
     onChange: () => void,
     onFault: (texts: readonly string[]) => void,
   ) {
+    this.frames = data.clip.frames;
     this.engine = engine;
     this.player = player;
     this.onChange = onChange;
@@ -208,7 +210,8 @@ export class Bench {
   }
 
   private render(heard: Heard, urgent: boolean): void {
-    const from = Math.round(this.position);
+    // from the end the next play begins at the start
+    const from = this.position < this.frames ? Math.round(this.position) : 0;
     heard.request = this.engine.ask(
       { kind: 'sound', circuit: { layers: heard.layers }, from },
       (answer) => {
