@@ -112,7 +112,7 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
         return;
       }
       // by the library: a choice between a number and a kept one would box it, and the loop would take memory
-      const ac = Math.min(a, widest);
+      const ac = Math.max(0, Math.min(a, widest));
       let i = cx[((crestVolts - lowest) * cv) | 0] as number;
       if (crestVolts >= (ck[i + 1] as number) && i < ci.length - 1) i++;
       let j = px[(ac * pv) | 0] as number;
@@ -165,7 +165,7 @@ export function cycleTable(law: SmoothLaw, topVolts: number, topCarrier: number)
         return;
       }
       const pc = Math.min(crestVolts, highest);
-      const ac = Math.min(a, widest);
+      const ac = Math.max(0, Math.min(a, widest));
       let i = cx[((pc - lowest) * cv) | 0] as number;
       if (pc >= (ck[i + 1] as number) && i < ci.length - 1) i++;
       let j = px[(ac * pv) | 0] as number;

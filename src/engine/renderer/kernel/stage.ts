@@ -50,7 +50,7 @@ let perT: f64 = 0;
   return addr(h + 13) + ((i * cells + j) << 8);
 }
 
-// mean and chord at a point
+// mean and chord at a point; a search that has lost its way may ask for a peak below nothing
 // @ts-expect-error: decorator
 @inline function levels(h: i32, x: f64, a: f64): v128 {
   const crest = x + a;
@@ -59,7 +59,7 @@ let perT: f64 = 0;
     full(h, x, a);
     return f64x2(rd(L.RESULT), rd(L.RESULT + 3));
   }
-  const p = cell(h, crest, min(a, rd(h + 2)));
+  const p = cell(h, crest, max(0, min(a, rd(h + 2))));
   const u = f64x2.splat(t);
   return horner(cubic(p + 192, u), cubic(p + 128, u), cubic(p + 64, u), cubic(p, u), f64x2.splat(s));
 }
@@ -72,7 +72,7 @@ function full(h: i32, x: f64, a: f64): void {
     return;
   }
   const inside = min(crest, rd(h + 1));
-  const p = cell(h, inside, min(a, rd(h + 2)));
+  const p = cell(h, inside, max(0, min(a, rd(h + 2))));
   const u = f64x2.splat(t);
   const w = f64x2.splat(s);
   const r0 = cubic(p, u), r1 = cubic(p + 64, u), r2 = cubic(p + 128, u), r3 = cubic(p + 192, u);
@@ -441,6 +441,148 @@ function envelopeUnder(): void {
   }
 }
 
+// a·b
+// @ts-expect-error: decorator
+@inline function times(a: v128, b: v128): v128 {
+  const re = f64x2.extract_lane(a, 0), im = f64x2.extract_lane(a, 1);
+  const bRe = f64x2.extract_lane(b, 0), bIm = f64x2.extract_lane(b, 1);
+  return f64x2(re * bRe - im * bIm, re * bIm + im * bRe);
+}
+// a·conj(d)·scale
+// @ts-expect-error: decorator
+@inline function over(a: v128, d: v128, scale: f64): v128 {
+  const re = f64x2.extract_lane(a, 0), im = f64x2.extract_lane(a, 1);
+  const dRe = f64x2.extract_lane(d, 0), dIm = f64x2.extract_lane(d, 1);
+  return f64x2((re * dRe + im * dIm) * scale, (im * dRe - re * dIm) * scale);
+}
+// g·a + k·b
+// @ts-expect-error: decorator
+@inline function blended(g: f64, a: v128, k: f64, b: v128): v128 {
+  return f64x2.add(f64x2.mul(f64x2.splat(g), a), f64x2.mul(f64x2.splat(k), b));
+}
+// numerator of what the chords g, k add to the admittance
+// @ts-expect-error: decorator
+@inline function drawnBy(g: f64, k: f64): v128 {
+  return f64x2.add(blended(g, pair(L.PATH + 14), k, pair(L.PATH + 16)), f64x2.mul(f64x2.splat(g * k), pair(L.PATH + 18)));
+}
+
+// what one volt more of carrier at stage c does at every stage
+function respond(c: i32): void {
+  const e = rd(L.DRIVE + c);
+  const share: f64 = e > 0 ? 1.0 / e : 0.0;
+  const tg = rd(L.AG + c) * share, tu = rd(L.AU + c) * share;
+  const b = L.BLEND + 6 * c;
+  const dg0 = rd(b) * tg + rd(b + 1) * tu, du0 = rd(b + 2) * tg + rd(b + 3) * tu;
+  const grid = rd(b + 4) * dg0;
+  const plate = rd(b + 5) * du0 - grid;
+  const z = L.PORT_FROM_CURRENT + 12 * c;
+  const i = f64x2.splat(grid), j = f64x2.splat(plate);
+  let d0 = f64x2.splat(0), d1 = f64x2.splat(0), d2 = f64x2.splat(0);
+  for (let q = 0; q < 6; q += 2) {
+    const volts = f64x2.add(f64x2.mul(pair(z + q), i), f64x2.mul(pair(z + 6 + q), j));
+    const one = L.INVERSE + 6 * q;
+    const v = f64x2.splat(f64x2.extract_lane(volts, 0)), w = f64x2.splat(f64x2.extract_lane(volts, 1));
+    d0 = f64x2.sub(d0, f64x2.add(f64x2.mul(pair(one), v), f64x2.mul(pair(one + 6), w)));
+    d1 = f64x2.sub(d1, f64x2.add(f64x2.mul(pair(one + 2), v), f64x2.mul(pair(one + 8), w)));
+    d2 = f64x2.sub(d2, f64x2.add(f64x2.mul(pair(one + 4), v), f64x2.mul(pair(one + 10), w)));
+  }
+  const V = L.BY_VOLTS + 6 * c;
+  keep(V, d0);
+  keep(V + 2, d1);
+  keep(V + 4, d2);
+  for (let st = 0; st < 3; st++) {
+    const dv = rd(V + 2 * st), dp = rd(V + 2 * st + 1);
+    const p = L.PEAKS + 6 * st, q = L.CHORD_SLOPE + 5 * st;
+    const dg = (st == c ? dg0 : 0.0) + rd(p + 1) * dv + rd(p + 2) * dp;
+    const du = (st == c ? du0 : 0.0) + rd(p + 4) * dv + rd(p + 5) * dp;
+    wr(L.BY_PEAKS + 6 * c + 2 * st, dg);
+    wr(L.BY_PEAKS + 6 * c + 2 * st + 1, du);
+    const byG = rd(q) * dv + rd(q + 1) * dg;
+    const byK = rd(q + 2) * dv + rd(q + 3) * dp + rd(q + 4) * du;
+    const g = rd(L.CHORD + 2 * st), k = rd(L.CHORD + 1 + 2 * st);
+    const gs = f64x2.splat(g), ks = f64x2.splat(k);
+    const dBy = blended(byG, f64x2.add(pair(L.PATH), f64x2.mul(ks, pair(L.PATH + 4))), byK, f64x2.add(pair(L.PATH + 2), f64x2.mul(gs, pair(L.PATH + 4))));
+    const qBy = blended(byG, f64x2.add(pair(L.PATH + 14), f64x2.mul(ks, pair(L.PATH + 18))), byK, f64x2.add(pair(L.PATH + 16), f64x2.mul(gs, pair(L.PATH + 18))));
+    const d = determinant(g, k);
+    const scale = 1.0 / size2(d);
+    const y = over(drawnBy(g, k), d, scale);
+    keep(L.BY_ADMITTANCE + 6 * c + 2 * st, over(f64x2.sub(qBy, times(y, dBy)), d, scale));
+  }
+}
+
+// Newton on coil and stage; true when the envelope has hardly moved
+function newton(): bool {
+  for (let c = 0; c < 3; c++) respond(c);
+  const kappa = rd(L.TANK), peak = rd(L.REST_PEAK);
+  const R = L.NEWTON_ROWS;
+  for (let st = 0; st < 3; st++) {
+    const re = rd(L.TANK_ENVELOPE + 2 * st), im = rd(L.TANK_ENVELOPE + 1 + 2 * st);
+    const size = sqrt(re * re + im * im);
+    wr(L.ALONG + 2 * st, size > 0 ? re / size : 1.0);
+    wr(L.ALONG + 1 + 2 * st, size > 0 ? im / size : 0.0);
+  }
+  for (let r = 0; r < 3; r++) {
+    const o = R + 16 * r;
+    let right = pair(L.TANK_AHEAD + 2 * r);
+    for (let c = 0; c < 3; c++) {
+      const b = f64x2.mul(pair(L.TANK_WEIGHTS + 6 * r + 2 * c), f64x2.splat(kappa));
+      const a = f64x2.add(times(b, pair(L.PULL + 2 * c)), f64x2(r == c ? 1.0 : 0.0, 0.0));
+      right = f64x2.sub(right, times(a, pair(L.TANK_ENVELOPE + 2 * c)));
+      const re = f64x2.extract_lane(a, 0), im = f64x2.extract_lane(a, 1);
+      wr(o + 2 * c, re);
+      wr(o + 2 * c + 1, -im);
+      wr(o + 8 + 2 * c, im);
+      wr(o + 9 + 2 * c, re);
+    }
+    for (let d = 0; d < 3; d++) {
+      let q = f64x2.splat(0);
+      for (let c = 0; c < 3; c++) {
+        q = f64x2.add(q, times(times(pair(L.TANK_WEIGHTS + 6 * r + 2 * c), pair(L.TANK_ENVELOPE + 2 * c)), pair(L.BY_ADMITTANCE + 6 * d + 2 * c)));
+      }
+      const along = f64x2.mul(pair(L.ALONG + 2 * d), f64x2.splat(kappa * peak));
+      const at = o + 2 * d;
+      keep(at, f64x2.add(pair(at), f64x2.mul(along, f64x2.splat(f64x2.extract_lane(q, 0)))));
+      keep(at + 8, f64x2.add(pair(at + 8), f64x2.mul(along, f64x2.splat(f64x2.extract_lane(q, 1)))));
+    }
+    wr(o + 6, f64x2.extract_lane(right, 0));
+    wr(o + 14, f64x2.extract_lane(right, 1));
+  }
+  for (let k = 0; k < 6; k++) {
+    const p = R + 8 * k;
+    const scale = 1.0 / rd(p + k);
+    for (let r = k + 1; r < 6; r++) {
+      const row = R + 8 * r;
+      const factor = rd(row + k) * scale;
+      for (let c = k + 1; c < 7; c++) wr(row + c, rd(row + c) - factor * rd(p + c));
+    }
+  }
+  for (let k = 5; k >= 0; k--) {
+    const row = R + 8 * k;
+    let sum = rd(row + 6);
+    for (let c = k + 1; c < 6; c++) sum -= rd(row + c) * rd(L.TANK_MOVE + c);
+    wr(L.TANK_MOVE + k, sum / rd(row + k));
+  }
+  let largest: f64 = 0;
+  for (let c = 0; c < 3; c++) {
+    const re = rd(L.TANK_MOVE + 2 * c), im = rd(L.TANK_MOVE + 1 + 2 * c);
+    largest = max(largest, abs(re) + abs(im));
+    const e = L.TANK_ENVELOPE + 2 * c;
+    wr(e, rd(e) + re);
+    wr(e + 1, rd(e + 1) + im);
+    const dv = f64x2.splat(peak * (rd(L.ALONG + 2 * c) * re + rd(L.ALONG + 1 + 2 * c) * im));
+    for (let st = 0; st < 3; st++) {
+      const o = 6 * c + 2 * st;
+      keep(L.W + 2 * st, f64x2.add(pair(L.W + 2 * st), f64x2.mul(dv, pair(L.BY_VOLTS + o))));
+      const peaks = f64x2.mul(dv, pair(L.BY_PEAKS + o));
+      const a = rd(L.AG + st), b = rd(L.AU + st);
+      wr(L.AG + st, max(a + f64x2.extract_lane(peaks, 0), 0.2 * a));
+      wr(L.AU + st, max(b + f64x2.extract_lane(peaks, 1), 0.2 * b));
+      keep(L.PULL + 2 * st, f64x2.add(pair(L.PULL + 2 * st), f64x2.mul(dv, pair(L.BY_ADMITTANCE + o))));
+    }
+  }
+  return largest < rd(L.TANK + 4);
+}
+
 // stage and coil together; the reasons stand in the plain stepper
 function solveWithTank(): void {
   const P = L.PULL_PAST;
@@ -453,37 +595,29 @@ function solveWithTank(): void {
   }
   const peak = rd(L.REST_PEAK), restRe = rd(L.TANK + 1), restIm = rd(L.TANK + 2), most = rd(L.TANK + 3);
   envelopeUnder();
-  for (let round = 0; round < 12; round++) {
+  let agreed = false;
+  for (let round = 0; round < 16 && !agreed; round++) {
     for (let st = 0; st < 3; st++) {
-      const before = rd(L.DRIVE + st);
       const re = rd(L.TANK_ENVELOPE + 2 * st), im = rd(L.TANK_ENVELOPE + 1 + 2 * st);
-      const now = peak * sqrt(re * re + im * im);
-      wr(L.DRIVE + st, now);
-      if (round > 0 && before > 0) {
-        const share = now / before;
-        wr(L.AG + st, rd(L.AG + st) * share);
-        wr(L.AU + st, rd(L.AU + st) * share);
-      }
+      wr(L.DRIVE + st, peak * sqrt(re * re + im * im));
     }
     if (round == 0) forecast();
+    if (round > 2) wr(L.KEPT, Infinity);
     solve();
     let moved: f64 = 0;
     for (let st = 0; st < 3; st++) {
       const g = rd(L.CHORD + 2 * st), k = rd(L.CHORD + 1 + 2 * st);
       const d = determinant(g, k);
-      const q = f64x2.add(f64x2.add(f64x2.mul(f64x2.splat(g), pair(L.PATH + 14)), f64x2.mul(f64x2.splat(k), pair(L.PATH + 16))), f64x2.mul(f64x2.splat(g * k), pair(L.PATH + 18)));
-      const scale = 1.0 / size2(d);
-      const dRe = f64x2.extract_lane(d, 0), dIm = f64x2.extract_lane(d, 1);
-      const qRe = f64x2.extract_lane(q, 0), qIm = f64x2.extract_lane(q, 1);
-      const yRe = rd(L.PATH + 20) + (qRe * dRe + qIm * dIm) * scale - restRe;
-      const yIm = rd(L.PATH + 21) + (qIm * dRe - qRe * dIm) * scale - restIm;
+      const y = over(drawnBy(g, k), d, 1.0 / size2(d));
+      const yRe = rd(L.PATH + 20) + f64x2.extract_lane(y, 0) - restRe;
+      const yIm = rd(L.PATH + 21) + f64x2.extract_lane(y, 1) - restIm;
       moved = max(moved, (abs(yRe - rd(L.PULL + 2 * st)) + abs(yIm - rd(L.PULL + 1 + 2 * st))) * rd(L.DRIVE + st));
       wr(L.PULL + 2 * st, yRe);
       wr(L.PULL + 1 + 2 * st, yIm);
     }
-    if (moved < most) break;
-    envelopeUnder();
+    agreed = moved < most || newton();
   }
+  if (!agreed) wr(L.COUNTS + 1, rd(L.COUNTS + 1) + 1);
   for (let part = 0; part < 2; part++) {
     const o = P + 4 * part;
     wr(o + 3, rd(o));
