@@ -13,14 +13,17 @@ import { PAGE_SCRIPTS } from './stubs/page-scripts.ts';
 /** Name of the page in the result folder. */
 export const PAGE_FILE = 'listening.html';
 
-/** The listening page of a run; none where the program was not built. */
+/** Longest clip that a page carries, frames: ten minutes at 48 kHz make a file of 77 MB, which browsers still open. */
+const MOST_FRAMES = 600 * 48_000;
+
+/** The listening page of a run; none where the program was not built, or for a clip that is too long for a page. */
 export function pageFiles(
   result: Result,
   variants: readonly RunVariant[],
   clip: ReadSound,
   quality: 'normal' | 'fine',
 ): ResultFile[] {
-  if (PAGE_SCRIPTS === null) return [];
+  if (PAGE_SCRIPTS === null || clip.frames > MOST_FRAMES) return [];
   const policy = policyFor(PAGE_SCRIPTS, (text) => createHash('sha256').update(text).digest('base64'));
   return [
     {

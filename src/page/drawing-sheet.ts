@@ -6,7 +6,6 @@ import { partValues, valueIn, valueText } from './part-values.ts';
 /** The part that costs most at the marked frequency. */
 export interface CostMark {
   readonly part: keyof CostRow;
-  readonly text: string;
 }
 
 const HEIGHT = 452;

@@ -81,11 +81,3 @@ export function escapeHtml(text: string): string {
     .replaceAll('"', '&quot;')
     .replaceAll("'", '&#39;');
 }
-
-/**
- * Whether a program text may stand in a script element as it is. `</script` would end it, and `<!--` could swallow its
- * end (WHATWG HTML, restrictions for contents of script elements, from memory).
- */
-export function fitsInScript(text: string): boolean {
-  return !/<\/script|<!--|<script/i.test(text);
-}

@@ -90,7 +90,7 @@ function describeInBrowser(path: string): void {
 
     beforeAll(async () => {
       command = buildCommand();
-      noisyClip(at('clip.wav'), 3);
+      noisyClip(at('clip.wav'), 4);
       writeFileSync(at('list.yaml'), LIST);
       command.run('render', 'clip.wav', 'list.yaml', '--out', 'all', '--quiet');
       browser = await launch(path);
@@ -119,7 +119,7 @@ function describeInBrowser(path: string): void {
       }
       await page.click('#play');
       for (const key of ['2', '3', '4']) {
-        await page.waitForTimeout(350);
+        await page.waitForTimeout(300);
         await page.keyboard.press(key);
       }
       await page.waitForTimeout(400);
@@ -180,6 +180,8 @@ function describeInBrowser(path: string): void {
     it('hears a changed bypass, and saves it as the command writes it', async () => {
       const { page, context, seen } = await open(join(at('all'), 'listening.html'));
       await page.keyboard.press('2');
+      // round and round, so that no machine is too slow for the clip
+      await page.keyboard.press('l');
       await page.click('#play');
       await page.focus('[data-key="plate.bypass"]');
       expect(await page.getAttribute('[data-key="plate.bypass"]', 'aria-valuetext')).toBe('1 nF');
@@ -196,10 +198,11 @@ function describeInBrowser(path: string): void {
       const heard = await recorded(page);
       const last = heard.findLastIndex((value) => value !== 0);
       const changed = sound('all', 'changed');
-      expect(placeOf(heard, last - 8000, 400, changed, VOLUME).worst).toBeLessThan(1e-6);
+      // two places: one of them may lie in the loop's own fade
+      const places = [8000, 5000].map((back) => placeOf(heard, last - back, 400, changed, VOLUME).worst);
+      expect(Math.min(...places)).toBeLessThan(1e-6);
       await page.fill('#keep-name', 'kept one');
-      await until(page, "document.querySelector('#cost-note').textContent.length > 0");
-      await page.waitForTimeout(800);
+      await until(page, "document.querySelector('#response .legend').textContent.includes('On the bench')");
       await page.click('#keep');
       await page.waitForSelector('#hear-5');
       const wav = readWav(await saved(page, '#save-wav-5'), 'kept').channels[0]!;
@@ -229,7 +232,6 @@ function describeInBrowser(path: string): void {
       await until(page, "document.querySelector('#response .legend').textContent.includes('On the bench')");
       await wholeHeard(page);
       await page.fill('#keep-name', 'half way');
-      await page.waitForTimeout(1500);
       await page.click('#keep');
       await page.waitForSelector('#hear-5');
       writeFileSync(at('saved.html'), await saved(page, '#save-page'));
@@ -303,6 +305,25 @@ function describeInBrowser(path: string): void {
       expect(await page.textContent('#drawing .fault')).toMatch(/plate\.bypass: found 47q; expected a capacitance/);
       expect(await page.getAttribute('[data-key="plate.bypass"]', 'aria-valuetext')).toBe('2.2 nF');
       expect(await page.getAttribute('#hear-1', 'aria-pressed')).toBe('true');
+      await context.close();
+    });
+
+    it('tries another line of the list, keeps it and takes it away again', async () => {
+      const { page, context, seen } = await open(join(at('all'), 'listening.html'));
+      await page.selectOption('#other-line', 'detector.tube');
+      await page.fill('#other-value', '76');
+      await page.click('#other-set');
+      await until(page, "document.querySelector('svg.circuit').textContent.includes('76')");
+      expect(await page.textContent('#drawing .lead')).toBe('On the bench');
+      await page.fill('#keep-name', 'with a 76');
+      await page.click('#keep');
+      expect(await page.locator('.choices button.variant').count()).toBe(5);
+      await page.click('#remove');
+      expect(await page.locator('.choices button.variant').count()).toBe(4);
+      await page.fill('#other-value', '6SL8');
+      await page.click('#other-set');
+      await until(page, "document.querySelector('#drawing .fault').textContent.includes('6SL8')");
+      expect(seen).toEqual([]);
       await context.close();
     });
 

@@ -61,7 +61,7 @@ describe('the values on the drawing', () => {
   });
 
   it('stand each once on the drawing or beside it, and the costliest part is framed', () => {
-    const svg = circuitDrawing(circuit, 'Circuit of <x>', { part: 'plateBypass', text: '' });
+    const svg = circuitDrawing(circuit, 'Circuit of <x>', { part: 'plateBypass' });
     const drawn = [...svg.matchAll(/data-key="([^"]+)"/g)].map((match) => match[1]!);
     expect(new Set(drawn).size).toBe(drawn.length);
     const known = partValues(circuit).map(({ key }) => key);

@@ -148,7 +148,10 @@ export async function render(
     io.err('Turn the volume down before the first play: full scale is loud, and hearing does not grow back.\n');
   }
   if (flag(options, 'open')) {
-    const failed = page.length === 0 ? 'this run has no listening page' : await openPage(join(folder, PAGE_FILE));
+    const failed =
+      page.length === 0
+        ? 'this run has no listening page (others on the air, Morse, or a clip over ten minutes)'
+        : await openPage(join(folder, PAGE_FILE));
     if (failed !== null && !quiet) io.err(`Not opened: ${failed}.\n`);
   }
   return EXIT.done;

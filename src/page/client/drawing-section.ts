@@ -9,6 +9,20 @@ import { button, drawing, element, section } from './dom.ts';
 /** Values that a step of a decade moves by, in the series that is stepped through. */
 const DECADE_STEPS = 12;
 
+/** Lines of the list that are no value on the drawing, each with what it may say. */
+const OTHER_LINES: readonly (readonly [string, string])[] = [
+  ['detector.tube', '76'],
+  ['detector.kind', 'grid leak, plate bend, infinite impedance, diode, crystal'],
+  ['detector.law', 'tube, square, linear'],
+  ['detector.leak position', 'to cathode, across capacitor'],
+  ['plate.load', 'resistor 220 kΩ, choke 250 H, transformer 1:3, phones 2 kΩ'],
+  ['plate.carrier choke', '10 mH, none'],
+  ['plate.dropping resistor', '47 kΩ, none'],
+  ['output.into', 'next grid, ceramic earpiece, phones, nothing'],
+  ['output.heard through', 'flat, magnetic phones, horn loudspeaker'],
+  ['station.pre-emphasis', 'none, nrsc-1'],
+];
+
 /** The drawing, whose values are the controls, and the bench that a change makes. */
 export class DrawingSection {
   readonly root: HTMLElement;
@@ -27,6 +41,9 @@ export class DrawingSection {
   private readonly inputLabel = element('label', { for: 'typed-value' });
   private readonly absentButton: HTMLButtonElement;
   private readonly fault = element('p', { class: 'fault', role: 'alert' });
+  private readonly line = element('select', { id: 'other-line' });
+  private readonly lineValue = element('input', { type: 'text', id: 'other-value', autocomplete: 'off' });
+  private readonly removeButton: HTMLButtonElement;
   private readonly benchRow = element('form', { class: 'row bench', hidden: '' });
   private readonly nameInput = element('input', {
     type: 'text',
@@ -69,6 +86,27 @@ export class DrawingSection {
       event.preventDefault();
       this.keep();
     });
+    this.removeButton = button('Remove this variant', () => bench.remove(bench.selected), {
+      id: 'remove',
+      hidden: '',
+    });
+    this.line.append(...OTHER_LINES.map(([key]) => element('option', { value: key }, key)));
+    this.line.addEventListener('change', () => this.hintLine());
+    this.hintLine();
+    const other = element(
+      'form',
+      { class: 'row' },
+      element('label', { for: 'other-line' }, 'Another line of the list'),
+      this.line,
+      element('label', { for: 'other-value' }, 'is'),
+      this.lineValue,
+      element('button', { type: 'submit', id: 'other-set' }, 'Try'),
+      this.removeButton,
+    );
+    other.addEventListener('submit', (event) => {
+      event.preventDefault();
+      this.setLine();
+    });
     this.root = section(
       'drawing',
       'The drawing',
@@ -79,6 +117,7 @@ export class DrawingSection {
       this.costs,
       this.benchRow,
       this.more,
+      other,
       element(
         'p',
         { class: 'note screen' },
@@ -97,6 +136,8 @@ export class DrawingSection {
     if (shown?.result) this.drawn = shown.result.circuit;
     if (shown) this.source = shown;
     this.benchRow.hidden = this.bench.bench === null;
+    // a variant that was kept here may go again; those of the run stay
+    this.removeButton.hidden = selected.kind !== 'variant' || selected.result?.sound !== undefined;
     this.redraw();
   }
 
@@ -124,7 +165,7 @@ export class DrawingSection {
       most && most.decibels >= 0.1
         ? `Framed: the ${most.name} costs most at ${at}, ${most.decibels.toFixed(1)} dB.`
         : `No part costs a tenth of a decibel at ${at}.`;
-    const mark = most && most.decibels >= 0.1 ? { part: most.key, text: '' } : null;
+    const mark = most && most.decibels >= 0.1 ? { part: most.key } : null;
     const svg = drawing(circuitDrawing(drawn, `Circuit of ${source.name}`, mark));
     this.holder.replaceChildren(svg);
     const onDrawing = new Set([...svg.querySelectorAll('[data-key]')].map((one) => one.getAttribute('data-key')));
@@ -198,7 +239,7 @@ export class DrawingSection {
   /** Writes a value into the list: it becomes the circuit on the bench. */
   private set(part: PartValue, text: string): void {
     const { source } = this;
-    if (!source || this.bench.selected.kind === 'sent' || document.body.dataset.testing === 'yes') return;
+    if (!source || this.bench.selected.kind === 'sent' || this.testing) return;
     this.fault.textContent = '';
     this.bench.change(source, { [part.key]: text });
     const reading = readQuantity(text, part.kind, part.key);
@@ -211,6 +252,22 @@ export class DrawingSection {
     if (!this.drawn) return;
     this.drawn = replaced(this.drawn, part, value) as CircuitRecord;
     this.redraw();
+  }
+
+  private hintLine(): void {
+    this.lineValue.placeholder = OTHER_LINES.find(([key]) => key === this.line.value)?.[1] ?? '';
+  }
+
+  private setLine(): void {
+    const text = this.lineValue.value.trim();
+    const { source } = this;
+    if (!source || text === '' || this.bench.selected.kind === 'sent' || this.testing) return;
+    this.fault.textContent = '';
+    this.bench.change(source, { [this.line.value]: text });
+  }
+
+  private get testing(): boolean {
+    return document.body.dataset.testing === 'yes';
   }
 
   private openForm(part: PartValue, first: string | null): void {
