@@ -146,6 +146,33 @@ export class CarrierPath {
     out[1] = (c[21] as number) + (qIm * dRe - qRe * dIm) * d2;
   }
 
+  /**
+   * How the admittance shown to the tuned circuit moves when the chords at `chords[from]` and the next move by dg and dk:
+   * real and imaginary part into `out[to]` and the next, taking no memory.
+   */
+  inputMove(chords: Float64Array, from: number, dg: number, dk: number, out: Float64Array, to: number): void {
+    const g = chords[from] as number;
+    const k = chords[from + 1] as number;
+    const c = this.c;
+    const gk = g * k;
+    // slopes of determinant and numerator along the move
+    const sRe = dg * ((c[0] as number) + k * (c[4] as number)) + dk * ((c[2] as number) + g * (c[4] as number));
+    const sIm = dg * ((c[1] as number) + k * (c[5] as number)) + dk * ((c[3] as number) + g * (c[5] as number));
+    const tRe = dg * ((c[14] as number) + k * (c[18] as number)) + dk * ((c[16] as number) + g * (c[18] as number));
+    const tIm = dg * ((c[15] as number) + k * (c[19] as number)) + dk * ((c[17] as number) + g * (c[19] as number));
+    const dRe = 1 + g * (c[0] as number) + k * (c[2] as number) + gk * (c[4] as number);
+    const dIm = g * (c[1] as number) + k * (c[3] as number) + gk * (c[5] as number);
+    const qRe = g * (c[14] as number) + k * (c[16] as number) + gk * (c[18] as number);
+    const qIm = g * (c[15] as number) + k * (c[17] as number) + gk * (c[19] as number);
+    const d2 = 1 / (dRe * dRe + dIm * dIm);
+    const yRe = (qRe * dRe + qIm * dIm) * d2;
+    const yIm = (qIm * dRe - qRe * dIm) * d2;
+    const re = tRe - yRe * sRe + yIm * sIm;
+    const im = tIm - yRe * sIm - yIm * sRe;
+    out[to] = (re * dRe + im * dIm) * d2;
+    out[to + 1] = (im * dRe - re * dIm) * d2;
+  }
+
   /** Complex ratios V_g/E and V_p/E, and the admittance the stage shows to the tuned circuit, S. */
   phasors(g: number, k: number): { grid: Complex; plate: Complex; input: Complex } {
     const d = this.determinant(g, k);

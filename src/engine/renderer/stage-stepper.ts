@@ -4,6 +4,7 @@ import type { StageLaws } from '../circuits/stage-currents.ts';
 import { CHORD, CHORD_BY_A, CHORD_BY_X, MEAN, MEAN_BY_A, MEAN_BY_X } from '../tubes/cycle-average.ts';
 import { PLATE_KNEE_VOLTS } from '../tubes/tube.ts';
 import { forecastWeights, planStep, STAGES, type StepPlan } from './implicit-rule.ts';
+import { TankNewton } from './tank-newton.ts';
 import { TankStep } from './tank-step.ts';
 
 /** Past this plate voltage the knee factor is 1 to the last bit. */
@@ -32,7 +33,9 @@ const LEAST_PLATE_SHARE = 0.1;
 /** Slopes are taken anew when the stage has moved this far, V: a third of the shortest e-fold of a grid law. */
 const STALE_VOLTS = 0.03;
 /** Most rounds of stage and coil in one step; one is the rule, two or three where a strong carrier swings widely. */
-const MOST_ROUNDS = 12;
+const MOST_ROUNDS = 16;
+/** Rounds after which every one takes the stage's slopes anew. */
+const FRESH_ROUNDS = 2;
 /** Equations of a step: grid and plate at every stage. */
 const SIZE = 2 * STAGES;
 
@@ -64,6 +67,7 @@ export class StageStepper {
   readonly drive = new Float64Array(STAGES);
   /** Coil as built; null for a stiff source. */
   readonly tank: TankStep | null;
+  private readonly newton: TankNewton | null;
   /** What is heard at half of the last step, V, weighted; and at its end. */
   readonly heard = new Float64Array(2);
   private readonly laws: StageLaws;
@@ -123,6 +127,10 @@ export class StageStepper {
     this.z = new Float64Array(this.plan.size);
     this.zNext = new Float64Array(this.plan.size);
     this.tank = rest.tuned.tank === null ? null : new TankStep(rest, rest.tuned.tank);
+    const { portFromCurrent } = this.plan;
+    const { drive, w, ag, au, chord, chordSlope, peak, blend, inverse } = this;
+    const slopes = { drive, w, ag, au, chord, chordSlope, peak, blend, inverse, portFromCurrent };
+    this.newton = this.tank === null ? null : new TankNewton(this.tank, rest.path, slopes);
     this.reset();
   }
 
@@ -182,7 +190,7 @@ export class StageStepper {
       for (let c = 0; c < n; c++) sum += (plan.portFromState[r * n + c] as number) * (z[c] as number);
       open[r] = sum;
     }
-    if (this.tank) this.solveWithTank(this.tank);
+    if (this.tank && this.newton) this.solveWithTank(this.tank, this.newton);
     else {
       this.forecast();
       this.solve();
@@ -205,27 +213,24 @@ export class StageStepper {
   }
 
   /**
-   * Stage and coil together: the detector's admittance is forecast, the stage solved under the envelope that follows, and
-   * both repeated while the admittance that comes out still moves the envelope.
+   * Stage and coil together: the detector's admittance is forecast and the stage solved under the envelope that follows;
+   * where the admittance that comes out still moves the envelope, Newton's moves of both follow, a round each.
    */
-  private solveWithTank(tank: TankStep): void {
+  private solveWithTank(tank: TankStep, newton: TankNewton): void {
     const { envelope, admittance, input, peak } = tank;
-    const { drive, ag, au, y, chord, at } = this;
+    const { drive, y, chord, at } = this;
     tank.forecast(this.weights);
     tank.solve();
-    for (let round = 0; round < MOST_ROUNDS; round++) {
+    let agreed = false;
+    for (let round = 0; round < MOST_ROUNDS && !agreed; round++) {
       for (let s = 0; s < STAGES; s++) {
         const re = envelope[2 * s] as number;
         const im = envelope[2 * s + 1] as number;
-        const before = drive[s] as number;
-        const now = peak * Math.sqrt(re * re + im * im);
-        drive[s] = now;
-        if (round > 0 && before > 0) {
-          ag[s] = ((ag[s] as number) * now) / before;
-          au[s] = ((au[s] as number) * now) / before;
-        }
+        drive[s] = peak * Math.sqrt(re * re + im * im);
       }
       if (round === 0) this.forecast();
+      // a slope that is too small by half would throw the next move as far the other way
+      if (round > FRESH_ROUNDS) this.kept.fill(Number.POSITIVE_INFINITY);
       this.solve();
       let moved = 0;
       for (let s = 0; s < STAGES; s++) {
@@ -240,9 +245,9 @@ export class StageStepper {
         admittance[2 * s] = yRe;
         admittance[2 * s + 1] = yIm;
       }
-      if (moved < tank.most) break;
-      tank.solve();
+      agreed = moved < tank.most || newton.step();
     }
+    if (!agreed) this.unsettled++;
     tank.advance();
   }
 

@@ -3,7 +3,7 @@ import type { Tank } from '../circuits/tuned-circuit.ts';
 import { STAGES } from './implicit-rule.ts';
 
 /** Change of the envelope, re its rest value, that ends the rounds of stage and coil: far below what is heard. */
-const ENVELOPE_SHARE = 5e-6;
+export const ENVELOPE_SHARE = 5e-6;
 /** Numbers in a row of the coil's equations: a complex number a stage and the right-hand side. */
 const ROW = 2 * (STAGES + 1);
 

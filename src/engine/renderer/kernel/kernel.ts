@@ -2,6 +2,7 @@ import type { RestPoint } from '../../circuits/rest-point.ts';
 import type { CycleTable } from '../../tubes/cycle-table.ts';
 import type { FilterBank } from '../resampling.ts';
 import type { StageStepper } from '../stage-stepper.ts';
+import { ENVELOPE_SHARE } from '../tank-step.ts';
 import { bytesFromBase64 } from './base64.ts';
 import { KERNEL_BASE64 } from './code.ts';
 import * as L from './layout.ts';
@@ -135,7 +136,7 @@ export class Kernel {
     const { tank } = stepper;
     if (tank) {
       const { input, perSiemensSecond, most } = tank;
-      m.set([perSiemensSecond, input.re, input.im, most, 0, 1], L.TANK);
+      m.set([perSiemensSecond, input.re, input.im, most, ENVELOPE_SHARE, 1], L.TANK);
       m.set(tank.weights, L.TANK_WEIGHTS);
     }
     m.set(byColumns(plan.portFromState, 6, n), L.PORT_FROM_STATE);

@@ -60,7 +60,7 @@ export const PAST = 284;
 export const RESULT = 300;
 /** Counts: passes, unsettled, steps, quick. */
 export const COUNTS = 306;
-// coil as built: chords 6, their slopes 5 a stage; κ, rest admittance, share that ends the rounds, reach, whether there is one;
+// coil as built: chords 6, their slopes 5 a stage; κ, rest admittance, admittance's move that ends the rounds, the envelope's, whether there is one;
 // weights of the pull 18, envelope without it 6, with it 6, admittance less that at rest 6 and its past points
 export const CHORD = 310;
 export const CHORD_SLOPE = 316;
@@ -72,9 +72,17 @@ export const PULL = 368;
 export const PULL_PAST = 374;
 /** Scratch for the coil's three complex equations, rows of four complex numbers. */
 export const TANK_ROWS = 382;
+// Newton on coil and stage: for a volt more at each stage the moves of port volts, peaks and admittance, 6 numbers each,
+// direction of the envelope at each stage, its move, six real equations in rows of eight
+export const BY_VOLTS = 408;
+export const BY_PEAKS = 426;
+export const BY_ADMITTANCE = 444;
+export const ALONG = 462;
+export const TANK_MOVE = 468;
+export const NEWTON_ROWS = 474;
 // network: state followed by currents, next state, constants; matrices column by column: ports from state 6 × n, next
 // state with the output at half a step from state and currents
-export const STATE = 408;
+export const STATE = 522;
 export const NEXT = STATE + MOST_UNKNOWNS + 6;
 export const CONSTANT = NEXT + MOST_ROWS;
 export const PORT_FROM_STATE = CONSTANT + MOST_ROWS;
