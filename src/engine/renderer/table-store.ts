@@ -25,7 +25,10 @@ export class TableStore {
     if (rest.circuit.detector.law !== 'tube') return rest.laws;
     const law = rest.circuit.tube.law;
     const { grid, cathode } = portLaws(rest.circuit);
-    const carrier = widen(1.1 * rest.tuned.carrierPeakVolts * (1 + modulation));
+    const { carrierPeakVolts, tank } = rest.tuned;
+    // behind a coil a plate that runs out of volts at a crest lets go of it, up to the level with no detector at all
+    const open = tank === null ? 0 : Math.SQRT2 * rest.circuit.station.levelVoltsRms;
+    const carrier = widen(1.1 * Math.max(carrierPeakVolts, open) * (1 + modulation));
     const cathodeTop = Math.max(2, law.phi) + rest.circuit.plate.supplyVolts / law.mu + 2 * carrier + 2;
     const { diode } = rest.circuit.detector;
     const gridName = diode ? `diode ${JSON.stringify(diode.law)}` : `grid ${law.Gg} ${law.Cg} ${law.xi}`;
