@@ -14,7 +14,7 @@ import { programmeFrom } from '../../src/engine/station/programme.ts';
 import { listVariants } from '../../src/list/variants.ts';
 import { readWav } from '../../src/results/wav-read.ts';
 import { writeWav } from '../../src/results/wav-write.ts';
-import { medianSeconds } from './median.ts';
+import { medianClockSeconds, medianSeconds } from './median.ts';
 import { againstOde } from './ode-yardstick.ts';
 
 // the bundle lies in out/
@@ -104,7 +104,7 @@ const stiffRest = restPoint(circuitOf({ 'tuned circuit.loaded Q': '40' }));
     `${(seconds / took).toFixed(0)} × real time`,
     `${((everyCycle * seconds) / took).toFixed(0)}`,
   );
-  const ode = againstOde(stiffRest, 1e-4);
+  const ode = await againstOde(stiffRest, 1e-4);
   say(
     'the same equations by a general-purpose ODE package, per second of programme',
     `${ode.odeSeconds.toFixed(0)} s, ${(ode.odeSeconds / ode.rendererSeconds).toFixed(0)} × the renderer's`,
@@ -122,7 +122,7 @@ for (const length of [1, 10, 60]) {
 
 const folder = mkdtempSync(join(tmpdir(), 'presolder-bench-'));
 const run = (...args: string[]) =>
-  medianSeconds(5, () => void spawnSync(process.execPath, [command, ...args], { cwd: folder }));
+  medianClockSeconds(5, () => void spawnSync(process.execPath, [command, ...args], { cwd: folder }));
 say('--help, whole process', `${(1000 * (await run('--help'))).toFixed(0)} ms`);
 say('respond, whole process', `${(1000 * (await run('respond'))).toFixed(0)} ms`);
 const whole = await run('render', clipPath, '--out', 'one', '--quiet');
@@ -142,7 +142,7 @@ rmSync(folder, { recursive: true, force: true });
 const lines = [
   `Node ${process.version}, ${cpus().length} × ${cpus()[0]?.model ?? 'unknown processor'}`,
   '',
-  '| what | figure | every cycle = 1 |',
+  '| what (processor time; whole processes by the clock) | figure | every cycle = 1 |',
   '| --- | ---: | ---: |',
   ...rows.map((row) => `| ${row.join(' | ')} |`),
 ];

@@ -7,6 +7,7 @@ import { referenceSource } from '../../src/engine/proof/reference-request.ts';
 import { runReference } from '../../src/engine/reference/run-reference.ts';
 import { DetectorRenderer } from '../../src/engine/renderer/detector-renderer.ts';
 import { TableStore } from '../../src/engine/renderer/table-store.ts';
+import { cpuSeconds, medianSeconds } from './median.ts';
 
 /** The package brings a source of its own that the type checker trips over, so it is loaded as what it is. */
 interface OdeSolver {
@@ -36,16 +37,18 @@ export interface YardstickFigures {
  *
  * @param rest  a circuit with a stiff source and a resistor load, so that every unknown has a derivative
  */
-export function againstOde(rest: RestPoint, tolerance: number): YardstickFigures {
+export async function againstOde(rest: RestPoint, tolerance: number): Promise<YardstickFigures> {
   const run = runReference(
     rest.circuit,
     { audioHertz: TONE_HERTZ, modulation: DEPTH, source: referenceSource(rest) },
     { settleSeconds: SETTLE_SECONDS, periods: 1 },
   );
   const reference = run.output.peaks[1] as number;
-  const started = performance.now();
-  const byOde = odeTone(rest, tolerance);
-  const odeSeconds = (performance.now() - started) / 1000 / (SETTLE_SECONDS + 1 / TONE_HERTZ);
+  let byOde = 0;
+  const odeRun = await cpuSeconds(() => {
+    byOde = odeTone(rest, tolerance);
+  });
+  const odeSeconds = odeRun / (SETTLE_SECONDS + 1 / TONE_HERTZ);
 
   const rate = 48_000;
   const laws = new TableStore().lawsFor(rest, 1);
@@ -59,13 +62,11 @@ export function againstOde(rest: RestPoint, tolerance: number): YardstickFigures
   const output = new Float64Array(frames);
   renderer.process(input, output, frames);
   const byRenderer = harmonics(output.subarray(from), 1, 2).amplitudes[1] as number;
-  // timed over a second of it, since one period is too short for the clock
+  // measured over a second of it, since one period is too short for the clock
   const long = new Float64Array(rate).map((_, n) => input[n % input.length] as number);
   const rendered = new Float64Array(rate);
   renderer.process(long, rendered, rate);
-  const again = performance.now();
-  renderer.process(long, rendered, rate);
-  const rendererSeconds = (performance.now() - again) / 1000;
+  const rendererSeconds = await medianSeconds(5, () => renderer.process(long, rendered, rate));
   const decibels = (value: number): number => 20 * Math.log10(value / reference);
   return { odeSeconds, rendererSeconds, odeDecibels: decibels(byOde), rendererDecibels: decibels(byRenderer) };
 }
