@@ -83,6 +83,12 @@ function describeInBrowser(path: string): void {
     const wholeHeard = (page: Page): Promise<void> =>
       until(page, "!document.querySelector('#heard-now').textContent.includes('rendering')");
 
+    /** Presses play and waits until something is heard: the audio thread may take its time to start. */
+    async function play(page: Page): Promise<void> {
+      await page.click('#play');
+      await until(page, "parseFloat(document.querySelector('#clock').textContent) > 0");
+    }
+
     async function saved(page: Page, control: string): Promise<Buffer> {
       const [download] = await Promise.all([page.waitForEvent('download'), page.click(control)]);
       return readFileSync(await download.path());
@@ -117,7 +123,7 @@ function describeInBrowser(path: string): void {
         await page.keyboard.press(key);
         await wholeHeard(page);
       }
-      await page.click('#play');
+      await play(page);
       for (const key of ['2', '3', '4']) {
         await page.waitForTimeout(300);
         await page.keyboard.press(key);
@@ -182,7 +188,7 @@ function describeInBrowser(path: string): void {
       await page.keyboard.press('2');
       // round and round, so that no machine is too slow for the clip
       await page.keyboard.press('l');
-      await page.click('#play');
+      await play(page);
       await page.focus('[data-key="plate.bypass"]');
       expect(await page.getAttribute('[data-key="plate.bypass"]', 'aria-valuetext')).toBe('1 nF');
       await page.keyboard.press('ArrowDown');
