@@ -23,9 +23,14 @@ const COST_HEIGHT = 130;
 const GAP = 44;
 const HERTZ_LABELS = [20, 50, 100, 200, 500, 1000, 2000, 5000, 10_000, 20_000];
 
-/** Line styles of the page: a class for colour and dashes each. */
-export const LINE_STYLES = 8;
-export const lineClass = (index: number): string => `line-${(index % LINE_STYLES) + 1}`;
+/** Colours, and dashes, of the page's lines. */
+const STYLES = 8;
+
+/** Classes of a variant's line: colour and dashes are paired anew every eight, so that no two of 64 are alike. */
+export function lineClass(index: number): string {
+  const round = Math.floor(index / STYLES);
+  return `hue-${(index % STYLES) + 1} dash-${((index + round) % STYLES) + 1}`;
+}
 
 interface CurvePoint {
   readonly hertz: number;

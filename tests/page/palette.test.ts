@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { lineClass } from '../../src/page/response-drawing.ts';
 import { textOf } from '../guards/source-files.ts';
 
 type Three = readonly [number, number, number];
@@ -96,16 +97,20 @@ describe.each([
   });
 });
 
-it('no two line styles of a drawing have the same dashes', () => {
+describe('in black and white', () => {
   const css = textOf('src/page/page.css');
-  for (const [name, count] of [
-    ['line', 8],
-    ['cost', 4],
-  ] as const) {
-    const dashes = Array.from({ length: count }, (_, n) => {
-      const rule = new RegExp(`\\.${name}-${n + 1} \\{([^}]*)\\}`).exec(css)![1]!;
-      return /stroke-dasharray: ([^;]+)/.exec(rule)?.[1] ?? 'full';
-    });
-    expect(new Set(dashes).size).toBe(count);
-  }
+  const dashesOf = (name: string): string => {
+    const rule = new RegExp(`\\.${name} \\{([^}]*)\\}`).exec(css)?.[1] ?? '';
+    return /stroke-dasharray: ([^;]+)/.exec(rule)?.[1] ?? 'full';
+  };
+
+  it('eight lines, and the four of the costs, differ in their dashes', () => {
+    const eight = Array.from({ length: 8 }, (_, n) => dashesOf(lineClass(n).split(' ')[1]!));
+    expect(new Set(eight).size).toBe(8);
+    expect(new Set([1, 2, 3, 4].map((n) => dashesOf(`cost-${n}`))).size).toBe(4);
+  });
+
+  it('no two of as many variants as there can be look alike', () => {
+    expect(new Set(Array.from({ length: 24 }, (_, n) => lineClass(n))).size).toBe(24);
+  });
 });
