@@ -121,7 +121,11 @@ describe('a parts list that is none', () => {
     );
     await refused(['render', at('good.yaml'), large, ...out()], large, 'the clip comes first');
     rmSync(large);
-    await refused(['render', at('good.yaml'), ...out()], at('good.yaml'), 'and no clip; expected a clip before the parts list');
+    await refused(
+      ['render', at('good.yaml'), ...out()],
+      at('good.yaml'),
+      'and no clip; expected a clip before the parts list',
+    );
   });
 });
 
