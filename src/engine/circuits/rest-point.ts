@@ -58,10 +58,29 @@ function directPath(audio: AudioStage): DirectPath {
   };
 }
 
+/**
+ * Times that the stage may be worked out in one search for rest: a circuit that comes to rest takes some hundred, one
+ * that does not could go on for minutes.
+ */
+const MOST_EVALUATIONS = 5000;
+
+/** What is left of them. */
+interface Effort {
+  left: number;
+}
+
 /** Newton from a start; shortens a step that makes matters worse. Returns the residual in volts, or infinity. */
-function settle(stage: Stage, path: DirectPath, peak: number, w: [number, number], out: StageCurrents): number {
+function settle(
+  stage: Stage,
+  path: DirectPath,
+  peak: number,
+  w: [number, number],
+  out: StageCurrents,
+  effort: Effort,
+): number {
   const [r11, r12, r21, r22] = path.ohms;
   const error = (v: number, p: number): [number, number] => {
+    effort.left--;
     if (!stage.evaluate(v, p, peak, out)) return [Number.POSITIVE_INFINITY, Number.POSITIVE_INFINITY];
     return [
       v - path.open[0] + r11 * out.gridAmps + r12 * out.plateAmps,
@@ -69,7 +88,7 @@ function settle(stage: Stage, path: DirectPath, peak: number, w: [number, number
     ];
   };
   let [e1, e2] = error(w[0], w[1]);
-  for (let pass = 0; pass < 200; pass++) {
+  for (let pass = 0; pass < 200 && effort.left > 0; pass++) {
     const size = Math.hypot(e1, e2);
     if (size < 1e-12 * (1 + Math.abs(path.open[1]) + Math.abs(w[0]))) return size;
     const j11 = 1 + r11 * out.gridByGrid + r12 * out.plateByGrid;
@@ -97,10 +116,17 @@ function settle(stage: Stage, path: DirectPath, peak: number, w: [number, number
 }
 
 /** Finds the DC point for a given carrier at the tuned circuit by raising the carrier from nothing. */
-function restAtPeak(stage: Stage, path: DirectPath, peak: number, w: [number, number], out: StageCurrents): void {
+function restAtPeak(
+  stage: Stage,
+  path: DirectPath,
+  peak: number,
+  w: [number, number],
+  out: StageCurrents,
+  effort: Effort,
+): void {
   const goal = 1e-9 * (1 + Math.abs(path.open[1]));
   const start: [number, number] = [w[0], w[1]];
-  if (settle(stage, path, peak, start, out) <= goal) {
+  if (settle(stage, path, peak, start, out, effort) <= goal) {
     w[0] = start[0];
     w[1] = start[1];
     return;
@@ -108,17 +134,17 @@ function restAtPeak(stage: Stage, path: DirectPath, peak: number, w: [number, nu
   let reached = 0;
   let step = 0.25;
   let state: [number, number] = [Math.min(path.open[0], 0), 0.5 * path.open[1]];
-  settle(stage, path, 0, state, out);
+  settle(stage, path, 0, state, out, effort);
   while (reached < 1) {
     const next = Math.min(1, reached + step);
     const trial: [number, number] = [state[0], state[1]];
-    if (settle(stage, path, peak * next, trial, out) <= goal) {
+    if (settle(stage, path, peak * next, trial, out, effort) <= goal) {
       reached = next;
       state = trial;
       step *= 1.6;
     } else {
       step *= 0.5;
-      if (step < 1e-5) {
+      if (step < 1e-5 || effort.left <= 0) {
         throw new InputError({
           code: 'no-rest-point',
           where: 'circuit',
@@ -161,11 +187,12 @@ function solveRest(circuit: DetectorCircuit): RestPoint {
   const path = new CarrierPath(detectorCarrier(circuit), tubeLaws.mu);
   const w: [number, number] = [Math.min(direct.open[0], 0), 0.5 * direct.open[1]];
   const currents = emptyCurrents();
+  const effort: Effort = { left: MOST_EVALUATIONS };
   const quiet = new Stage(tubeLaws, path);
   let laws = tubeLaws;
   let quietPoint: QuietPoint | null = null;
   if (circuit.detector.law !== 'tube') {
-    restAtPeak(quiet, direct, 0, w, currents);
+    restAtPeak(quiet, direct, 0, w, currents, effort);
     quietPoint = {
       gridVolts: w[0],
       plateVolts: w[1],
@@ -180,7 +207,7 @@ function solveRest(circuit: DetectorCircuit): RestPoint {
   }
   const stage = new Stage(laws, path);
   const inputAt = (peak: number): Complex => {
-    restAtPeak(stage, direct, peak, w, currents);
+    restAtPeak(stage, direct, peak, w, currents, effort);
     return path.phasors(currents.gridChord, currents.tubeChord).input;
   };
   const tuned = loadTunedCircuit(circuit, inputAt);
@@ -226,7 +253,9 @@ export function restWith(rest: RestPoint, from: number | null, to: number | null
   const loaded = { ...audio, system: { ...audio.system, conductance } };
   const w: [number, number] = [rest.gridVolts, rest.plateVolts];
   const currents = emptyCurrents();
-  restAtPeak(new Stage(rest.laws, rest.path), directPath(loaded), rest.tuned.carrierPeakVolts, w, currents);
+  restAtPeak(new Stage(rest.laws, rest.path), directPath(loaded), rest.tuned.carrierPeakVolts, w, currents, {
+    left: MOST_EVALUATIONS,
+  });
   return allUnknowns(loaded, w, currents).unknowns;
 }
 

@@ -1,5 +1,6 @@
 import type { RestPoint } from '../circuits/rest-point.ts';
 import type { StageLaws } from '../circuits/stage-currents.ts';
+import { InputError } from '../errors.ts';
 import { DetectorRenderer, type Quality } from './detector-renderer.ts';
 
 /** A clip through one detector. */
@@ -14,6 +15,8 @@ export interface RenderedClip {
 }
 
 const BLOCK = 4096;
+/** Share of steps that may stay unsettled before there is nothing left to hear; a caution tells of fewer. */
+const MOST_UNSETTLED = 0.01;
 
 /**
  * Renders a whole clip: the detector starts at rest, the filters' delay is taken out.
@@ -85,11 +88,21 @@ function* clipBlocks(
       const value = output[n] as number;
       volts[at] = value;
       const size = Math.abs(value);
-      if (size > peakVolts) peakVolts = size;
+      // what is no number stays the peak
+      if (!(size <= peakVolts)) peakVolts = size;
     }
     yield Math.min(from + frames, modulation.length);
   }
   const { steps, passes, quick, unsettled } = renderer.counts;
+  if (!Number.isFinite(peakVolts) || unsettled > MOST_UNSETTLED * steps) {
+    throw new InputError({
+      code: 'no-sound',
+      where: 'circuit',
+      got: `a detector whose voltages did not settle at ${unsettled} of ${steps} moments of the sound`,
+      expected: 'values that it settles with',
+      hint: 'check level, leak, load and supply for a slipped decimal, or take --law tube',
+    });
+  }
   return {
     volts,
     peakVolts,
