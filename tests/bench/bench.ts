@@ -14,6 +14,7 @@ import { programmeFrom } from '../../src/engine/station/programme.ts';
 import { listVariants } from '../../src/list/variants.ts';
 import { readWav } from '../../src/results/wav-read.ts';
 import { writeWav } from '../../src/results/wav-write.ts';
+import { listenPaced } from './listen-paced.ts';
 import { medianClockSeconds, medianSeconds } from './median.ts';
 import { againstOde } from './ode-yardstick.ts';
 
@@ -118,6 +119,16 @@ for (const length of [1, 10, 60]) {
     renderClip(stiffRest, laws, stretch, 48_000);
   });
   say(`render ${length} s`, `${(length / took).toFixed(0)} × real time`);
+}
+
+{
+  const rest = restPoint(circuitOf({ 'plate.load': 'transformer 1:3', 'detector.tube': '76' }));
+  const laws = new TableStore().lawsFor(rest, 1);
+  const { share, dry, playedSeconds } = await listenPaced({ rest, laws, modulation: programme, gain: 1 }, 48_000, 60);
+  say(
+    `listen, transformer, tuned circuit, ${playedSeconds.toFixed(0)} s at the pace of the clock`,
+    `${(100 * share).toFixed(1)} % of a core, ran dry ${dry} times`,
+  );
 }
 
 const folder = mkdtempSync(join(tmpdir(), 'presolder-bench-'));
