@@ -36,6 +36,8 @@ const STALE_VOLTS = 0.03;
 const MOST_ROUNDS = 16;
 /** Rounds after which every one takes the stage's slopes anew. */
 const FRESH_ROUNDS = 2;
+/** Share of a round's move that the next may leave before rounds give way to Newton's. */
+const LEAST_GAIN = 0.05;
 /** Equations of a step: grid and plate at every stage. */
 const SIZE = 2 * STAGES;
 
@@ -68,6 +70,8 @@ export class StageStepper {
   /** Coil as built; null for a stiff source. */
   readonly tank: TankStep | null;
   private readonly newton: TankNewton | null;
+  /** Whether the detector's load has been met to grow so steeply with the carrier that bare rounds do not do. */
+  private steep = false;
   /** What is heard at half of the last step, V, weighted; and at its end. */
   readonly heard = new Float64Array(2);
   private readonly laws: StageLaws;
@@ -163,6 +167,7 @@ export class StageStepper {
     this.unsettled = 0;
     this.steps = 0;
     this.quick = 0;
+    this.steep = false;
     this.kept.fill(Number.POSITIVE_INFINITY);
     this.tank?.reset();
   }
@@ -213,20 +218,29 @@ export class StageStepper {
   }
 
   /**
-   * Stage and coil together: the detector's admittance is forecast and the stage solved under the envelope that follows;
-   * where the admittance that comes out still moves the envelope, Newton's moves of both follow, a round each.
+   * Stage and coil together: the detector's admittance is forecast and the stage solved under the envelope that follows.
+   * Where the admittance that comes out still moves the envelope, that is done again under it; from the first time on
+   * that such a round gains little, by Newton's moves of both, which cost half a pass more.
    */
   private solveWithTank(tank: TankStep, newton: TankNewton): void {
     const { envelope, admittance, input, peak } = tank;
-    const { drive, y, chord, at } = this;
+    const { drive, ag, au, y, chord, at } = this;
     tank.forecast(this.weights);
     tank.solve();
     let agreed = false;
+    let bare = false;
+    let last = Number.POSITIVE_INFINITY;
     for (let round = 0; round < MOST_ROUNDS && !agreed; round++) {
       for (let s = 0; s < STAGES; s++) {
         const re = envelope[2 * s] as number;
         const im = envelope[2 * s + 1] as number;
-        drive[s] = peak * Math.sqrt(re * re + im * im);
+        const before = drive[s] as number;
+        const now = peak * Math.sqrt(re * re + im * im);
+        drive[s] = now;
+        if (bare && before > 0) {
+          ag[s] = ((ag[s] as number) * now) / before;
+          au[s] = ((au[s] as number) * now) / before;
+        }
       }
       if (round === 0) this.forecast();
       // a slope that is too small by half would throw the next move as far the other way
@@ -245,7 +259,13 @@ export class StageStepper {
         admittance[2 * s] = yRe;
         admittance[2 * s + 1] = yIm;
       }
-      agreed = moved < tank.most || newton.step();
+      agreed = moved < tank.most;
+      if (agreed) break;
+      if (moved > LEAST_GAIN * last) this.steep = true;
+      last = moved;
+      bare = !this.steep;
+      if (bare) tank.solve();
+      else agreed = newton.step();
     }
     if (!agreed) this.unsettled++;
     tank.advance();

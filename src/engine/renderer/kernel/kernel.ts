@@ -197,6 +197,7 @@ export class Kernel {
     m.fill(Number.POSITIVE_INFINITY, L.KEPT, L.KEPT + 4);
     m.fill(0, L.COUNTS, L.COUNTS + 4);
     m.fill(0, L.PULL_PAST, L.PULL_PAST + 8);
+    m[L.STEEP] = 0;
     m[L.ENVELOPE_STATE] = 1;
     m[L.ENVELOPE_STATE + 1] = 0;
     m[L.ENVELOPE_STATE + 2] = 1;

@@ -80,9 +80,11 @@ export const BY_ADMITTANCE = 444;
 export const ALONG = 462;
 export const TANK_MOVE = 468;
 export const NEWTON_ROWS = 474;
+/** 1 once bare rounds of stage and coil have been met that gain little. */
+export const STEEP = 522;
 // network: state followed by currents, next state, constants; matrices column by column: ports from state 6 × n, next
 // state with the output at half a step from state and currents
-export const STATE = 522;
+export const STATE = 524;
 export const NEXT = STATE + MOST_UNKNOWNS + 6;
 export const CONSTANT = NEXT + MOST_ROWS;
 export const PORT_FROM_STATE = CONSTANT + MOST_ROWS;

@@ -596,10 +596,19 @@ function solveWithTank(): void {
   const peak = rd(L.REST_PEAK), restRe = rd(L.TANK + 1), restIm = rd(L.TANK + 2), most = rd(L.TANK + 3);
   envelopeUnder();
   let agreed = false;
+  let bare = false;
+  let last: f64 = Infinity;
   for (let round = 0; round < 16 && !agreed; round++) {
     for (let st = 0; st < 3; st++) {
+      const before = rd(L.DRIVE + st);
       const re = rd(L.TANK_ENVELOPE + 2 * st), im = rd(L.TANK_ENVELOPE + 1 + 2 * st);
-      wr(L.DRIVE + st, peak * sqrt(re * re + im * im));
+      const now = peak * sqrt(re * re + im * im);
+      wr(L.DRIVE + st, now);
+      if (bare && before > 0) {
+        const share = now / before;
+        wr(L.AG + st, rd(L.AG + st) * share);
+        wr(L.AU + st, rd(L.AU + st) * share);
+      }
     }
     if (round == 0) forecast();
     if (round > 2) wr(L.KEPT, Infinity);
@@ -615,7 +624,13 @@ function solveWithTank(): void {
       wr(L.PULL + 2 * st, yRe);
       wr(L.PULL + 1 + 2 * st, yIm);
     }
-    agreed = moved < most || newton();
+    agreed = moved < most;
+    if (agreed) break;
+    if (moved > 0.05 * last) wr(L.STEEP, 1);
+    last = moved;
+    bare = rd(L.STEEP) == 0;
+    if (bare) envelopeUnder();
+    else agreed = newton();
   }
   if (!agreed) wr(L.COUNTS + 1, rd(L.COUNTS + 1) + 1);
   for (let part = 0; part < 2; part++) {
