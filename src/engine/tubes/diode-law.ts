@@ -37,8 +37,9 @@ export function seriesDiodeLaw(saturationAmps: number, idealityVolts: number, se
       out[0] = e;
       out[1] = g * share;
       // with i' = g·s and s = 1/(1 + R·g): s' = −R·g'·s², g' = (g/V)·s
-      out[2] = (g * share ** 3) / idealityVolts;
-      out[3] = (g * share ** 4 * (1 - 2 * seriesOhms * g * share)) / idealityVolts ** 2;
+      const bend = (g * share * share * share) / idealityVolts;
+      out[2] = bend;
+      out[3] = (bend * share * (1 - 2 * seriesOhms * g * share)) / idealityVolts;
     },
   };
 }
