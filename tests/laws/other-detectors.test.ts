@@ -4,7 +4,7 @@ import type { DetectorCircuit } from '../../src/engine/circuits/circuit.ts';
 import { magnitude } from '../../src/engine/circuits/complex.ts';
 import { LinearResponse } from '../../src/engine/circuits/response.ts';
 import { restPoint } from '../../src/engine/circuits/rest-point.ts';
-import { proveTone } from '../../src/engine/proof/tone-proof.ts';
+import { proveTone, type ToneProof } from '../../src/engine/proof/tone-proof.ts';
 import { TableStore } from '../../src/engine/renderer/table-store.ts';
 import { coil, stiff } from './grid-leak-circuit.ts';
 import { expectProved, heardAt, OTHER_KINDS, plainCircuit, seededDetectors } from './other-detector-circuits.ts';
@@ -41,24 +41,27 @@ describe('where the carrier ripples on what it charges', () => {
     expectProved({ said: '', circuit: diode(1), toneHertz, depth }, tables);
   });
 
-  // the fundamental is 0.04 dB off, the second harmonic 1.30 % instead of 1.23 %: 5 % of its value, 3 % is the limit
-  it('diode, the same at 5 V', { fails: true }, () => {
-    expectProved({ said: '', circuit: diode(5), toneHertz: 400, depth: 0.8 }, tables);
-  });
-
-  it('infinite impedance, 20 kΩ, f·R·C 1, 530 kHz, 1 V', { fails: true }, () => {
-    expectProved({ said: '', circuit: follower, toneHertz: 400, depth: 0.8 }, tables);
-  });
-
-  it.each([
-    ['diode, 5 V', diode(5), 0.1, 0.08],
-    ['infinite impedance', follower, 0.3, 0.03],
-  ])('%s: no further off, and the result says so', (_, circuit, decibels, secondShare) => {
+  // the diode's fundamental is 0.04 dB off, its second harmonic 1.30 % instead of 1.23 %: 5 % of its value, 3 % is the limit;
+  // infinite impedance is 0.19 dB off, 0.1 dB is the limit
+  describe.each([
+    ['diode, the same at 5 V', diode(5), 0.1, 0.08],
+    ['infinite impedance, 20 kΩ, f·R·C 1, 530 kHz, 1 V', follower, 0.3, 0.03],
+  ])('%s', (_, circuit, decibels, secondShare) => {
     const rest = restPoint(circuit);
-    expect(averagingCautions(rest).map((caution) => caution.code)).toContain('ripple');
-    const proof = proveTone(rest, tables.lawsFor(rest, 0.8), 400, 0.8);
-    expect(Math.abs(proof.decibels)).toBeLessThan(decibels);
-    expect(Math.abs(proof.secondDifferencePercent)).toBeLessThan(secondShare * proof.reference.secondPercent);
+    let kept: ToneProof | undefined;
+    const proof = (): ToneProof => {
+      kept ??= proveTone(rest, tables.lawsFor(rest, 0.8), 400, 0.8);
+      return kept;
+    };
+
+    it('within the limits', { fails: true }, () => expect(proof().holds).toBe(true));
+
+    it('no further off, and the result says so', () => {
+      expect(averagingCautions(rest).map((caution) => caution.code)).toContain('ripple');
+      expect(Math.abs(proof().decibels)).toBeLessThan(decibels);
+      const second = proof().reference.secondPercent;
+      expect(Math.abs(proof().secondDifferencePercent)).toBeLessThan(secondShare * second);
+    });
   });
 });
 
