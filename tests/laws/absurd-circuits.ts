@@ -156,9 +156,11 @@ function soundFaults(clip: RenderedClip, { circuit }: ListedVariant): string[] {
  * More than any output can be: what supply and carrier at its deepest modulation hold, stepped up by every winding.
  * A winding that resonates gives several times the voltage put across it; a factor of 30 leaves room for its Q.
  */
-function mostVolts({ station, tunedCircuit, plate, output }: ListedVariant['circuit']): number {
+function mostVolts({ station, tunedCircuit, detector, tube, plate, output }: ListedVariant['circuit']): number {
   const crest = Math.SQRT2 * station.levelVoltsRms * (1 + station.modulation);
   const carrier = crest * (tunedCircuit.kind === 'coil' ? tunedCircuit.unloadedQ + 1 : 1);
   const ratio = plate.load.kind === 'transformer' ? Math.max(1, plate.load.ratio) : 1;
-  return 30 * (plate.supplyVolts + carrier + 1) * ratio * Math.max(1, output.matching?.ratio ?? 1);
+  // a textbook's plate is straight without end, and gives its gain of whatever the grid rectifies
+  const gain = detector.law === 'tube' ? 1 : 1 + tube.law.mu;
+  return 30 * (plate.supplyVolts + gain * carrier + 1) * ratio * Math.max(1, output.matching?.ratio ?? 1);
 }

@@ -17,8 +17,12 @@ const MOST_EXPONENT = 200;
 export function seriesDiodeLaw(saturationAmps: number, idealityVolts: number, seriesOhms: number): SmoothLaw {
   const junction = (v: number): number => {
     if (seriesOhms === 0) return Math.min(v, MOST_EXPONENT * idealityVolts);
-    // two upper bounds: all of v, and the junction alone at the current that R would let through
-    let w = v > 0 ? Math.min(v, idealityVolts * Math.log1p(v / seriesOhms / saturationAmps)) : v;
+    // two upper bounds: all of v, and the junction alone at the current that R would let through; backwards: none of v,
+    // and all of it less what the saturation current leaves on R
+    let w =
+      v > 0
+        ? Math.min(v, idealityVolts * Math.log1p(v / seriesOhms / saturationAmps))
+        : Math.min(0, v + seriesOhms * saturationAmps);
     for (let pass = 0; pass < 60; pass++) {
       const e = saturationAmps * Math.exp(Math.min(w / idealityVolts, MOST_EXPONENT));
       const step = (w + seriesOhms * (e - saturationAmps) - v) / (1 + (seriesOhms * e) / idealityVolts);
