@@ -57,7 +57,8 @@ function onThisThread(): WorkPool {
 
 async function onThreads(workers: number, file: string): Promise<WorkPool> {
   const { pool } = await import('workerpool');
-  const threads = pool(file, { workerType: 'thread', maxWorkers: workers });
+  // a thread at work hears no polite word: it is not waited for, so that Ctrl-C ends the command at once
+  const threads = pool(file, { workerType: 'thread', maxWorkers: workers, workerTerminateTimeout: 100 });
   let closed = false;
   return {
     workers,
