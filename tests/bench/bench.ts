@@ -1,9 +1,10 @@
 // One table of how fast things are: medians, and ratios to the carrier-cycle reference measured in the same run.
 import { spawnSync } from 'node:child_process';
-import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
+import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { cpus, tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
+import WavEncoder from 'wav-encoder';
 import { analyse } from '../../src/engine/circuits/analysis.ts';
 import { restPoint } from '../../src/engine/circuits/rest-point.ts';
 import { referenceSource } from '../../src/engine/proof/reference-request.ts';
@@ -112,7 +113,7 @@ const stiffRest = restPoint(circuitOf({ 'tuned circuit.loaded Q': '40' }));
     `error ${ode.odeDecibels.toFixed(4)} dB, renderer ${ode.rendererDecibels.toFixed(4)} dB`,
   );
 }
-for (const length of [1, 10, 60]) {
+for (const length of [1, 10, 60, 600]) {
   const stretch = Float64Array.from({ length: length * 48_000 }, (_, n) => programme[n % programme.length] as number);
   const laws = new TableStore().lawsFor(stiffRest, 1);
   const took = await medianSeconds(3, () => {
@@ -138,16 +139,38 @@ say('--help, whole process', `${(1000 * (await run('--help'))).toFixed(0)} ms`);
 say('respond, whole process', `${(1000 * (await run('respond'))).toFixed(0)} ms`);
 const whole = await run('render', clipPath, '--out', 'one', '--quiet');
 say('render one variant, whole process, files included', `${(seconds / whole).toFixed(0)} × real time`);
-const eight = await run(
-  'render',
-  clipPath,
-  '--bypass',
-  '47p,100p,150p,220p,330p,470p,1n,2n2',
-  '--out',
-  'eight',
-  '--quiet',
-);
-say('render eight variants, whole process, a variant', `${((8 * seconds) / eight).toFixed(0)} × real time`);
+for (const count of [2, 4, 8, 24]) {
+  const bypasses = Array.from({ length: count }, (_, k) => `${50 + 10 * k}p`).join();
+  const took = await run('render', clipPath, '--bypass', bypasses, '--out', `set ${count}`, '--quiet');
+  say(`render ${count} variants, whole process, a variant`, `${((count * seconds) / took).toFixed(0)} × real time`);
+}
+say('spread, 500 circuits, whole process', `${(await run('spread', '--runs', '500')).toFixed(1)} s`);
+{
+  // half an hour in stereo, two swelling tones apart
+  const half = 1800 * 48_000;
+  const channel = (hertz: number): Float32Array =>
+    Float32Array.from(
+      { length: half },
+      (_, n) => 0.4 * Math.sin((n * 2 * Math.PI * hertz) / 48_000) * Math.sin(n / 7919),
+    );
+  const stereo = WavEncoder.encode.sync(
+    { sampleRate: 48_000, channelData: [channel(440), channel(1234)] },
+    { bitDepth: 16, float: false, symmetric: true },
+  );
+  writeFileSync(join(folder, 'half-hour.wav'), new Uint8Array(stereo));
+  const peak = "process.on('exit',()=>console.error('peak',process.resourceUsage().maxRSS))";
+  const from = performance.now();
+  const { stderr } = spawnSync(
+    process.execPath,
+    ['--import', `data:text/javascript,${peak}`, command, 'render', 'half-hour.wav', '--out', 'half', '--quiet'],
+    { cwd: folder, encoding: 'utf8' },
+  );
+  const kilobytes = Number(/peak (\d+)/.exec(stderr)?.[1]);
+  say(
+    'render 30 min in stereo, whole process',
+    `${(1800 / ((performance.now() - from) / 1000)).toFixed(0)} × real time, ${(kilobytes / 1024).toFixed(0)} MB at most`,
+  );
+}
 rmSync(folder, { recursive: true, force: true });
 
 const lines = [

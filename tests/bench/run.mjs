@@ -19,6 +19,8 @@ await build({
   format: 'esm',
   target: 'node20',
   logLevel: 'warning',
+  // found in node_modules: out/ lies within the project
+  external: ['web-audio-api'],
   banner: {
     js: 'import { createRequire as presolderRequire } from "node:module"; const require = presolderRequire(import.meta.url);',
   },
