@@ -1,6 +1,5 @@
 import { createHash } from 'node:crypto';
 import { HEARING_NAMES } from '../engine/hearing/hearing-curves.ts';
-import { toMono } from '../engine/station/programme.ts';
 import { base64OfBytes, bytesOfSamples, losslessCoding } from '../page/clip-coding.ts';
 import type { PageData, Side } from '../page/page-data.ts';
 import { pageText, policyFor } from '../page/page-text.ts';
@@ -65,7 +64,7 @@ export function pageData(
 }
 
 function coded(clip: ReadSound, side: Side): { coding: ReturnType<typeof losslessCoding>; base64: string } {
-  const mono = toMono(clip.channels, side);
+  const mono = clip.mono(side);
   const coding = losslessCoding(mono);
   return { coding, base64: base64OfBytes(bytesOfSamples(mono, coding)) };
 }

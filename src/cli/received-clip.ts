@@ -17,6 +17,8 @@ export interface ToReceive {
   readonly others: OtherClips;
   readonly rateHertz: number;
   readonly quality: Quality;
+  /** No other variant needs the programme: its array may take the sound. */
+  readonly last?: boolean;
 }
 
 /** A clip as it comes out of a variant's detector, with what is on the air besides. */
@@ -29,7 +31,7 @@ export interface ReceivedClip {
 export async function receivedClip(
   rest: RestPoint,
   tables: TableStore,
-  { variant, programme, others, rateHertz, quality }: ToReceive,
+  { variant, programme, others, rateHertz, quality, last }: ToReceive,
   tell: (share: number) => Promise<void>,
 ): Promise<ReceivedClip> {
   const { modulation, before } = programme;
@@ -40,9 +42,9 @@ export async function receivedClip(
       rest,
       modulation.reduce((most, value) => Math.max(most, value), 0),
     );
-    const clip = await renderClipInTurns(rest, laws, modulation, rateHertz, quality, (done) =>
-      tell(done / modulation.length),
-    );
+    const onBlock = (done: number): Promise<void> => tell(done / modulation.length);
+    const into = last ? modulation : new Float64Array(modulation.length);
+    const clip = await renderClipInTurns(rest, laws, modulation, rateHertz, quality, onBlock, null, into);
     return { clip, onTheAir: null };
   }
   const otherClip = others.get(listed.otherClip ?? '') ?? null;

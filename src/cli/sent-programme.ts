@@ -1,6 +1,6 @@
 import { carrierOfClip, keyedCarrier } from '../engine/station/morse.ts';
 import { preEmphasise } from '../engine/station/pre-emphasis.ts';
-import { type Programme, programmeFrom, toMono } from '../engine/station/programme.ts';
+import { type Programme, programmeFrom } from '../engine/station/programme.ts';
 import type { ReadSound } from '../results/wav-read.ts';
 import type { RunVariant } from './list-input.ts';
 
@@ -30,13 +30,18 @@ export function sentProgramme(
   const found = kept.get(key);
   if (found) return found;
   const rateHertz = clip?.sampleRateHertz ?? TEXT_RATE_HERTZ;
-  const mono = (): Float64Array => toMono(clip?.channels ?? [], side);
+  const mono = (): Float64Array => clip?.mono(side) ?? new Float64Array(0);
   const made =
     keying === null
-      ? { ...programmeFrom(preEmphasise(mono(), rateHertz, preEmphasis, channelLimit), depth), before: 0 }
+      ? { ...sent(preEmphasise(mono(), rateHertz, preEmphasis, channelLimit), depth), before: 0 }
       : keyed(keying === 'clip' ? carrierOfClip(mono()) : keyedCarrier(keying, rateHertz, 'on the air.morse'));
   kept.set(key, made);
   return made;
+}
+
+/** The samples are this run's own: they become the modulation. */
+function sent(samples: Float64Array, depth: number): Programme {
+  return programmeFrom(samples, depth, samples);
 }
 
 function keyed(carrier: Float64Array): SentProgramme {

@@ -12,7 +12,8 @@ export interface SoundLevels {
 
 /**
  * One full scale for all variants, so that their level differences are kept (`level`), or gains that give all the
- * same loudness by ITU-R BS.1770 with no peak over −1 dB (`loudness`). A silent variant keeps gain 0.
+ * same loudness by ITU-R BS.1770 with no peak over −1 dB (`loudness`). A silent variant keeps gain 0. The clips' own arrays
+ * become the samples: half an hour of sound is not to lie in memory twice.
  */
 export function levelSounds(
   clips: readonly RenderedClip[],
@@ -21,7 +22,7 @@ export function levelSounds(
 ): SoundLevels {
   const largest = Math.max(0, ...clips.map((clip) => clip.peakVolts));
   const fullScaleVolts = largest > 0 ? largest / 10 ** (PEAK_DECIBELS / 20) : 1;
-  const flat = clips.map((clip) => clip.volts.map((volts) => volts / fullScaleVolts));
+  const flat = clips.map((clip) => scaled(clip.volts, (volts) => volts / fullScaleVolts));
   const loudness = flat.map((samples) => integratedLoudness([samples], rateHertz));
   const measured = clips.map(({ peakVolts }, k) => ({
     peak: peakVolts / fullScaleVolts,
@@ -37,8 +38,13 @@ export function levelSounds(
       return {
         gainDecibels,
         loudnessLufs: own === null ? null : own + gainDecibels,
-        samples: gainDecibels === 0 ? samples : samples.map((value) => value * factor),
+        samples: gainDecibels === 0 ? samples : scaled(samples, (value) => value * factor),
       };
     }),
   };
+}
+
+function scaled(samples: Float64Array, by: (value: number) => number): Float64Array {
+  for (let n = 0; n < samples.length; n++) samples[n] = by(samples[n] as number);
+  return samples;
 }

@@ -1,16 +1,22 @@
 import wavDecoder from 'wav-decoder';
+import { toMono } from '../engine/station/programme.ts';
 import { findWavData, truncatedHeader, type WavFormat } from './wav-chunks.ts';
 import { checkClipShape, fileFault, looksLikeText } from './wav-faults.ts';
 
 /** Sound as read from a file. Full scale is ±1; a float file may exceed it. */
 export interface ReadSound {
   readonly sampleRateHertz: number;
-  /** One array a channel, one or two of them, all of `frames` finite samples. */
+  /** One array a channel, one or two of them, all of `frames` finite samples; decoded anew each time it is asked for. */
   readonly channels: readonly Float64Array[];
   readonly frames: number;
   /** What was odd about the file yet did not prevent reading it, in plain words without the file's name. */
   readonly warnings: readonly string[];
+  /** Both sides summed, or the one asked for: an array of the caller's own, made without the channels in between. */
+  mono(side: 'both' | 'left' | 'right'): Float64Array;
 }
+
+/** Frames that are decoded at a time: half an hour in stereo would not fit beside its own copies. */
+const SEGMENT_FRAMES = 2 ** 18;
 
 /**
  * Reads a WAV file: 8-, 16-, 24- and 32-bit integer, 32- and 64-bit float, mono or stereo, 8 to 192 kHz.
@@ -36,13 +42,84 @@ export function readWav(bytes: Uint8Array, fileName: string): ReadSound {
   if (frames === 0) throw fileFault('clip-no-samples', fileName, 'no sound', 'at least one sample');
   const odd = dataBytes - frames * frameBytes;
   const all = odd > 0 && warnings.length === 0 ? [`its last ${odd} bytes are no whole sample and were left out`] : [];
-  const canonical = canonicalWav(format, bytes.subarray(dataStart, dataStart + frames * frameBytes));
-  const decoded = wavDecoder.decode.sync(canonical, { symmetric: true });
-  return finiteSound(decoded.channelData, format.sampleRateHertz, [...warnings, ...all]);
+  const data = bytes.subarray(dataStart, dataStart + frames * frameBytes);
+  return new WavSound(format, data, frames, [...warnings, ...all]);
+}
+
+/** A WAV file's samples, decoded a segment at a time when they are asked for. */
+class WavSound implements ReadSound {
+  readonly sampleRateHertz: number;
+  readonly frames: number;
+  readonly warnings: readonly string[];
+  private readonly format: WavFormat;
+  private readonly data: Uint8Array;
+
+  constructor(format: WavFormat, data: Uint8Array, frames: number, warnings: readonly string[]) {
+    this.format = format;
+    this.data = data;
+    this.frames = frames;
+    this.sampleRateHertz = format.sampleRateHertz;
+    let replaced = 0;
+    if (format.coding !== 'integer') {
+      this.each((_, __, odd) => {
+        replaced += odd;
+      });
+    }
+    this.warnings = withReplaced(warnings, replaced);
+  }
+
+  get channels(): readonly Float64Array[] {
+    const whole = Array.from({ length: this.format.channelCount }, () => new Float64Array(this.frames));
+    this.each((segment, from) => {
+      for (const [k, samples] of segment.entries()) whole[k]?.set(samples, from);
+    });
+    return whole;
+  }
+
+  mono(side: 'both' | 'left' | 'right'): Float64Array {
+    const whole = new Float64Array(this.frames);
+    this.each((segment, from) => {
+      whole.set(
+        toMono(
+          segment.map((samples) => Float64Array.from(samples)),
+          side,
+        ),
+        from,
+      );
+    });
+    return whole;
+  }
+
+  private each(use: (segment: readonly Float32Array[], from: number, replaced: number) => void): void {
+    for (let from = 0; from < this.frames; from += SEGMENT_FRAMES) {
+      const to = Math.min(this.frames, from + SEGMENT_FRAMES);
+      const bytes = this.data.subarray(from * this.format.frameBytes, to * this.format.frameBytes);
+      const { channelData } = wavDecoder.decode.sync(canonicalWav(this.format, bytes), { symmetric: true });
+      use(channelData, from, replaceOdd(channelData));
+    }
+  }
+}
+
+/** Puts 0 in place of every sample that is no finite number; how many there were. */
+function replaceOdd(channels: readonly Float32Array[]): number {
+  let replaced = 0;
+  for (const samples of channels) {
+    for (let n = 0; n < samples.length; n++) {
+      if (Number.isFinite(samples[n])) continue;
+      samples[n] = 0;
+      replaced++;
+    }
+  }
+  return replaced;
+}
+
+function withReplaced(warnings: readonly string[], replaced: number): string[] {
+  const odd = replaced === 0 ? [] : [`${replaced} ${replaced === 1 ? 'sample is' : 'samples are'} no number; set to 0`];
+  return [...warnings, ...odd];
 }
 
 /**
- * Copies decoded channels, with 0 in place of every sample that is no finite number and a warning with their count.
+ * Takes over decoded channels, with 0 in place of every sample that is no finite number and a warning with their count.
  *
  * @param channels  one array a channel, all of one length
  * @param warnings  those already given
@@ -52,19 +129,15 @@ export function finiteSound(
   sampleRateHertz: number,
   warnings: readonly string[],
 ): ReadSound {
-  let replaced = 0;
-  const clean = channels.map((channel) => {
-    const samples = Float64Array.from(channel);
-    for (let n = 0; n < samples.length; n++) {
-      if (!Number.isFinite(samples[n])) {
-        samples[n] = 0;
-        replaced++;
-      }
-    }
-    return samples;
-  });
-  const odd = replaced === 0 ? [] : [`${replaced} ${replaced === 1 ? 'sample is' : 'samples are'} no number; set to 0`];
-  return { sampleRateHertz, channels: clean, frames: clean[0]?.length ?? 0, warnings: [...warnings, ...odd] };
+  const replaced = replaceOdd(channels);
+  const clean = channels.map((samples) => Float64Array.from(samples));
+  return {
+    sampleRateHertz,
+    channels: clean,
+    frames: clean[0]?.length ?? 0,
+    warnings: withReplaced(warnings, replaced),
+    mono: (side) => toMono(clean, side),
+  };
 }
 
 function checkContainer(bytes: Uint8Array, fileName: string): void {

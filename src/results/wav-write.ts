@@ -25,6 +25,12 @@ export interface WrittenWav {
 
 const BYTES_PER_SAMPLE: Readonly<Record<WavCoding, number>> = { '16': 2, '24': 3, '32f': 4 };
 
+/** Samples that are encoded at a time: half an hour would not fit beside its own copies. */
+const SEGMENT_SAMPLES = 2 ** 18;
+
+/** Bytes of the encoder's header. */
+const PLAIN_HEADER = 44;
+
 /** Largest RIFF size that its 32-bit field can hold. */
 const LARGEST_RIFF_SIZE = 0xffff_ffff;
 
@@ -46,18 +52,29 @@ export function writeWav(sound: WavToWrite): WrittenWav {
   }
   const information = sound.comment === '' ? new Uint8Array(0) : informationList(sound.comment);
   const fileBytes = wavFileBytes(samples.length, format, information.length);
-  const { steps, clippedSamples } = format === '32f' ? toFloat32(samples) : toSteps(sound);
-  const plain = new Uint8Array(
-    wavEncoder.encode.sync(
-      { sampleRate: sampleRateHertz, channelData: [steps] },
-      { bitDepth: format === '16' ? 16 : format === '24' ? 24 : 32, float: format === '32f', symmetric: true },
-    ),
-  );
+  const encoded = (steps: Float32Array): Uint8Array =>
+    new Uint8Array(
+      wavEncoder.encode.sync(
+        { sampleRate: sampleRateHertz, channelData: [steps] },
+        { bitDepth: format === '16' ? 16 : format === '24' ? 24 : 32, float: format === '32f', symmetric: true },
+      ),
+    );
   const bytes = new Uint8Array(fileBytes);
   const view = new DataView(bytes.buffer);
-  if (format === '32f') copyWithFact(plain, bytes, samples.length);
-  else bytes.set(plain);
+  const header = encoded(new Float32Array(0));
+  if (format === '32f') copyWithFact(header, bytes, samples.length);
+  else bytes.set(header);
+  const body = format === '32f' ? 58 : PLAIN_HEADER;
+  const dither = format === '16' && sound.ditherSeed !== null ? triangularDither(sound.ditherSeed) : () => 0;
+  let clippedSamples = 0;
+  for (let from = 0; from < samples.length; from += SEGMENT_SAMPLES) {
+    const segment = samples.subarray(from, from + SEGMENT_SAMPLES);
+    const coded = format === '32f' ? toFloat32(segment, from) : toSteps(segment, from, format, dither);
+    clippedSamples += coded.clippedSamples;
+    bytes.set(encoded(coded.steps).subarray(PLAIN_HEADER), body + from * BYTES_PER_SAMPLE[format]);
+  }
   view.setUint32(4, fileBytes - 8, true);
+  view.setUint32(body - 4, samples.length * BYTES_PER_SAMPLE[format], true);
   bytes.set(information, fileBytes - information.length);
   return { bytes, clippedSamples };
 }
@@ -87,14 +104,17 @@ export function wavFileBytes(frames: number, format: WavCoding, informationBytes
  * Samples on the steps of the integer format, as floats that the encoder turns into exactly those integers: its own
  * rounding would work on the 32-bit float of a sample, half a step coarse near full scale, and push all halves up.
  */
-function toSteps(sound: WavToWrite): { readonly steps: Float32Array; readonly clippedSamples: number } {
-  const { samples, format, ditherSeed } = sound;
+function toSteps(
+  samples: Float64Array,
+  from: number,
+  format: '16' | '24',
+  dither: () => number,
+): { readonly steps: Float32Array; readonly clippedSamples: number } {
   const scale = format === '16' ? 2 ** 15 : 2 ** 23;
-  const dither = format === '16' && ditherSeed !== null ? triangularDither(ditherSeed) : () => 0;
   const steps = new Float32Array(samples.length);
   let clippedSamples = 0;
   for (let n = 0; n < samples.length; n++) {
-    const sample = finite(samples[n]!, n);
+    const sample = finite(samples[n]!, from + n);
     if (sample > 1 || sample < -1) clippedSamples++;
     const step = roundHalfToEven(sample * scale + dither());
     steps[n] = Math.max(-scale, Math.min(scale - 1, step)) / scale;
@@ -102,12 +122,15 @@ function toSteps(sound: WavToWrite): { readonly steps: Float32Array; readonly cl
   return { steps, clippedSamples };
 }
 
-function toFloat32(samples: Float64Array): { readonly steps: Float32Array; readonly clippedSamples: number } {
+function toFloat32(
+  samples: Float64Array,
+  from: number,
+): { readonly steps: Float32Array; readonly clippedSamples: number } {
   const steps = new Float32Array(samples.length);
   for (let n = 0; n < samples.length; n++) {
-    finite(samples[n]!, n);
+    finite(samples[n]!, from + n);
     steps[n] = samples[n]!;
-    finite(steps[n]!, n);
+    finite(steps[n]!, from + n);
   }
   return { steps, clippedSamples: 0 };
 }

@@ -66,10 +66,10 @@ export async function render(
   const workers = workersFor(options, variants.length, seconds);
   const pool = workers > 1 ? await openPool(workers) : null;
   try {
-    const given = variants.map((variant) => {
+    const given = variants.map((variant, k) => {
       const programme = sentProgramme(variant, clip, programmes);
       limitedSamples = Math.max(limitedSamples, programme.limitedSamples);
-      return { variant, programme, others, rateHertz, quality };
+      return { variant, programme, others, rateHertz, quality, last: pool === null && k === variants.length - 1 };
     });
     // sounds on other threads, when there are any, while this one works out the tables
     const sounds = pool === null ? null : given.map((one) => pool.run('sound', one));

@@ -65,27 +65,37 @@ function mean(values: readonly number[]): number {
 function blockPowers(channels: readonly Float64Array[], sampleRateHertz: number): number[] {
   const frames = channels[0]?.length ?? 0;
   const block = Math.round(BLOCK_SECONDS * sampleRateHertz);
-  const running = new Float64Array(frames + 1);
-  for (const channel of channels) addRunningEnergy(channel, sampleRateHertz, running);
-  const powers: number[] = [];
+  const starts: number[] = [];
   for (let k = 0; ; k++) {
     const start = Math.round(k * HOP_SECONDS * sampleRateHertz);
-    if (start + block > frames) return powers;
-    // a difference of running sums may fall below zero by rounding after a loud passage
-    powers.push(Math.max(0, running[start + block]! - running[start]!) / block);
+    if (start + block > frames) break;
+    starts.push(start);
   }
+  const powers = starts.map(() => 0);
+  for (const channel of channels) addBlockEnergies(channel, sampleRateHertz, starts, block, powers);
+  return powers.map((energy) => energy / block);
 }
 
-/** Adds the energy of the K-weighted channel up to each frame; one pass, no filtered copy of the clip. */
-function addRunningEnergy(channel: Float64Array, sampleRateHertz: number, running: Float64Array): void {
+/** Adds each block's energy of the K-weighted channel; one pass, no filtered copy of the clip. */
+function addBlockEnergies(
+  channel: Float64Array,
+  sampleRateHertz: number,
+  starts: readonly number[],
+  block: number,
+  energies: number[],
+): void {
   const [b0, b1, b2, a1, a2] = kSection('shelf', sampleRateHertz);
   const [c0, c1, c2, d1, d2] = kSection('high-pass', sampleRateHertz);
+  const before = starts.map(() => 0);
+  let begun = 0;
+  let ended = 0;
   let s1 = 0;
   let s2 = 0;
   let t1 = 0;
   let t2 = 0;
   let energy = 0;
   for (let n = 0; n < channel.length; n++) {
+    if (n === starts[begun]) before[begun++] = energy;
     const x = channel[n]!;
     const y = b0 * x + s1;
     s1 = b1 * x - a1 * y + s2;
@@ -94,6 +104,10 @@ function addRunningEnergy(channel: Float64Array, sampleRateHertz: number, runnin
     t1 = c1 * y - d1 * z + t2;
     t2 = c2 * y - d2 * z;
     energy += z * z;
-    running[n + 1] = running[n + 1]! + energy;
+    if (ended < starts.length && n + 1 === starts[ended]! + block) {
+      // a difference of running sums may fall below zero by rounding after a loud passage
+      energies[ended] = energies[ended]! + Math.max(0, energy - before[ended]!);
+      ended++;
+    }
   }
 }

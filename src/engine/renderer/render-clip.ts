@@ -34,7 +34,8 @@ export function renderClip(
   onBlock: (framesDone: number) => void = () => {},
   quadrature: Float64Array | null = null,
 ): RenderedClip {
-  const blocks = clipBlocks(rest, laws, modulation, clipRateHertz, quality, quadrature);
+  const volts = new Float64Array(modulation.length);
+  const blocks = clipBlocks(rest, laws, modulation, clipRateHertz, quality, quadrature, volts);
   for (;;) {
     const { done, value } = blocks.next();
     if (done) return value;
@@ -42,7 +43,11 @@ export function renderClip(
   }
 }
 
-/** The same, awaiting `onBlock` after each block, so that the caller can let other work and signals in. */
+/**
+ * The same, awaiting `onBlock` after each block, so that the caller can let other work and signals in.
+ *
+ * @param into  takes the volts: as long as the modulation, which it may be itself, since output never overtakes input
+ */
 export async function renderClipInTurns(
   rest: RestPoint,
   laws: StageLaws,
@@ -51,8 +56,9 @@ export async function renderClipInTurns(
   quality: Quality,
   onBlock: (framesDone: number) => void | Promise<void>,
   quadrature: Float64Array | null = null,
+  into: Float64Array = new Float64Array(modulation.length),
 ): Promise<RenderedClip> {
-  const blocks = clipBlocks(rest, laws, modulation, clipRateHertz, quality, quadrature);
+  const blocks = clipBlocks(rest, laws, modulation, clipRateHertz, quality, quadrature, into);
   for (;;) {
     const { done, value } = blocks.next();
     if (done) return value;
@@ -68,10 +74,10 @@ function* clipBlocks(
   clipRateHertz: number,
   quality: Quality,
   quadrature: Float64Array | null,
+  volts: Float64Array,
 ): Generator<number, RenderedClip> {
   const renderer = new DetectorRenderer(rest, laws, clipRateHertz, quality);
   const delay = renderer.delaySamples;
-  const volts = new Float64Array(modulation.length);
   const input = new Float64Array(BLOCK);
   const second = quadrature === null ? null : new Float64Array(BLOCK);
   const output = new Float64Array(BLOCK);

@@ -44,7 +44,7 @@ export function bandLimitFilter(kind: PreEmphasis, bandLimit: BandLimit, sampleR
  * @param sampleRateHertz  8 to 192 kHz
  * @param kind             'none' or 'nrsc-1' (pre-emphasis and its 10 kHz stop band)
  * @param bandLimit        'none' or 'channel 9 kHz' (4.5 kHz, in place of the 10 kHz limit)
- * @returns a new array of the same length, in time with the input
+ * @returns an array of the same length, in time with the input; the input itself where there is nothing to do
  * @throws InputError `rate-out-of-range`
  */
 export function preEmphasise(
@@ -62,8 +62,7 @@ export function preEmphasise(
       expected: '8 kHz to 192 kHz',
     });
   }
-  const emphasised =
-    kind === 'nrsc-1' ? filterAligned(samples, preEmphasisFilter(sampleRateHertz)) : Float64Array.from(samples);
+  const emphasised = kind === 'nrsc-1' ? filterAligned(samples, preEmphasisFilter(sampleRateHertz)) : samples;
   const limit = bandLimitFilter(kind, bandLimit, sampleRateHertz);
   return limit === null ? emphasised : filterAligned(emphasised, limit);
 }

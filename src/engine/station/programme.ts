@@ -14,9 +14,14 @@ export interface Programme {
  *
  * @param samples  programme after pre-emphasis and band limit, any scale
  * @param depth    peak modulation depth, 0 to 2
+ * @param into     takes the modulation: as long as the samples, which it may be itself
  * Raises InputError `not-finite` for a sample that is no number.
  */
-export function programmeFrom(samples: Float64Array, depth: number): Programme {
+export function programmeFrom(
+  samples: Float64Array,
+  depth: number,
+  into: Float64Array = new Float64Array(samples.length),
+): Programme {
   let largest = 0;
   for (let n = 0; n < samples.length; n++) {
     const size = Math.abs(samples[n] as number);
@@ -31,7 +36,7 @@ export function programmeFrom(samples: Float64Array, depth: number): Programme {
     if (size > largest) largest = size;
   }
   const gain = largest > 0 ? depth / largest : 0;
-  const modulation = new Float64Array(samples.length);
+  const modulation = into;
   let limitedSamples = 0;
   for (let n = 0; n < samples.length; n++) {
     const value = (samples[n] as number) * gain;
