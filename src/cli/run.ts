@@ -5,8 +5,8 @@ import { EXIT, type Io, Stopped } from './io.ts';
 import { addMeterFlag, addPartFlags } from './options.ts';
 
 const EXIT_HELP = `
-Exit status: 0 done; 2 the input is wrong (the message names it); 3 a proof or a goal was not met; 1 a fault of the
-program.`;
+Exit status: 0 done; 2 the input is wrong (the message names it); 3 a proof or a goal was not met; 130 stopped with Ctrl-C,
+nothing half written; 1 a fault of the program.`;
 
 /**
  * The command: parses, runs, and turns faults into messages and an exit status. Never throws.

@@ -34,9 +34,10 @@ export async function listenPaced(
   });
   const clockSeconds = (): number => performance.now() / 1000;
   const sink = (bytes: Uint8Array, done: () => void): void => {
-    if (Number.isNaN(began)) began = clockSeconds();
-    const played = (clockSeconds() - began) * bytesASecond;
-    if (played > given && given > 0) {
+    // it begins to play once its buffer is full, as outputs do
+    if (Number.isNaN(began) && given >= HELD_SECONDS * bytesASecond) began = clockSeconds();
+    const played = Number.isNaN(began) ? 0 : (clockSeconds() - began) * bytesASecond;
+    if (played > given) {
       dry++;
       // from here on the sound is late by what was missing
       began += (played - given) / bytesASecond;
@@ -46,7 +47,7 @@ export async function listenPaced(
       finish(null);
       return;
     }
-    const ahead = given / bytesASecond - (clockSeconds() - began);
+    const ahead = (given - played) / bytesASecond;
     if (ahead > HELD_SECONDS) setTimeout(done, 1000 * (ahead - HELD_SECONDS));
     else setImmediate(done);
   };
