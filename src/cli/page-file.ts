@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { HEARING_NAMES } from '../engine/hearing/hearing-curves.ts';
-import { base64OfBytes, bytesOfSamples, losslessCoding } from '../page/clip-coding.ts';
+import { bytesOfSamples, losslessCoding } from '../page/clip-coding.ts';
 import type { PageData, Side } from '../page/page-data.ts';
 import { pageText, policyFor } from '../page/page-text.ts';
 import type { Result } from '../results/result.ts';
@@ -66,5 +66,6 @@ export function pageData(
 function coded(clip: ReadSound, side: Side): { coding: ReturnType<typeof losslessCoding>; base64: string } {
   const mono = clip.mono(side);
   const coding = losslessCoding(mono);
-  return { coding, base64: base64OfBytes(bytesOfSamples(mono, coding)) };
+  const { buffer, byteOffset, byteLength } = bytesOfSamples(mono, coding);
+  return { coding, base64: Buffer.from(buffer, byteOffset, byteLength).toString('base64') };
 }

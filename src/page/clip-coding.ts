@@ -52,21 +52,3 @@ export function samplesOfBytes(bytes: Uint8Array, coding: ClipCoding): Float64Ar
   for (let n = 0; n < samples.length; n++) samples[n] = read(n);
   return samples;
 }
-
-const DIGITS = 'ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789+/';
-
-/** Base64 text of bytes (RFC 4648); written out because the rings inside know neither Node nor browser. */
-export function base64OfBytes(bytes: Uint8Array): string {
-  const parts: string[] = [];
-  for (let from = 0; from < bytes.length; from += 3 * 4096) {
-    let text = '';
-    for (let n = from; n < Math.min(from + 3 * 4096, bytes.length); n += 3) {
-      const [a, b, c] = [bytes[n]!, bytes[n + 1], bytes[n + 2]];
-      text += DIGITS[a >> 2]! + DIGITS[((a & 3) << 4) | ((b ?? 0) >> 4)]!;
-      text += b === undefined ? '=' : DIGITS[((b & 15) << 2) | ((c ?? 0) >> 6)]!;
-      text += c === undefined ? '=' : DIGITS[c & 63]!;
-    }
-    parts.push(text);
-  }
-  return parts.join('');
-}
