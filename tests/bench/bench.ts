@@ -75,7 +75,7 @@ say(
 say('analysis of one circuit', `${(1000 * (await medianSeconds(3, () => void analyse(circuitOf({}))))).toFixed(0)} ms`);
 say(
   'decode the clip',
-  `${(seconds / (await medianSeconds(5, () => void readWav(clipBytes, clipPath)))).toFixed(0)} × real time`,
+  `${(seconds / (await medianSeconds(5, () => void readWav(clipBytes, clipPath).mono('both')))).toFixed(0)} × real time`,
 );
 const samples = clip.channels[0] as Float64Array;
 say(
