@@ -3,6 +3,7 @@ import type { DetectorCircuit, DiodeParts } from '../../src/engine/circuits/circ
 import { restPoint } from '../../src/engine/circuits/rest-point.ts';
 import { referenceLaws, referenceSource } from '../../src/engine/proof/reference-request.ts';
 import { runReference } from '../../src/engine/reference/run-reference.ts';
+import { BESSEL_ROWS } from '../laws/bessel-rows.ts';
 import { stiff } from '../laws/grid-leak-circuit.ts';
 import { heardAt, plainCircuit } from '../laws/other-detector-circuits.ts';
 
@@ -98,16 +99,7 @@ describe('linear diode: efficiency and input resistance', () => {
 describe('exponential diode: modified Bessel functions', () => {
   const VOLTS = 0.03;
   const SATURATION_AMPS = 1e-6;
-  it.each([
-    [0.1, 0.002498, 0.04994],
-    [0.5, 0.06155, 0.2425],
-    [1, 0.235914, 0.44639],
-    [2, 0.823994, 0.69777],
-    [5, 3.304682, 0.89338],
-    [10, 7.942972, 0.9486],
-    [20, 17.58961, 0.97467],
-    [100, 96.779733, 0.99499],
-  ])('carrier %d e-folds: ln I0 %d, I1/I0 %d', (x, rest, ratio) => {
+  it.each(BESSEL_ROWS)('carrier %d e-folds: ln I0 %d, I1/I0 %d', (x, rest, ratio) => {
     const law = {
       kind: 'exponential',
       saturationAmps: SATURATION_AMPS,
